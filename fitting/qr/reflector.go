@@ -21,24 +21,28 @@ func Reflector(x []float64) (tau float64) {
 	if len(x) < 2 {
 		return 0
 	}
-	tail := x[1:]
+	x[0], tau = reflect(x[0], x[1:])
+	return tau
+}
+
+// reflect is Reflector for a vector whose first element is kept apart.
+func reflect(alpha float64, tail []float64) (beta, tau float64) {
 	t := Norm(tail)
 	if t == 0 {
-		return 0
+		return alpha, 0
 	}
-	beta := -math.Copysign(math.Hypot(x[0], t), x[0])
-	d := x[0] - beta
+	beta = -math.Copysign(math.Hypot(alpha, t), alpha)
+	d := alpha - beta
 	tau = -d / beta
-	if r := 1 / d; math.Abs(d) > smallest && !math.IsInf(d, 0) {
-		floats.Scale(r, tail)
+	if math.Abs(d) > smallest && !math.IsInf(d, 0) {
+		floats.Scale(1/d, tail)
 	} else {
 		// The reciprocal would overflow.
 		for i, v := range tail {
 			tail[i] = v / d
 		}
 	}
-	x[0] = beta
-	return tau
+	return beta, tau
 }
 
 // Apply replaces c by H·c, for the reflector with vector (1, v[1:]) and factor
@@ -47,13 +51,17 @@ func Apply(v []float64, tau float64, c []float64) {
 	if tau == 0 {
 		return
 	}
-	w := v[1:]
-	d := c[1:]
-	s := -tau * (c[0] + dot(w, d))
-	c[0] += s
+	c[0] += applyTail(v[1:], tau, c[0], c[1:])
+}
+
+// applyTail applies H to the vector (first, tail) with the elements below the
+// first of v in w; it returns what the first element changes by.
+func applyTail(w []float64, tau, first float64, tail []float64) float64 {
+	s := -tau * (first + dot(w, tail))
 	if s != 0 && len(w) > 0 {
-		floats.AddScaled(d, s, w)
+		floats.AddScaled(tail, s, w)
 	}
+	return s
 }
 
 const (
