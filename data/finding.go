@@ -14,11 +14,11 @@ const (
 // Finding is one doubt about the measurements or about what could be made of
 // them. It is the only type for doubts in the whole program.
 type Finding struct {
-	Code     string   // short, stable, hyphenated: "isotherms-do-not-overlap"
-	Severity Severity // Note, Doubt or Severe
-	Test     string   // name of the test, "" for the campaign
-	Rows     string   // for people: "isotherms.csv:12-18, 40"; "" for none
-	Evidence string   // what was seen, in numbers
-	Cause    string   // the likely cause
-	Remedy   string   // what would be right
+	Code     string   `json:"code"`     // short, stable, hyphenated: "isotherms-do-not-overlap"
+	Severity Severity `json:"severity"` // Note, Doubt or Severe
+	Test     string   `json:"test"`     // name of the test, "" for the campaign
+	Rows     string   `json:"rows"`     // for people: "isotherms.csv:12-18, 40"; "" for none
+	Evidence string   `json:"evidence"` // what was seen, in numbers
+	Cause    string   `json:"cause"`    // the likely cause
+	Remedy   string   `json:"remedy"`   // what would be right
 }

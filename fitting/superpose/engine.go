@@ -1,0 +1,505 @@
+package superpose
+
+import (
+	"math"
+	"math/cmplx"
+
+	"phaselag/fitting/nnls"
+	"phaselag/fitting/qr"
+	"phaselag/models/amplitude"
+	"phaselag/models/linear"
+	"phaselag/models/thermal"
+)
+
+// engine evaluates residual and Jacobian of one Problem in one Form. The rows
+// of its matrices are: real parts of all oscillatory rows, imaginary parts of
+// the same, relaxation rows; below them the prior rows, which do not depend on
+// the moduli. Matrices are column-major. An engine is not for two goroutines.
+type engine struct {
+	p *Problem
+	f *Form
+	l layout
+
+	osc, rel []int // indices into p.Rows
+	m        int   // data rows, 2·len(osc)+len(rel)
+	priors   int
+	nc       int // columns: equilibrium, lattice, filler storage, filler loss
+
+	denom []complex128 // D_i per row of p.Rows
+	wRe   []float64    // 1/σ_m per row
+	wIm   []float64    // 1/σ_δ per row
+	scale float64      // modulus in which the columns are counted, Pa
+
+	// At the latest θ:
+	theta   []float64
+	state   []rowState
+	law     thermal.Law
+	factors []float64 // s_p
+	a, y    []float64 // m×nc, m
+	c       []float64 // nc, in units of scale
+	passive []bool
+	norm2   float64
+	known   bool
+
+	solver nnls.Solver
+	// Passive columns, factored; their reflectors.
+	ap  []float64
+	tau []float64
+	idx []int
+	dir []float64 // m
+}
+
+// rowState is what a row needs at θ.
+type rowState struct {
+	T                     float64 // with offset
+	a                     float64 // a_T
+	slope                 float64 // d log a_T/dT
+	b, bSlope             float64
+	phi, phiByEa, phiByT  float64 // φ, ∂φ/∂E_a (per kJ/mol), ∂φ/∂T
+	k1, k2                float64
+	k1c, k2c, k1m, k2m    float64
+	part                  float64 // what stands with ΔG''K2 in the storage (or relaxation) part
+	q                     complex128
+	polyRe, polyIm        float64 // filled by the Jacobian: Σ c_k …, in units of scale
+	polySlRe, polySlIm    float64
+	fillRe, fillIm        float64 // φF*
+	fillCritRe, fillExpRe float64
+	fillCritIm, fillExpIm float64
+}
+
+func newEngine(p *Problem, f *Form) *engine {
+	e := &engine{p: p, f: f, l: p.layout(f)}
+	for i, r := range p.Rows {
+		if r.Relaxation {
+			e.rel = append(e.rel, i)
+		} else {
+			e.osc = append(e.osc, i)
+		}
+	}
+	e.m = 2*len(e.osc) + len(e.rel)
+	for _, o := range e.l.offset {
+		if o >= 0 {
+			e.priors++
+		}
+	}
+	if e.l.nFactor > 0 {
+		e.priors += p.Factors
+	}
+	e.nc = 1 + len(f.Lattice)
+	if f.Filler {
+		e.nc += 2
+	}
+	n := len(p.Rows)
+	e.denom = make([]complex128, n)
+	e.wRe, e.wIm = make([]float64, n), make([]float64, n)
+	var logs float64
+	for i, r := range p.Rows {
+		e.denom[i] = r.G
+		logs += math.Log(cmplx.Abs(r.G))
+	}
+	e.scale = math.Exp(logs / float64(max(n, 1)))
+	e.setSigma(f.Sigma)
+	e.theta = make([]float64, e.l.n)
+	e.state = make([]rowState, n)
+	e.factors = make([]float64, p.Factors)
+	e.a, e.y = make([]float64, e.m*e.nc), make([]float64, e.m)
+	e.c, e.passive = make([]float64, e.nc), make([]bool, e.nc)
+	e.ap, e.tau = make([]float64, e.m*e.nc), make([]float64, e.nc)
+	e.dir = make([]float64, e.m)
+	return e
+}
+
+func (e *engine) setSigma(s []Sigma) {
+	for i, r := range e.p.Rows {
+		e.wRe[i] = 1 / s[r.Group].Magnitude
+		e.wIm[i] = 1 / s[r.Group].Phase
+	}
+	e.known = false
+}
+
+// prepare computes everything about the rows that θ decides.
+func (e *engine) prepare(theta []float64) {
+	copy(e.theta, theta)
+	p, f, l := e.p, e.f, &e.l
+	e.law = p.law(f, l, theta)
+	for i := range e.factors {
+		e.factors[i] = 1
+	}
+	if l.nFactor > 0 {
+		var sum float64
+		for i := range l.nFactor {
+			v := theta[l.factor+i]
+			e.factors[i] = math.Exp(v)
+			sum += v
+		}
+		e.factors[l.nFactor] = math.Exp(-sum)
+	}
+	var kraus amplitude.Kraus
+	var ea float64
+	if f.Filler {
+		kraus = amplitude.Kraus{Critical: math.Exp(theta[l.critical]), Exponent: theta[l.exponent]}
+		if l.activation >= 0 {
+			ea = theta[l.activation]
+		}
+	}
+	density := thermal.Density{Expansion: f.Expansion, Reference: p.Reference}
+	var vertical *anchored
+	if l.nVer > 0 {
+		vertical = p.anchored(theta[l.vertical : l.vertical+l.nVer])
+	}
+	for i := range p.Rows {
+		r, s := &p.Rows[i], &e.state[i]
+		s.T = r.T
+		if o := l.offset[r.Run]; o >= 0 {
+			s.T += theta[o]
+		}
+		s.a, s.slope = 1, 0
+		if e.law != nil {
+			s.a = math.Exp(thermal.Ln10 * e.law.LogShift(s.T))
+			s.slope = e.law.Slope(s.T)
+		}
+		s.b, s.bSlope = 1, 0
+		switch {
+		case f.Vertical == Density:
+			s.b, s.bSlope = density.Factor(s.T), density.Slope(s.T)
+		case vertical != nil:
+			s.b = math.Exp(vertical.LogShift(s.T))
+			s.bSlope = s.b * vertical.Slope(s.T)
+		}
+		s.q = complex(e.factors[r.Factor], 0) / e.denom[i]
+		if !f.Filler {
+			continue
+		}
+		g := 1e3 / thermal.GasConstant * (1/s.T - 1/p.Reference)
+		s.phi = math.Exp(ea * g)
+		s.phiByEa = s.phi * g
+		s.phiByT = -s.phi * ea * 1e3 / (thermal.GasConstant * s.T * s.T)
+		s.k1, s.k2, s.k1c, s.k2c, s.k1m, s.k2m = kraus.Slopes(r.Strain)
+		if r.Relaxation {
+			s.part = amplitude.RelaxationPart(f.Kappa, r.Time, p.F0)
+		} else {
+			s.part = amplitude.FrequencyPart(f.Kappa, r.Omega/(2*math.Pi), p.F0)
+		}
+	}
+}
+
+// fill builds A(θ) and y.
+func (e *engine) fill() {
+	p, n := e.p, len(e.osc)
+	re := func(col int) []float64 { return e.a[col*e.m : col*e.m+n] }
+	im := func(col int) []float64 { return e.a[col*e.m+n : col*e.m+2*n] }
+	rel := func(col int) []float64 { return e.a[col*e.m+2*n : (col+1)*e.m] }
+	nl := len(e.f.Lattice)
+
+	for j, i := range e.osc {
+		ln := cmplx.Log(p.Rows[i].G / e.denom[i])
+		e.y[j], e.y[n+j] = e.wRe[i]*(real(ln)+1), e.wIm[i]*imag(ln)
+		s := &e.state[i]
+		q := s.q * complex(s.b*e.scale, 0)
+		re(0)[j], im(0)[j] = e.wRe[i]*real(q), e.wIm[i]*imag(q)
+	}
+	for j, i := range e.rel {
+		d := real(e.denom[i])
+		e.y[2*n+j] = e.wRe[i] * (math.Log(real(p.Rows[i].G)/d) + 1)
+		s := &e.state[i]
+		rel(0)[j] = e.wRe[i] * real(s.q) * s.b * e.scale
+	}
+	re0, im0 := re(0), im(0)
+	for k, tau := range e.f.Lattice {
+		rk, ik := re(1+k), im(1+k)
+		for j, i := range e.osc {
+			x := p.Rows[i].Omega * e.state[i].a * tau
+			d := 1 / (1 + x*x)
+			st, lo := x*x*d, x*d
+			if x > 1e100 {
+				st, lo = 1, 0
+			}
+			// (re0/w + i im0/w)·(st + i lo), weighted again.
+			w := e.wIm[i] / e.wRe[i]
+			rk[j] = re0[j]*st - im0[j]/w*lo
+			ik[j] = im0[j]*st + re0[j]*w*lo
+		}
+		if len(e.rel) > 0 {
+			lk, l0 := rel(1+k), rel(0)
+			for j, i := range e.rel {
+				lk[j] = l0[j] * math.Exp(-p.Rows[i].Time/(e.state[i].a*tau))
+			}
+		}
+	}
+	if !e.f.Filler {
+		return
+	}
+	cs, cl := 1+nl, 2+nl
+	for j, i := range e.osc {
+		s := &e.state[i]
+		q := s.q * complex(s.phi*e.scale, 0)
+		re(cs)[j], im(cs)[j] = e.wRe[i]*real(q)*s.k1, e.wIm[i]*imag(q)*s.k1
+		v := q * complex(s.k2*s.part, s.k2)
+		re(cl)[j], im(cl)[j] = e.wRe[i]*real(v), e.wIm[i]*imag(v)
+	}
+	for j, i := range e.rel {
+		s := &e.state[i]
+		q := e.wRe[i] * real(s.q) * s.phi * e.scale
+		rel(cs)[j], rel(cl)[j] = q*s.k1, q*s.k2*s.part
+	}
+}
+
+// residual solves for the moduli at θ and writes the residual of all rows,
+// priors last, into r. It reports false where the model is not finite.
+func (e *engine) residual(r, theta []float64) bool {
+	e.prepare(theta)
+	e.fill()
+	e.known = false
+	for _, v := range e.a {
+		if math.IsNaN(v) || math.IsInf(v, 0) {
+			return false
+		}
+	}
+	if !e.solve() {
+		return false
+	}
+	copy(r, e.y)
+	for k, ck := range e.c {
+		if ck != 0 {
+			axpy(r[:e.m], -ck, e.a[k*e.m:(k+1)*e.m])
+		}
+	}
+	e.priorRows(r[e.m:], theta)
+	e.known = true
+	return true
+}
+
+func (e *engine) priorRows(r, theta []float64) {
+	k := 0
+	for j, o := range e.l.offset {
+		if o >= 0 {
+			r[k] = theta[o] / e.p.Runs[j].U
+			k++
+		}
+	}
+	if e.l.nFactor > 0 {
+		for i := range e.factors {
+			r[k] = math.Log(e.factors[i]) / e.p.UGeometry
+			k++
+		}
+	}
+}
+
+// solve finds the moduli; the passive set of the last θ is its warm start.
+func (e *engine) solve() bool {
+	_, status := e.solver.Solve(e.a, e.m, e.nc, e.y, e.c, e.passive, nil)
+	if !status.Usable() {
+		return false
+	}
+	e.idx = e.idx[:0]
+	for k := range e.c {
+		if e.passive[k] && e.c[k] > 0 {
+			copy(e.ap[len(e.idx)*e.m:], e.a[k*e.m:(k+1)*e.m])
+			e.idx = append(e.idx, k)
+		}
+	}
+	qr.Factor(e.ap, e.m, len(e.idx), e.m, e.tau)
+	return true
+}
+
+// sums computes the fitted model and its slopes for every row, in units of
+// scale, from the moduli of the latest solve.
+func (e *engine) sums() {
+	nl := len(e.f.Lattice)
+	for i := range e.state {
+		s := &e.state[i]
+		s.polyRe, s.polyIm, s.polySlRe, s.polySlIm = e.c[0], 0, 0, 0
+		s.fillRe, s.fillIm = 0, 0
+	}
+	for k, tau := range e.f.Lattice {
+		c := e.c[1+k]
+		if c == 0 {
+			continue
+		}
+		for i := range e.state {
+			r, s := &e.p.Rows[i], &e.state[i]
+			if r.Relaxation {
+				// d/d ln a of exp(−t/(aτ)) = (t/(aτ)) exp(−t/(aτ)).
+				x := r.Time / (s.a * tau)
+				v := c * math.Exp(-x)
+				s.polyRe += v
+				if v > 0 {
+					s.polySlRe += v * x
+				}
+				continue
+			}
+			x := r.Omega * s.a * tau
+			st, lo := linear.Branch(x)
+			st1, lo1 := linear.BranchSlope(x)
+			s.polyRe += c * st
+			s.polyIm += c * lo
+			s.polySlRe += c * st1
+			s.polySlIm += c * lo1
+		}
+	}
+	if !e.f.Filler {
+		return
+	}
+	cs, cl := e.c[1+nl], e.c[2+nl]
+	for i := range e.state {
+		s := &e.state[i]
+		loss := 1.0
+		if e.p.Rows[i].Relaxation {
+			loss = 0
+		}
+		s.fillRe, s.fillIm = cs*s.k1+cl*s.k2*s.part, cl*s.k2*loss
+		s.fillCritRe, s.fillCritIm = cs*s.k1c+cl*s.k2c*s.part, cl*s.k2c*loss
+		s.fillExpRe, s.fillExpIm = cs*s.k1m+cl*s.k2m*s.part, cl*s.k2m*loss
+	}
+}
+
+// model is the fitted modulus of row i, Pa, after sums.
+func (e *engine) model(i int) complex128 {
+	s := &e.state[i]
+	return complex(e.factors[e.p.Rows[i].Factor]*e.scale, 0) *
+		complex(s.b*s.polyRe+s.phi*s.fillRe, s.b*s.polyIm+s.phi*s.fillIm)
+}
+
+// derivatives writes ∂(A c)/∂θ, weighted, m×n column-major with leading
+// dimension ld, at the latest θ, after sums.
+func (e *engine) derivatives(d []float64, ld int) {
+	l, n := &e.l, len(e.osc)
+	for j := range l.n {
+		clear(d[j*ld : j*ld+e.m])
+	}
+	var lawG, verG []float64
+	if l.nLaw > 0 {
+		lawG = make([]float64, l.nLaw)
+	}
+	var vertical *anchored
+	if l.nVer > 0 {
+		verG = make([]float64, l.nVer)
+		vertical = e.p.anchored(e.theta[l.vertical : l.vertical+l.nVer])
+	}
+	row := func(i, at int, relaxation bool) {
+		s, r := &e.state[i], &e.p.Rows[i]
+		q := s.q * complex(e.scale, 0)
+		add := func(col int, v complex128) {
+			v *= q
+			if relaxation {
+				d[col*ld+at] += e.wRe[i] * real(v)
+				return
+			}
+			d[col*ld+at] += e.wRe[i] * real(v)
+			d[col*ld+n+at] += e.wIm[i] * imag(v)
+		}
+		poly, slope := complex(s.polyRe, s.polyIm), complex(s.polySlRe, s.polySlIm)
+		byLog := complex(thermal.Ln10*s.b, 0) * slope
+		if l.nLaw > 0 {
+			e.law.Gradient(s.T, lawG)
+			for k, g := range lawG {
+				if e.f.Law == Arrhenius {
+					g *= 1e3
+				}
+				if g != 0 {
+					add(l.law+k, byLog*complex(g, 0))
+				}
+			}
+		}
+		if vertical != nil {
+			vertical.Gradient(s.T, verG)
+			for k, g := range verG {
+				if g != 0 {
+					add(l.vertical+k, complex(s.b*g, 0)*poly)
+				}
+			}
+		}
+		fill := complex(s.fillRe, s.fillIm)
+		if o := l.offset[r.Run]; o >= 0 {
+			add(o, byLog*complex(s.slope, 0)+complex(s.bSlope, 0)*poly+complex(s.phiByT, 0)*fill)
+		}
+		if l.nFactor > 0 {
+			whole := complex(s.b, 0)*poly + complex(s.phi, 0)*fill
+			if r.Factor < l.nFactor {
+				add(l.factor+r.Factor, whole)
+			} else {
+				for k := range l.nFactor {
+					add(l.factor+k, -whole)
+				}
+			}
+		}
+		if l.activation >= 0 {
+			add(l.activation, complex(s.phiByEa, 0)*fill)
+		}
+		if l.critical >= 0 {
+			add(l.critical, complex(s.phi*s.fillCritRe, s.phi*s.fillCritIm))
+			add(l.exponent, complex(s.phi*s.fillExpRe, s.phi*s.fillExpIm))
+		}
+	}
+	for j, i := range e.osc {
+		row(i, j, false)
+	}
+	for j, i := range e.rel {
+		row(i, 2*n+j, true)
+	}
+}
+
+// priorJacobian writes the derivatives of the prior rows below row e.m.
+func (e *engine) priorJacobian(d []float64, ld int) {
+	l := &e.l
+	for j := range l.n {
+		clear(d[j*ld+e.m : j*ld+e.m+e.priors])
+	}
+	k := e.m
+	for j, o := range l.offset {
+		if o >= 0 {
+			d[o*ld+k] = 1 / e.p.Runs[j].U
+			k++
+		}
+	}
+	if l.nFactor > 0 {
+		for i := range e.factors {
+			for j := range l.nFactor {
+				switch {
+				case i == j:
+					d[(l.factor+j)*ld+k] = 1 / e.p.UGeometry
+				case i == l.nFactor:
+					d[(l.factor+j)*ld+k] = -1 / e.p.UGeometry
+				}
+			}
+			k++
+		}
+	}
+}
+
+// jacobian writes Kaufman's Jacobian of residual at θ, (m+priors)×n.
+func (e *engine) jacobian(j, theta []float64) bool {
+	if !e.known || !same(theta, e.theta) {
+		r := make([]float64, e.m+e.priors)
+		if !e.residual(r, theta) {
+			return false
+		}
+	}
+	ld := e.m + e.priors
+	e.sums()
+	e.derivatives(j, ld)
+	for k := range e.l.n {
+		col := j[k*ld : k*ld+e.m]
+		for i := range col {
+			col[i] = -col[i]
+		}
+		qr.Project(e.ap, e.m, len(e.idx), e.m, e.tau, col, true)
+	}
+	e.priorJacobian(j, ld)
+	return true
+}
+
+func same(a, b []float64) bool {
+	for i := range a {
+		if a[i] != b[i] {
+			return false
+		}
+	}
+	return len(a) == len(b)
+}
+
+func axpy(y []float64, alpha float64, x []float64) {
+	for i, v := range x {
+		y[i] += alpha * v
+	}
+}

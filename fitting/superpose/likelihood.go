@@ -1,0 +1,106 @@
+package superpose
+
+import (
+	"math"
+
+	"phaselag/fitting/qr"
+)
+
+// Marginal is −2 ln of the marginal likelihood of the measurements, without
+// the constant that forms with the same rows and noise share. The temperature
+// offsets d are integrated out with their priors, linearised (Laplace):
+//
+//	−2 ln L = S_min + ln det(I + Λ JᵀJ Λ),  Λ = diag(u_j), J = ∂residual/∂d
+//
+// and S_min includes the prior rows.
+func (s *Solution) Marginal() float64 {
+	e := s.e
+	var offsets []int
+	var u []float64
+	for j, o := range e.l.offset {
+		if o >= 0 {
+			offsets = append(offsets, o)
+			u = append(u, s.Problem.Runs[j].U)
+		}
+	}
+	n := len(offsets)
+	if n == 0 {
+		return s.Objective
+	}
+	ld := e.m + e.priors
+	d := make([]float64, ld*e.l.n)
+	e.derivatives(d, ld)
+	// det(I + ΛJᵀJΛ) is the squared determinant of the triangle of [JΛ; I].
+	rows := e.m + n
+	a := make([]float64, rows*n)
+	for k, o := range offsets {
+		col := a[k*rows : (k+1)*rows]
+		copy(col, d[o*ld:o*ld+e.m])
+		for i := range e.m {
+			col[i] *= u[k]
+		}
+		col[e.m+k] = 1
+	}
+	tau := make([]float64, n)
+	qr.Factor(a, rows, n, rows, tau)
+	out := s.Objective
+	for k := range n {
+		out += 2 * math.Log(math.Abs(a[k*rows+k]))
+	}
+	return out
+}
+
+// AICc is Marginal with Akaike's penalty for the constants of the shift law,
+// the vertical law and the filler term, corrected for a finite number of
+// residuals. The spectrum counts for none, since rivals share its lattice.
+func (s *Solution) AICc() float64 {
+	k := float64(s.Constants())
+	n := float64(s.e.m)
+	out := s.Marginal() + 2*k
+	if n > k+1 {
+		out += 2 * k * (k + 1) / (n - k - 1)
+	}
+	return out
+}
+
+// Constants counts the constants of shift law, vertical law and filler term.
+func (s *Solution) Constants() int {
+	k := s.e.l.nLaw + s.e.l.nVer
+	if s.e.l.activation >= 0 {
+		k++
+	}
+	if s.e.l.critical >= 0 {
+		k += 4 // γ_c, m and the two moduli
+	}
+	return k
+}
+
+// Scatter estimates the run-to-run standard deviation of temperature, K, by
+// restricted maximum likelihood from a solution; shared marks the runs that
+// have it in common. With
+// Z the Jacobian of the offsets and r the residual without offsets, both
+// projected off all other parameters, and ZᵀZ = VΛVᵀ, g = VᵀZᵀr,
+//
+//	−2 ln L(u) = Σ ln(1 + u²λ_k) − Σ u² g_k²/(1 + u²λ_k) + const
+//
+// (Patterson and Thompson, Biometrika 58 (1971) 545, for this linear case). It
+// is zero where the data ask for none, and at most limit.
+func (s *Solution) Scatter(shared []bool, limit float64) float64 {
+	lambda, g := s.restricted(shared)
+	f := func(u float64) float64 {
+		var v float64
+		for k, l := range lambda {
+			v += math.Log1p(u*u*l) - u*u*g[k]*g[k]/(1+u*u*l)
+		}
+		return v
+	}
+	best, bestF := 0.0, 0.0
+	const steps = 400
+	for i := 1; i <= steps; i++ {
+		u := limit * math.Pow(1e-3, 1-float64(i)/steps)
+		if v := f(u); v < bestF {
+			best, bestF = u, v
+		}
+	}
+	return best
+}

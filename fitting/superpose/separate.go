@@ -1,0 +1,268 @@
+package superpose
+
+import (
+	"math"
+	"math/cmplx"
+	"math/rand/v2"
+	"sync"
+
+	"gonum.org/v1/gonum/stat/distuv"
+
+	"phaselag/fitting/nnls"
+)
+
+// Does superposition hold?
+//
+// Under superposition all isotherms share one spectrum. The joint fit is
+// compared with spectra of their own for every tested temperature, on the same
+// lattice at the same shifts (which nests the joint fit), by
+//
+//	F = (S_joint − S_separate)/S_separate
+//
+// over the weighted residuals of the isotherms. Non-negativity leaves no
+// degrees of freedom to count, so the distribution of F comes from parametric
+// bootstrap: measurements are drawn from the joint fit with its noise, fitted
+// again both ways, and p is the share of draws with F at least as large, the
+// measurement itself counted.
+
+// Separate is the comparison for one solution of the law Factors.
+type Separate struct {
+	F        float64
+	P        float64 // NaN if the comparison could not be made
+	Draws    int     // replicates behind P; 0: P is that of the F test on passive sets
+	Phase    Misfits // rad
+	Relative Misfits // of the magnitude
+	Knots    []KnotMisfit
+}
+
+// Misfits are rms values over all isotherms.
+type Misfits struct {
+	Joint float64 // of the common curve
+	Floor float64 // of spectra of their own, over their degrees of freedom
+}
+
+// Beyond is the misfit of the common curve beyond the floor.
+func (m Misfits) Beyond() float64 {
+	return math.Sqrt(max(0, m.Joint*m.Joint-m.Floor*m.Floor))
+}
+
+// KnotMisfit is the misfit of the common curve at one tested temperature.
+type KnotMisfit struct {
+	T               float64 // K
+	Points          int
+	Phase, Relative float64 // rms, rad and relative
+	BeyondPhase     float64 // beyond the floor of all isotherms
+	BeyondRelative  float64
+}
+
+// separator fits isotherms one by one; knots[j] lists the rows of a knot.
+type separator struct {
+	solver nnls.Solver
+	knots  [][]int
+	rows   []int
+}
+
+// newSeparator groups the isotherm rows (isotherm[i] true) by their knot.
+func newSeparator(p *Problem, isotherm []bool) *separator {
+	z := &separator{knots: make([][]int, len(p.Knots))}
+	for i, r := range p.Rows {
+		if !isotherm[i] || r.Relaxation {
+			continue
+		}
+		best := 0
+		for k, T := range p.Knots {
+			if math.Abs(T-r.T) < math.Abs(p.Knots[best]-r.T) {
+				best = k
+			}
+		}
+		z.knots[best] = append(z.knots[best], i)
+		z.rows = append(z.rows, i)
+	}
+	return z
+}
+
+type separateSums struct {
+	joint, separate     float64 // weighted
+	jointM, jointD      []float64
+	sepM, sepD          []float64
+	parameters          int // passive columns of all knots
+	pointsM, pointsD    []int
+	jointPassive, total int
+}
+
+// sums compares one solution; the engine must be settled at it.
+func (z *separator) sums(s *Solution) (out separateSums, ok bool) {
+	e := s.e
+	n := len(e.osc)
+	at := make([]int, len(s.Problem.Rows))
+	for j, i := range e.osc {
+		at[i] = j
+	}
+	nl := len(s.Form.Lattice)
+	nk := len(z.knots)
+	out.jointM, out.jointD = make([]float64, nk), make([]float64, nk)
+	out.sepM, out.sepD = make([]float64, nk), make([]float64, nk)
+	out.jointPassive = len(e.idx)
+	for k, rows := range z.knots {
+		m := 2 * len(rows)
+		if m == 0 {
+			continue
+		}
+		a, b := make([]float64, m*(nl+1)), make([]float64, m)
+		for q, i := range rows {
+			j := at[i]
+			for c := 0; c <= nl; c++ {
+				a[c*m+q], a[c*m+len(rows)+q] = e.a[c*e.m+j], e.a[c*e.m+n+j]
+			}
+			b[q], b[len(rows)+q] = e.y[j], e.y[n+j]
+			// The filler stays as the joint fit has it.
+			for c := nl + 1; c < e.nc; c++ {
+				b[q] -= e.c[c] * e.a[c*e.m+j]
+				b[len(rows)+q] -= e.c[c] * e.a[c*e.m+n+j]
+			}
+		}
+		x := make([]float64, nl+1)
+		passive := append([]bool(nil), e.passive[:nl+1]...)
+		if _, status := z.solver.Solve(a, m, nl+1, b, x, passive, nil); !status.Usable() {
+			return out, false
+		}
+		for c, v := range x {
+			if v > 0 {
+				out.parameters++
+				axpy(b, -v, a[c*m:(c+1)*m])
+			}
+		}
+		for q, i := range rows {
+			r, w := s.Misfit(i), s.Form.Sigma[s.Problem.Rows[i].Group]
+			out.jointM[k] += real(r) * real(r)
+			out.jointD[k] += imag(r) * imag(r)
+			u, v := b[q]*w.Magnitude, b[len(rows)+q]*w.Phase
+			out.sepM[k] += u * u
+			out.sepD[k] += v * v
+			out.separate += b[q]*b[q] + b[len(rows)+q]*b[len(rows)+q]
+			out.joint += real(r)*real(r)/(w.Magnitude*w.Magnitude) + imag(r)*imag(r)/(w.Phase*w.Phase)
+		}
+		out.total += m
+	}
+	return out, out.separate > 0
+}
+
+// Superposition compares a solution of the law Factors with spectra of their
+// own. Draws are made only when the F test on the passive sets gives p ≤ 0.2;
+// replicate r is drawn from seed and r, so that the answer does not depend on
+// workers.
+func (s *Solution) Superposition(isotherm []bool, draws int, seed uint64, workers int) Separate {
+	z := newSeparator(s.Problem, isotherm)
+	out := Separate{P: math.NaN(), F: math.NaN()}
+	// The comparison is made in the linearisation about the fitted moduli, so
+	// that joint and separate residuals are the same logarithms.
+	s.about()
+	sums, ok := z.sums(s)
+	if !ok || len(z.knots) < 2 {
+		return out
+	}
+	out.F = (sums.joint - sums.separate) / sums.separate
+	free := float64(sums.total - sums.parameters)
+	var pts, jm, jd, sm, sd float64
+	for k, rows := range z.knots {
+		pts += float64(len(rows))
+		jm, jd = jm+sums.jointM[k], jd+sums.jointD[k]
+		sm, sd = sm+sums.sepM[k], sd+sums.sepD[k]
+	}
+	share := max(free/float64(sums.total), 0.2)
+	out.Relative = Misfits{math.Sqrt(jm / pts), math.Sqrt(sm / (pts * share))}
+	out.Phase = Misfits{math.Sqrt(jd / pts), math.Sqrt(sd / (pts * share))}
+	for k, rows := range z.knots {
+		n := float64(len(rows))
+		if n == 0 {
+			continue
+		}
+		km := KnotMisfit{T: s.Problem.Knots[k], Points: len(rows), Phase: math.Sqrt(sums.jointD[k] / n), Relative: math.Sqrt(sums.jointM[k] / n)}
+		km.BeyondPhase = Misfits{km.Phase, out.Phase.Floor}.Beyond()
+		km.BeyondRelative = Misfits{km.Relative, out.Relative.Floor}.Beyond()
+		out.Knots = append(out.Knots, km)
+	}
+	extra := float64(sums.parameters - sums.jointPassive - (len(z.knots) - 1))
+	if extra < 1 || free < 1 {
+		out.P = 1
+		return out
+	}
+	out.P = 1 - distuv.F{D1: extra, D2: free}.CDF(out.F*free/extra)
+	if out.P > 0.2 || draws <= 0 {
+		return out
+	}
+	out.Draws = draws
+	out.P = s.bootstrap(z, out.F, draws, seed, workers)
+	return out
+}
+
+// about makes the fitted moduli the denominators, without fitting again.
+func (s *Solution) about() {
+	e := s.e
+	for i := range e.denom {
+		e.denom[i] = e.model(i)
+	}
+	e.residual(make([]float64, e.m+e.priors), s.Theta)
+	e.sums()
+}
+
+func (s *Solution) bootstrap(z *separator, F float64, draws int, seed uint64, workers int) float64 {
+	model := make([]complex128, len(s.Problem.Rows))
+	for i := range model {
+		model[i] = s.Model(i)
+	}
+	above := make([]bool, draws)
+	var wg sync.WaitGroup
+	next := make(chan int, draws)
+	for r := range draws {
+		next <- r
+	}
+	close(next)
+	for range max(1, workers) {
+		wg.Add(1)
+		go func() {
+			defer wg.Done()
+			own := separator{knots: z.knots, rows: z.rows}
+			for r := range next {
+				above[r] = s.replicate(&own, model, seed, uint64(r)) >= F
+			}
+		}()
+	}
+	wg.Wait()
+	count := 1
+	for _, a := range above {
+		if a {
+			count++
+		}
+	}
+	return float64(count) / float64(draws+1)
+}
+
+// replicate draws measurements from the model, fits them both ways and returns
+// F; −Inf where the fit failed.
+func (s *Solution) replicate(z *separator, model []complex128, seed, r uint64) float64 {
+	rnd := rand.New(rand.NewPCG(seed, r))
+	p := *s.Problem
+	p.Rows = append([]Row(nil), s.Problem.Rows...)
+	for i := range p.Rows {
+		w := s.Form.Sigma[p.Rows[i].Group]
+		x, y := rnd.NormFloat64(), rnd.NormFloat64()
+		if p.Rows[i].Relaxation {
+			y = 0
+		}
+		p.Rows[i].G = model[i] * cmplx.Exp(complex(w.Magnitude*x, w.Phase*y))
+	}
+	form := s.Form
+	e := newEngine(&p, &form)
+	copy(e.denom, model)
+	copy(e.passive, s.e.passive)
+	fit, err := e.run(s.Theta)
+	if err != nil {
+		return math.Inf(-1)
+	}
+	sums, ok := z.sums(fit)
+	if !ok {
+		return math.Inf(-1)
+	}
+	return (sums.joint - sums.separate) / sums.separate
+}
