@@ -1,0 +1,81 @@
+package mount
+
+import "math"
+
+// ShearPad is one layer of rubber between two rigid plates that stay parallel.
+//
+// Its stiffness in shear is that of simple shear, and with the bending of the
+// pad as a beam guided at both ends, E = 3G,
+//
+//	K* = G*·(A/t)/(1 + t²/(36 k²)),     k² = I/A,
+//
+// from t/K = t/(GA) + t³/(12·3G·A·k²). Its stiffness when pressed is
+//
+//	K_c* = E_c·A/t,     E_c = 3G·(1 + 2κS²),     1/E_c' = 1/E_c + 1/B
+//
+// with the shape factor S (loaded by force-free area), the coefficient κ (1 for
+// unfilled rubber, less for filled) and the bulk modulus B; after Gent and
+// Lindley (1959), value from memory.
+//
+// A thick pad under load leans: both neglect the softening by the load itself,
+// and the real and the imaginary part are shaped by the same factors.
+type ShearPad struct {
+	Area      float64 // m²
+	Thickness float64 // m
+	Length    float64 // m, along the shear; NaN if not stated
+	Width     float64 // m; NaN if not stated
+	Diameter  float64 // m; NaN if not stated
+	Bending   bool    // subtract bending; needs Length or Diameter
+	// Compression is the coefficient κ of E_c; NaN if not stated.
+	Compression float64
+	Bulk        float64 // Pa; NaN: incompressible
+}
+
+// Shear returns the stiffness in shear in N/m at the shear modulus g in Pa.
+func (p ShearPad) Shear(g complex128) complex128 {
+	return g * complex(p.Area/p.Thickness*p.bending(), 0)
+}
+
+// bending returns the factor of bending, 1 where it is not asked for.
+func (p ShearPad) bending() float64 {
+	if !p.Bending {
+		return 1
+	}
+	return 1 / (1 + p.Thickness*p.Thickness/(36*p.gyration()))
+}
+
+// gyration returns k², the square of the radius of gyration of the section
+// about the axis across the shear; NaN if the section is not stated.
+func (p ShearPad) gyration() float64 {
+	if !math.IsNaN(p.Diameter) {
+		return p.Diameter * p.Diameter / 16
+	}
+	return p.Length * p.Length / 12
+}
+
+// ShapeFactor returns loaded by force-free area; NaN if the section is not
+// stated.
+func (p ShearPad) ShapeFactor() float64 {
+	if !math.IsNaN(p.Diameter) {
+		return p.Diameter / (4 * p.Thickness)
+	}
+	return p.Length * p.Width / (2 * p.Thickness * (p.Length + p.Width))
+}
+
+// stiffening returns E_c/G of the incompressible pad, 3(1+2κS²).
+func (p ShearPad) stiffening() float64 {
+	s := p.ShapeFactor()
+	return 3 * (1 + 2*p.Compression*s*s)
+}
+
+// Press returns the stiffness when pressed in N/m at the shear modulus g in Pa,
+// and its derivative by g in m.
+func (p ShearPad) Press(g complex128) (k, derivative complex128) {
+	shape := complex(p.Area/p.Thickness, 0)
+	c := complex(p.stiffening(), 0)
+	if math.IsNaN(p.Bulk) {
+		return c * g * shape, c * shape
+	}
+	q := 1 / (1 + c*g/complex(p.Bulk, 0))
+	return c * g * q * shape, c * q * q * shape
+}

@@ -1,0 +1,193 @@
+package mount
+
+import (
+	"fmt"
+	"math"
+
+	"gopkg.in/yaml.v3"
+
+	"phaselag/data/unit"
+)
+
+// elements reads the named elements in the order of the file.
+func (r *reader) elements(e entry) []Element {
+	if e.value.Kind != yaml.MappingNode || len(e.value.Content) == 0 {
+		r.fault(e.value, e.path, "want named elements, not "+kind(e.value), "for example {pad: {shape: shear pad, area: 1200 mm2, thickness: 12 mm}}")
+		return nil
+	}
+	named := r.mapping(e.value, e.path)
+	var list []Element
+	seen := map[string]bool{}
+	for i := 0; i+1 < len(e.value.Content); i += 2 {
+		one, ok := named[e.value.Content[i].Value]
+		if !ok || seen[one.key.Value] {
+			continue
+		}
+		seen[one.key.Value] = true
+		r.names = append(r.names, one.key.Value)
+		list = append(list, r.oneElement(one))
+	}
+	return list
+}
+
+// oneElement reads a shape or a measured part. A faulty one is still an
+// element, so that its name is known to the arrangement.
+func (r *reader) oneElement(e entry) Element {
+	el := Element{Name: e.key.Value}
+	known := []string{"shape", "area", "thickness", "length", "width", "diameter", "bending", "compression_coefficient", "bulk_modulus"}
+	measured := false
+	if e.value.Kind == yaml.MappingNode {
+		for i := 0; i < len(e.value.Content); i += 2 {
+			measured = measured || e.value.Content[i].Value == "measured"
+		}
+	}
+	if measured {
+		el.Measured = r.measured(e)
+		return el
+	}
+	keys := r.mapping(e.value, e.path, append(known, "measured", "strain_per_displacement")...)
+	if keys == nil {
+		return el
+	}
+	shape, ok := keys["shape"]
+	switch {
+	case !ok:
+		r.fault(e.value, join(e.path, "shape"), "missing", "shape: shear pad, or measured: {stiffness: 420 N/mm, ...}")
+		return el
+	case r.text(shape) != "shear pad":
+		r.fault(shape.value, shape.path, "unknown shape "+kind(shape.value), "the shape known is shear pad; anything else can be entered as measured")
+		return el
+	}
+	if s, ok := keys["strain_per_displacement"]; ok {
+		r.fault(s.key, s.path, "belongs to a measured element", "a shear pad's strain is its displacement divided by its thickness")
+	}
+	el.Pad = r.pad(e, keys)
+	return el
+}
+
+// pad reads a shear pad.
+func (r *reader) pad(e entry, keys map[string]entry) *ShearPad {
+	p := &ShearPad{
+		Area:        r.amount(keys, "area", unit.Area, false),
+		Thickness:   r.amount(keys, "thickness", unit.Length, false),
+		Length:      r.amount(keys, "length", unit.Length, false),
+		Width:       r.amount(keys, "width", unit.Length, false),
+		Diameter:    r.amount(keys, "diameter", unit.Length, false),
+		Bulk:        r.amount(keys, "bulk_modulus", unit.Modulus, false),
+		Bending:     r.flag(keys, "bending"),
+		Compression: r.number(keys, "compression_coefficient"),
+	}
+	has := func(key string) bool { _, ok := keys[key]; return ok }
+	if !has("thickness") {
+		r.fault(e.value, join(e.path, "thickness"), "missing", "the thickness of one rubber layer, for example 12 mm")
+	}
+	sides := has("length") && has("width")
+	const forms = "area: 1200 mm2, or diameter: 40 mm, or length: 40 mm and width: 30 mm"
+	switch {
+	case has("length") != has("width"):
+		r.fault(e.value, e.path, "a rectangle needs length and width", "length is the side along the shear")
+	case sides && has("diameter"):
+		r.fault(e.value, e.path, "both a diameter and sides", forms)
+	case has("area") && (sides || has("diameter")):
+		r.fault(keys["area"].key, keys["area"].path, "the area follows from the other dimensions", "leave it out")
+	case !has("area") && !sides && !has("diameter"):
+		r.fault(e.value, join(e.path, "area"), "missing", forms)
+	case sides:
+		p.Area = p.Length * p.Width
+	case has("diameter"):
+		p.Area = math.Pi / 4 * p.Diameter * p.Diameter
+	}
+	if p.Bending && has("area") && !sides && !has("diameter") {
+		r.fault(keys["bending"].value, keys["bending"].path, "bending depends on the section, not on its area alone", "state the diameter, or length and width")
+	}
+	return p
+}
+
+// measured reads a measured part.
+func (r *reader) measured(e entry) *Measured {
+	keys := r.mapping(e.value, e.path, "measured", "strain_per_displacement")
+	m := &Measured{StrainPerDisplacement: r.amount(keys, "strain_per_displacement", unit.StrainPerLength, false)}
+	if _, ok := keys["strain_per_displacement"]; !ok {
+		r.fault(e.value, join(e.path, "strain_per_displacement"), "missing", "the shear strain for a displacement, for example 4 %/mm; for a pad in shear it is 1/thickness")
+	}
+	at := keys["measured"]
+	in := r.mapping(at.value, at.path, "stiffness", "part", "loss_factor", "loss_angle", "frequency", "temperature", "amplitude", "static_load", "u")
+	if in == nil {
+		return m
+	}
+	m.Stiffness = r.amount(in, "stiffness", unit.Stiffness, false)
+	m.LossFactor = r.number(in, "loss_factor")
+	m.Frequency = r.amount(in, "frequency", unit.Frequency, false)
+	m.Amplitude = r.amount(in, "amplitude", unit.Length, true)
+	m.StaticLoad = r.amount(in, "static_load", unit.Force, true)
+	m.U = r.amount(in, "u", unit.Relative, true)
+	m.Temperature = math.NaN()
+	if t, ok := in["temperature"]; ok {
+		if x, good := r.quantity(t, unit.Temperature); good {
+			m.Temperature = x
+		}
+	}
+	for _, needed := range []struct{ key, example string }{
+		{"stiffness", "420 N/mm"}, {"frequency", "15 Hz"}, {"temperature", "23 °C"}, {"amplitude", "0.5 mm"},
+	} {
+		if _, ok := in[needed.key]; !ok {
+			r.fault(at.value, join(at.path, needed.key), "missing", "for example "+needed.key+": "+needed.example)
+		}
+	}
+	if a, ok := in["loss_angle"]; ok {
+		x, good := r.quantity(a, unit.Angle)
+		switch _, both := in["loss_factor"]; {
+		case both:
+			r.fault(a.key, a.path, "beside loss_factor", "state one of the two")
+		case good && (x <= 0 || x >= math.Pi/2):
+			r.fault(a.value, a.path, "must lie between 0 and 90 degrees", "")
+		case good:
+			m.LossFactor = math.Tan(x)
+		}
+	}
+	if p, ok := in["part"]; ok {
+		switch part := r.text(p); part {
+		case "magnitude":
+		case "storage":
+			m.Storage = true
+		default:
+			r.fault(p.value, p.path, fmt.Sprintf("want magnitude or storage, not %q", part), "")
+		}
+	}
+	return m
+}
+
+// press checks that an element can stand in an inclined pair.
+func (r *reader) press(e Element, at entry) {
+	path := "elements." + e.Name
+	switch {
+	case e.Measured != nil:
+		r.fault(at.value, path, "a measured element has one stiffness, an inclined pair needs two", "enter the pair as one measured element")
+	case e.Pad == nil: // its own fault was reported
+	case math.IsNaN(e.Pad.ShapeFactor()):
+		r.fault(at.value, path, "an inclined pair presses its pads, and that depends on their section", "state the diameter, or length and width")
+	case math.IsNaN(e.Pad.Compression):
+		r.fault(at.value, path+".compression_coefficient", "missing", "k of E_c = 3G(1+2kS²): 1 for unfilled rubber, less for filled, about 0.6 at 60 IRHD")
+	}
+}
+
+// assume lists what the file left open.
+func (r *reader) assume(m *Mount) {
+	add := func(format string, args ...any) { m.Assumptions = append(m.Assumptions, fmt.Sprintf(format, args...)) }
+	for i, e := range m.Elements {
+		switch {
+		case e.Measured != nil && math.IsNaN(e.Measured.LossFactor):
+			add("%s: the loss factor at the measured condition is the compound's", e.Name)
+		case e.Pad != nil && !e.Pad.Bending:
+			add("%s: simple shear; bending and the influence of the load are left out", e.Name)
+		case e.Pad != nil:
+			add("%s: the influence of the load is left out", e.Name)
+		}
+		if i < len(r.pressed) && r.pressed[i] && e.Pad != nil && math.IsNaN(e.Pad.Bulk) {
+			add("%s: incompressible rubber in compression", e.Name)
+		}
+	}
+	if math.IsNaN(m.PartFactorU) {
+		add("the factor from specimen to part is %g, without an uncertainty", m.PartFactor)
+	}
+}
