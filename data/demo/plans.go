@@ -90,7 +90,7 @@ func LiquidPlan() Plan {
 	p := IsothermPlan()
 	p.Title = "a liquid"
 	p.Polymer, p.Hardness, p.Density = "", "", ""
-	p.Tests[0].Temperatures = Steps(10, 70, 10)
+	p.Tests[0].Temperatures = Steps(0, 60, 10)
 	p.Tests[0].Frequencies = Decades(0.05, 20, 27)
 	p.Tests[0].Strains = []float64{0.1}
 	p.Tests[0].Conditioning = ""
