@@ -72,12 +72,12 @@ func TestFoam(t *testing.T) {
 
 // Five asphalt binders, with loss angles up to 90° (US FHWA): they are liquids,
 // not rubbers with exchanged columns. What is found is in the numbers: strain
-// that starts low, and replicates far apart where the binder is thin.
+// that starts low, and replicates that differ.
 func TestBinders(t *testing.T) {
 	column, list := records(t, "binder-sweeps", "frequency-sweeps.csv")
 	tests := map[string]*data.Test{}
 	var order []string
-	last := ""
+	runs := map[string]int{} // a replicate's rows stand apart
 	for i, r := range list {
 		x := func(h string) float64 { return number(t, r[column[h]]) }
 		lane := r[column["lane_condition"]]
@@ -87,11 +87,12 @@ func TestBinders(t *testing.T) {
 		}
 		test := tests[lane]
 		kelvin := x("temperature_C") + 273.15
-		if key := lane + r[column["rep"]] + r[column["temperature_C"]]; key != last {
-			last = key
+		key := lane + ";" + r[column["rep"]] + ";" + r[column["temperature_C"]]
+		if _, ok := runs[key]; !ok {
+			runs[key] = len(test.Runs)
 			test.Runs = append(test.Runs, data.Run{Name: celsius(kelvin) + ", " + r[column["rep"]], Temperature: kelvin, Frequency: math.NaN(), Strain: math.NaN()})
 		}
-		run := &test.Runs[len(test.Runs)-1]
+		run := &test.Runs[runs[key]]
 		run.Points = append(run.Points, data.Point{
 			File: "frequency-sweeps.csv", Row: i + 2, Used: true,
 			Frequency: x("angular_frequency_rad_s") / (2 * math.Pi), Temperature: kelvin, Strain: x("strain_percent") / 100, Time: math.NaN(),

@@ -7,14 +7,20 @@ import (
 	"phaselag/data"
 )
 
+// What repeats may differ by: 3 % of the modulus and 1° of the loss angle; five
+// times as much is severe. Two specimens of 1.5 % uncertainty of geometry stay
+// below.
+const (
+	repeatModulus = 0.03
+	repeatAngle   = 1.0
+)
+
 // repeats finds runs of one kind at one condition that disagree: by more than
 // 3 % of the modulus or 1° of the loss angle, in the median over what they have
 // in common. Two runs repeat each other when they are runs of the same kind,
 // their temperatures are within half a kelvin and their strains within 5 %; the
 // points compared agree in frequency (1 %), or in time, or in the strain of a
 // strain sweep. Of a temperature sweep nothing repeats.
-//
-// What two specimens of 1.5 % uncertainty of geometry differ by stays below.
 func repeats(c *data.Campaign) (list []data.Finding) {
 	type run struct {
 		test string
@@ -31,8 +37,16 @@ func repeats(c *data.Campaign) (list []data.Finding) {
 			runs = append(runs, run{t.Name, t.Kind, r, used(r)})
 		}
 	}
-	for i, a := range runs {
-		for _, b := range runs[i+1:] {
+	type disagreement struct {
+		ratio, turn float64
+		text        string
+	}
+	var tests []string // by their later run, in the order found
+	found := map[string][]disagreement{}
+	points := map[string][]data.Point{}
+	pairs := map[string]int{}
+	for i, b := range runs {
+		for _, a := range runs[:i] {
 			if a.kind != b.kind || !(math.Abs(a.Temperature-b.Temperature) <= 0.5) ||
 				!alike(a.Frequency, b.Frequency, 0.01) || !alike(a.Strain, b.Strain, 0.05) {
 				continue
@@ -41,25 +55,43 @@ func repeats(c *data.Campaign) (list []data.Finding) {
 			if len(ratios) == 0 {
 				continue
 			}
-			ratio, turn := median(ratios)-1, median(turns)
-			if math.Abs(ratio) <= 0.03 && !(math.Abs(turn) > 1) {
+			pairs[b.test]++
+			d := disagreement{ratio: median(ratios) - 1, turn: median(turns)}
+			if math.Abs(d.ratio) <= repeatModulus && !(math.Abs(d.turn) > repeatAngle) {
 				continue
 			}
-			f := data.Finding{
-				Code: "repeats-disagree", Severity: data.Doubt, Test: b.test, Rows: rows(common),
-				Evidence: fmt.Sprintf("%s and %s: |%s*| differs by %+.2g %%", a.Name, b.Name, symbol(c), 100*ratio),
-				Cause:    "conditioning, mounting or geometry of the specimens, or another batch",
-				Remedy:   "say which specimen and mounting each run belongs to; measure once more",
+			d.text = fmt.Sprintf("%s against %s: |%s*| %+.2g %%", b.Name, a.Name, symbol(c), 100*d.ratio)
+			if !math.IsNaN(d.turn) {
+				d.text += fmt.Sprintf(", loss angle %+.2g°", d.turn)
 			}
-			if !math.IsNaN(turn) {
-				f.Evidence += fmt.Sprintf(", the loss angle by %+.2g°", turn)
+			if len(found[b.test]) == 0 {
+				tests = append(tests, b.test)
 			}
-			f.Evidence += fmt.Sprintf(" (median of %d points)", len(ratios))
-			if math.Abs(ratio) > 0.15 || math.Abs(turn) > 5 {
-				f.Severity = data.Severe
-			}
-			list = append(list, f)
+			found[b.test] = append(found[b.test], d)
+			points[b.test] = append(points[b.test], common...)
 		}
+	}
+	for _, test := range tests {
+		worst, size := disagreement{}, 0.0
+		for _, d := range found[test] {
+			s := math.Abs(d.ratio) / repeatModulus
+			if !math.IsNaN(d.turn) {
+				s = math.Max(s, math.Abs(d.turn)/repeatAngle)
+			}
+			if s > size {
+				worst, size = d, s
+			}
+		}
+		f := data.Finding{
+			Code: "repeats-disagree", Severity: data.Doubt, Test: test, Rows: rows(points[test]),
+			Evidence: fmt.Sprintf("%d of %d pairs of repeated runs disagree; worst: %s", len(found[test]), pairs[test], worst.text),
+			Cause:    "conditioning, mounting or geometry of the specimens, the temperature, or another batch",
+			Remedy:   "say which specimen and mounting each run belongs to; measure once more",
+		}
+		if size > 5 {
+			f.Severity = data.Severe
+		}
+		list = append(list, f)
 	}
 	return list
 }
