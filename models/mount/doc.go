@@ -1,7 +1,7 @@
 // Package mount turns a compound's modulus into the complex stiffness of a
 // rubber mount, and reads the file that describes one.
 //
-// A mount is a tree: elements (a pad in shear, or a part whose stiffness was
+// A mount is a tree: elements (a pad, a bush, or a part whose stiffness was
 // measured) joined in parallel, in series or as an inclined pair. Everything is
 // SI: m, N, N/m, Pa, kg, rad; amplitudes are single amplitudes (zero to peak);
 // "not stated" is NaN. Stiffness is complex, K* = K' + iK”, with K”/K' the loss
@@ -30,6 +30,9 @@
 //     (along the shear) and a width. bending: true subtracts the bending of a
 //     thick pad and needs the sides or the diameter. compression_coefficient (k
 //     of 1+2kS²) and bulk_modulus are used where an inclined pair presses the pad.
+//   - A compression pad is a pad moved along its normal. It needs its section and
+//     a compression_coefficient.
+//   - An axial bush has inner_diameter, outer_diameter and length.
 //   - A measured element has the stiffness of a part at one condition; part says
 //     whether the number is the magnitude (the default) or the storage part.
 //     Without loss_factor or loss_angle its phase is the compound's there.

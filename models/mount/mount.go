@@ -50,9 +50,10 @@ type Arrangement struct {
 	Members []Arrangement // of Parallel and Series, at least one
 }
 
-// Element is a pad or a part; exactly one of the two is set.
+// Element is a pad, a bush or a measured part; exactly one of them is set.
 type Element struct {
 	Name     string
-	Pad      *ShearPad
+	Pad      *Pad
+	Bush     *Bush
 	Measured *Measured
 }

@@ -2,7 +2,7 @@ package mount
 
 import "math"
 
-// ShearPad is one layer of rubber between two rigid plates that stay parallel.
+// Pad is one layer of rubber between two rigid plates that stay parallel.
 //
 // Its stiffness in shear is that of simple shear, and with the bending of the
 // pad as a beam guided at both ends, E = 3G,
@@ -19,7 +19,7 @@ import "math"
 //
 // A thick pad under load leans: both neglect the softening by the load itself,
 // and the real and the imaginary part are shaped by the same factors.
-type ShearPad struct {
+type Pad struct {
 	Area      float64 // m²
 	Thickness float64 // m
 	Length    float64 // m, along the shear; NaN if not stated
@@ -29,15 +29,16 @@ type ShearPad struct {
 	// Compression is the coefficient κ of E_c; NaN if not stated.
 	Compression float64
 	Bulk        float64 // Pa; NaN: incompressible
+	Pressed     bool    // moved along its normal instead of along its faces
 }
 
 // Shear returns the stiffness in shear in N/m at the shear modulus g in Pa.
-func (p ShearPad) Shear(g complex128) complex128 {
+func (p Pad) Shear(g complex128) complex128 {
 	return g * complex(p.Area/p.Thickness*p.bending(), 0)
 }
 
 // bending returns the factor of bending, 1 where it is not asked for.
-func (p ShearPad) bending() float64 {
+func (p Pad) bending() float64 {
 	if !p.Bending {
 		return 1
 	}
@@ -46,7 +47,7 @@ func (p ShearPad) bending() float64 {
 
 // gyration returns k², the square of the radius of gyration of the section
 // about the axis across the shear; NaN if the section is not stated.
-func (p ShearPad) gyration() float64 {
+func (p Pad) gyration() float64 {
 	if !math.IsNaN(p.Diameter) {
 		return p.Diameter * p.Diameter / 16
 	}
@@ -55,7 +56,7 @@ func (p ShearPad) gyration() float64 {
 
 // ShapeFactor returns loaded by force-free area; NaN if the section is not
 // stated.
-func (p ShearPad) ShapeFactor() float64 {
+func (p Pad) ShapeFactor() float64 {
 	if !math.IsNaN(p.Diameter) {
 		return p.Diameter / (4 * p.Thickness)
 	}
@@ -63,14 +64,14 @@ func (p ShearPad) ShapeFactor() float64 {
 }
 
 // stiffening returns E_c/G of the incompressible pad, 3(1+2κS²).
-func (p ShearPad) stiffening() float64 {
+func (p Pad) stiffening() float64 {
 	s := p.ShapeFactor()
 	return 3 * (1 + 2*p.Compression*s*s)
 }
 
 // Press returns the stiffness when pressed in N/m at the shear modulus g in Pa,
 // and its derivative by g in m.
-func (p ShearPad) Press(g complex128) (k, derivative complex128) {
+func (p Pad) Press(g complex128) (k, derivative complex128) {
 	shape := complex(p.Area/p.Thickness, 0)
 	c := complex(p.stiffening(), 0)
 	if math.IsNaN(p.Bulk) {

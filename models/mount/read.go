@@ -215,7 +215,7 @@ func (r *reader) amount(keys map[string]entry, key string, q unit.Quantity, zero
 // quantity returns a number with its unit.
 func (r *reader) quantity(e entry, q unit.Quantity) (float64, bool) {
 	if e.value.Kind != yaml.ScalarNode || e.value.Tag == "!!null" {
-		r.fault(e.value, e.path, fmt.Sprintf("want a %s with its unit, not %s", q, kind(e.value)), "for example "+example(q))
+		r.fault(e.value, e.path, fmt.Sprintf("want %s with its unit, not %s", q, kind(e.value)), "for example "+example(q))
 		return 0, false
 	}
 	x, err := unit.Parse(e.value.Value, q)

@@ -34,7 +34,6 @@ func (r *reader) elements(e entry) []Element {
 // element, so that its name is known to the arrangement.
 func (r *reader) oneElement(e entry) Element {
 	el := Element{Name: e.key.Value}
-	known := []string{"shape", "area", "thickness", "length", "width", "diameter", "bending", "compression_coefficient", "bulk_modulus"}
 	measured := false
 	if e.value.Kind == yaml.MappingNode {
 		for i := 0; i < len(e.value.Content); i += 2 {
@@ -45,29 +44,75 @@ func (r *reader) oneElement(e entry) Element {
 		el.Measured = r.measured(e)
 		return el
 	}
-	keys := r.mapping(e.value, e.path, append(known, "measured", "strain_per_displacement")...)
+	keys := r.mapping(e.value, e.path, elementKeys...)
 	if keys == nil {
 		return el
 	}
+	if s, ok := keys["strain_per_displacement"]; ok {
+		r.fault(s.key, s.path, "belongs to a measured element", "the strain of a shape follows from its dimensions")
+	}
 	shape, ok := keys["shape"]
-	switch {
-	case !ok:
+	if !ok {
 		r.fault(e.value, join(e.path, "shape"), "missing", "shape: shear pad, or measured: {stiffness: 420 N/mm, ...}")
 		return el
-	case r.text(shape) != "shear pad":
-		r.fault(shape.value, shape.path, "unknown shape "+kind(shape.value), "the shape known is shear pad; anything else can be entered as measured")
-		return el
 	}
-	if s, ok := keys["strain_per_displacement"]; ok {
-		r.fault(s.key, s.path, "belongs to a measured element", "a shear pad's strain is its displacement divided by its thickness")
+	switch r.text(shape) {
+	case "shear pad":
+		r.foreign(keys, "a bush", "inner_diameter", "outer_diameter")
+		el.Pad = r.pad(e, keys)
+	case "compression pad":
+		r.foreign(keys, "a bush", "inner_diameter", "outer_diameter")
+		r.foreign(keys, "a shear pad", "bending")
+		el.Pad = r.pad(e, keys)
+		el.Pad.Pressed = true
+		r.press(el, e.key, "a compression pad's stiffness depends")
+	case "axial bush":
+		r.foreign(keys, "a pad", "area", "thickness", "width", "diameter", "bending", "compression_coefficient", "bulk_modulus")
+		el.Bush = r.bush(e, keys)
+	default:
+		r.fault(shape.value, shape.path, "unknown shape "+kind(shape.value), "known are shear pad, compression pad and axial bush; anything else can be entered as measured")
 	}
-	el.Pad = r.pad(e, keys)
 	return el
 }
 
-// pad reads a shear pad.
-func (r *reader) pad(e entry, keys map[string]entry) *ShearPad {
-	p := &ShearPad{
+// elementKeys are the keys of an element that is not measured.
+var elementKeys = []string{
+	"shape", "area", "thickness", "length", "width", "diameter", "inner_diameter", "outer_diameter",
+	"bending", "compression_coefficient", "bulk_modulus", "measured", "strain_per_displacement",
+}
+
+// foreign reports keys of another shape.
+func (r *reader) foreign(keys map[string]entry, owner string, names ...string) {
+	for _, n := range names {
+		if e, ok := keys[n]; ok {
+			r.fault(e.key, e.path, "belongs to "+owner, "leave it out")
+		}
+	}
+}
+
+// bush reads an axial bush.
+func (r *reader) bush(e entry, keys map[string]entry) *Bush {
+	b := &Bush{
+		Inner:  r.amount(keys, "inner_diameter", unit.Length, false) / 2,
+		Outer:  r.amount(keys, "outer_diameter", unit.Length, false) / 2,
+		Length: r.amount(keys, "length", unit.Length, false),
+	}
+	for _, needed := range []struct{ key, hint string }{
+		{"inner_diameter", "the rubber's inner diameter"}, {"outer_diameter", "the rubber's outer diameter"}, {"length", "the rubber's length along the axis"},
+	} {
+		if _, ok := keys[needed.key]; !ok {
+			r.fault(e.value, join(e.path, needed.key), "missing", needed.hint+", for example 20 mm")
+		}
+	}
+	if b.Outer <= b.Inner {
+		r.fault(keys["outer_diameter"].value, keys["outer_diameter"].path, "must be greater than inner_diameter", "")
+	}
+	return b
+}
+
+// pad reads a pad.
+func (r *reader) pad(e entry, keys map[string]entry) *Pad {
+	p := &Pad{
 		Area:        r.amount(keys, "area", unit.Area, false),
 		Thickness:   r.amount(keys, "thickness", unit.Length, false),
 		Length:      r.amount(keys, "length", unit.Length, false),
@@ -157,17 +202,17 @@ func (r *reader) measured(e entry) *Measured {
 	return m
 }
 
-// press checks that an element can stand in an inclined pair.
-func (r *reader) press(e Element, at entry) {
+// press checks that an element can be pressed; it says why it must be.
+func (r *reader) press(e Element, at *yaml.Node, why string) {
 	path := "elements." + e.Name
 	switch {
-	case e.Measured != nil:
-		r.fault(at.value, path, "a measured element has one stiffness, an inclined pair needs two", "enter the pair as one measured element")
+	case e.Measured != nil || e.Bush != nil:
+		r.fault(at, path, "an inclined pair needs a pad, which has a stiffness along and across its faces", "enter the pair as one measured element")
 	case e.Pad == nil: // its own fault was reported
 	case math.IsNaN(e.Pad.ShapeFactor()):
-		r.fault(at.value, path, "an inclined pair presses its pads, and that depends on their section", "state the diameter, or length and width")
+		r.fault(at, path, why+" on the pad's section", "state the diameter, or length and width")
 	case math.IsNaN(e.Pad.Compression):
-		r.fault(at.value, path+".compression_coefficient", "missing", "k of E_c = 3G(1+2kS²): 1 for unfilled rubber, less for filled, about 0.6 at 60 IRHD")
+		r.fault(at, path+".compression_coefficient", "missing", "k of E_c = 3G(1+2kS²): 1 for unfilled rubber, less for filled, about 0.6 at 60 IRHD")
 	}
 }
 
@@ -178,12 +223,17 @@ func (r *reader) assume(m *Mount) {
 		switch {
 		case e.Measured != nil && math.IsNaN(e.Measured.LossFactor):
 			add("%s: the loss factor at the measured condition is the compound's", e.Name)
+		case e.Bush != nil:
+			add("%s: a long bush; its ends are left out", e.Name)
+		case e.Pad != nil && e.Pad.Pressed:
+			add("%s: bonded compression; the influence of the load is left out", e.Name)
 		case e.Pad != nil && !e.Pad.Bending:
 			add("%s: simple shear; bending and the influence of the load are left out", e.Name)
 		case e.Pad != nil:
 			add("%s: the influence of the load is left out", e.Name)
 		}
-		if i < len(r.pressed) && r.pressed[i] && e.Pad != nil && math.IsNaN(e.Pad.Bulk) {
+		pressed := e.Pad != nil && (e.Pad.Pressed || i < len(r.pressed) && r.pressed[i])
+		if pressed && math.IsNaN(e.Pad.Bulk) {
 			add("%s: incompressible rubber in compression", e.Name)
 		}
 	}

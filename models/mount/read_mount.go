@@ -107,7 +107,7 @@ func (r *reader) arrangement(m *Mount, n *yaml.Node, keys map[string]entry) {
 	}
 	for i, pressed := range r.pressed {
 		if pressed {
-			r.press(m.Elements[i], e)
+			r.press(m.Elements[i], e.value, "an inclined pair presses its pads, and their stiffness depends")
 		}
 	}
 }

@@ -79,6 +79,14 @@ func TestReadShortest(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	b, err := read(t, "elements: {b: {shape: axial bush, inner_diameter: 20 mm, outer_diameter: 40 mm, length: 40 mm}, p: {shape: compression pad, diameter: 50 mm, thickness: 10 mm, compression_coefficient: 0.6}}\narrangement: {series: [b, p]}")
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "bush", b.Elements[0].Bush.Outer, 0.02, 1e-12)
+	if !b.Elements[1].Pad.Pressed || b.Elements[1].Pad.Bending {
+		t.Errorf("%+v", b.Elements[1].Pad)
+	}
 	near(t, "loss angle", m.Elements[0].Measured.LossFactor, 1, 1e-12)
 	near(t, "force", m.Excitation.Force, 5, 0)
 }
@@ -106,7 +114,7 @@ func TestReadFaults(t *testing.T) {
 		{"element a word", "elements: {pad: thick}\n", `m.yaml:1:17: elements.pad: want keys and values, not "thick"`, "shape"},
 		{"wrong unit", "elements: {pad: {shape: shear pad, area: 12 mm, thickness: 1 mm}}\n", "m.yaml:1:42: elements.pad.area: ", "mm"},
 		{"no unit", "elements: {pad: {shape: shear pad, area: 12, thickness: 1 mm}}\n", "m.yaml:1:42: elements.pad.area: ", "mm"},
-		{"null", "elements: {pad: {shape: shear pad, area: , thickness: 1 mm}}\n", "elements.pad.area: want a area with its unit, not nothing", ""},
+		{"null", "elements: {pad: {shape: shear pad, area: , thickness: 1 mm}}\n", "elements.pad.area: want area with its unit, not nothing", ""},
 		{"negative", "elements: {pad: {shape: shear pad, area: -12 mm2, thickness: 1 mm}}\n", "elements.pad.area: must be positive", ""},
 		{"zero", "elements: {pad: {shape: shear pad, area: 12 mm2, thickness: 0 mm}}\n", "elements.pad.thickness: must be positive", ""},
 		{"not finite", "elements: {pad: {shape: shear pad, area: .inf mm2, thickness: 1 mm}}\n", "elements.pad.area: ", ""},
@@ -122,13 +130,19 @@ func TestReadFaults(t *testing.T) {
 		{"measured, wrong part", "elements: {b: {measured: {stiffness: 1 N/mm, part: loss, frequency: 1 Hz, temperature: 0 C, amplitude: 1 mm}, strain_per_displacement: 1 %/mm}}\n", "elements.b.measured.part: want magnitude or storage", ""},
 		{"measured, too cold", "elements: {b: {measured: {stiffness: 1 N/mm, frequency: 1 Hz, temperature: -300 C, amplitude: 1 mm}, strain_per_displacement: 1 %/mm}}\n", "elements.b.measured.temperature: ", ""},
 		{"measured, loss twice", "elements: {b: {measured: {stiffness: 1 N/mm, loss_factor: 1, loss_angle: 45 deg, frequency: 1 Hz, temperature: 0 C, amplitude: 1 mm}, strain_per_displacement: 1 %/mm}}\n", "loss_angle: beside loss_factor", "one"},
+		{"pressed without coefficient", "elements: {a: {shape: compression pad, diameter: 20 mm, thickness: 5 mm}}\n", "m.yaml:1:12: elements.a.compression_coefficient: missing", "60 IRHD"},
+		{"pressed area", "elements: {a: {shape: compression pad, area: 20 mm2, thickness: 5 mm}}\n", "elements.a: a compression pad's stiffness depends on", "diameter"},
+		{"bush of no thickness", "elements: {a: {shape: axial bush, inner_diameter: 20 mm, outer_diameter: 2 cm, length: 5 mm}}\n", "elements.a.outer_diameter: must be greater", ""},
+		{"half a bush", "elements: {a: {shape: axial bush, inner_diameter: 20 mm, length: 5 mm}}\n", "elements.a.outer_diameter: missing", "20 mm"},
+		{"bush with area", "elements: {a: {shape: axial bush, inner_diameter: 20 mm, outer_diameter: 30 mm, length: 5 mm, area: 3 mm2}}\n", "elements.a.area: belongs to a pad", "leave"},
+		{"pair of bushes", "direction: vertical\nelements: {a: {shape: axial bush, inner_diameter: 20 mm, outer_diameter: 30 mm, length: 5 mm}}\narrangement: {inclined_pair: a, angle: 30 deg}\n", "elements.a: an inclined pair needs a pad", "measured"},
 		{"no arrangement", two, "arrangement: missing", "parallel: [a, b]"},
 		{"unknown element", two + "arrangement: {series: [a, c]}\n", `m.yaml:5:27: arrangement.series[1]: no element is called "c"`, ""},
 		{"two forms", two + "arrangement: {series: [a], parallel: [b]}\n", "arrangement: want one of parallel", "nest"},
 		{"no members", two + "arrangement: {series: []}\n", "arrangement.series: want a list of members", "pad"},
 		{"angle alone", two + "arrangement: {angle: 3 deg}\n", "arrangement: an angle without", ""},
 		{"pair without angle", two + "arrangement: {inclined_pair: a}\n", "arrangement.angle: missing", "vertical"},
-		{"pair of an area", two + "arrangement: {inclined_pair: a, angle: 30 deg}\n", "elements.a: an inclined pair presses its pads", "diameter"},
+		{"pair of an area", two + "arrangement: {inclined_pair: a, angle: 30 deg}\n", "elements.a: an inclined pair presses its pads, and their stiffness depends on the pad's section", "diameter"},
 		{"pair without direction", pad + "arrangement: {inclined_pair: pad, angle: 30 deg}\n", "arrangement: an inclined pair has", "direction: vertical"},
 		{"pair too steep", two + "arrangement: {inclined_pair: a, angle: 120 deg}\n", "arrangement.angle: must lie between", ""},
 		{"half a mount", pad + "count: 2.5\n", "m.yaml:2:8: count: want a whole number", ""},

@@ -160,7 +160,12 @@ func (m *Mount) stiffness(a *Arrangement, l *Leaf) (k, slope complex128) {
 		slope = e.Measured.reference(l.ReferenceModulus) / l.ReferenceModulus
 		return slope * l.Modulus, slope
 	}
-	if a.Kind == Single {
+	switch {
+	case e.Bush != nil:
+		return e.Bush.Axial(l.Modulus), e.Bush.Axial(1)
+	case a.Kind == Single && e.Pad.Pressed:
+		return e.Pad.Press(l.Modulus)
+	case a.Kind == Single:
 		return e.Pad.Shear(l.Modulus), e.Pad.Shear(1)
 	}
 	// The normal stands at Angle to the vertical: a vertical movement x presses
@@ -180,8 +185,14 @@ func (m *Mount) strain(a *Arrangement, displacement float64) float64 {
 	if e.Measured != nil {
 		return displacement * e.Measured.StrainPerDisplacement
 	}
+	if e.Bush != nil {
+		return displacement / (e.Bush.Outer - e.Bush.Inner)
+	}
 	perThickness := displacement / e.Pad.Thickness
-	if a.Kind == Single {
+	switch {
+	case a.Kind == Single && e.Pad.Pressed:
+		return perThickness * math.Sqrt(e.Pad.stiffening())
+	case a.Kind == Single:
 		return perThickness
 	}
 	normal, along := a.components()

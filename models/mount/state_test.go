@@ -22,9 +22,9 @@ func nearComplex(t *testing.T, what string, got, want complex128, relative float
 }
 
 // disc is a round pad with dimensions in mm.
-func disc(diameter, thickness float64) *ShearPad {
+func disc(diameter, thickness float64) *Pad {
 	d, t := diameter/1000, thickness/1000
-	return &ShearPad{Area: math.Pi / 4 * d * d, Thickness: t, Diameter: d, Length: math.NaN(), Width: math.NaN(), Compression: math.NaN(), Bulk: math.NaN()}
+	return &Pad{Area: math.Pi / 4 * d * d, Thickness: t, Diameter: d, Length: math.NaN(), Width: math.NaN(), Compression: math.NaN(), Bulk: math.NaN()}
 }
 
 // A disc of 50 mm by 10 mm with G = 0.64 MPa, and the factors of bending of
@@ -41,7 +41,7 @@ func TestShearPad(t *testing.T) {
 		near(t, "factor of bending", p.bending(), c.factor, 1e-6)
 	}
 	// A rectangle leans over its length: thicker along the shear is stiffer.
-	block := ShearPad{Area: 6e-4, Thickness: 0.02, Length: 0.03, Width: 0.02, Diameter: math.NaN(), Bending: true}
+	block := Pad{Area: 6e-4, Thickness: 0.02, Length: 0.03, Width: 0.02, Diameter: math.NaN(), Bending: true}
 	near(t, "rectangle", block.bending(), 1/(1+0.02*0.02/(36*0.03*0.03/12)), 1e-14)
 }
 
@@ -68,7 +68,7 @@ func TestPress(t *testing.T) {
 		up, _ := p.Press(g * (1 + 1e-6))
 		nearComplex(t, "derivative", slope, (up-k)/(g*1e-6), 1e-5)
 	}
-	block := ShearPad{Length: 0.1, Width: 0.05, Thickness: 0.02, Diameter: math.NaN(), Compression: 0.73}
+	block := Pad{Length: 0.1, Width: 0.05, Thickness: 0.02, Diameter: math.NaN(), Compression: 0.73}
 	near(t, "block's shape factor", block.ShapeFactor(), 0.833333333333, 1e-11)
 	// 100 × 50 × 20 mm: E_c 4.430556 MPa, computed independently in double precision.
 	near(t, "block's E_c", block.stiffening()*2.20e6/3, 4.430556e6, 1e-6)
