@@ -140,6 +140,9 @@ func (a *answer) compound() (*models.Compound, error) {
 		}
 	}
 
+	if r := cov.PhaseRoot(); r != nil {
+		keep(models.ParamPhase, scaled(r, 180/math.Pi))
+	}
 	// Errors that all measurements share, independent of the fit.
 	n := 0
 	if len(roots) > 0 {
@@ -151,7 +154,6 @@ func (a *answer) compound() (*models.Compound, error) {
 	}{
 		{models.ParamSpecimen, a.problem.UGeometry / math.Sqrt(float64(a.problem.Factors))},
 		{models.ParamTemperature, a.campaign.Uncertainty.TemperatureCommon},
-		{models.ParamPhase, a.campaign.Uncertainty.Phase * 180 / math.Pi},
 	}
 	var extra []int
 	for k, u := range common {
@@ -289,7 +291,7 @@ func (a *answer) factors() []models.ShiftFactor {
 	}
 	cov := s.Covariance()
 	for i, T := range a.problem.Knots {
-		u := cov.LogShift(T).Deviation()
+		u := math.Hypot(cov.LogShift(T).Deviation(), a.commonShift(T))
 		f := models.ShiftFactor{TemperatureC: degreesC(T), LogShift: number(s.LogShift(T)), U: number(u), Offset: number(a.knotOffset(i))}
 		if !(u <= notDetermined) {
 			f.U = unit.NaN()

@@ -279,6 +279,9 @@ func (t *task) build(reference float64, amp amplitudeData) {
 	if math.IsNaN(p.UGeometry) {
 		p.UGeometry = 0
 	}
+	if u := c.Uncertainty.Phase; u > 0 {
+		p.UPhase = u
+	}
 	pieceOf := map[piece]int{}
 	kindOf := map[data.Kind]int{}
 	t.eachRun(func(ref runRef, test *data.Test, run *data.Run) {

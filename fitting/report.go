@@ -107,6 +107,7 @@ func (r *Result) noNil() {
 	empty(&r.Findings)
 	empty(&r.Assumptions)
 	empty(&r.Inputs)
+	empty(&r.Files)
 }
 
 func empty[T any](s *[]T) {
@@ -175,8 +176,12 @@ func (a *answer) fill(r *Result) {
 	switch s.Form.Law {
 	case superpose.WLF:
 		c1, c2 := s.Theta[idx.Law], s.Theta[idx.Law+1]
-		param("C1", "", c1, cov.Theta(idx.Law).Deviation(), math.Abs(c1)/2)
-		param("C2", "K", c2, cov.Theta(idx.Law+1).Deviation(), math.Abs(c2)/2)
+		common := a.campaign.Uncertainty.TemperatureCommon
+		if math.IsNaN(common) {
+			common = 0
+		}
+		param("C1", "", c1, math.Hypot(cov.Theta(idx.Law).Deviation(), c1/c2*common), math.Abs(c1)/2)
+		param("C2", "K", c2, math.Hypot(cov.Theta(idx.Law+1).Deviation(), common), math.Abs(c2)/2)
 	case superpose.Arrhenius:
 		e := s.Theta[idx.Law]
 		param("activation energy of the shift", "kJ/mol", e, cov.Theta(idx.Law).Deviation(), math.Abs(e)/2)
@@ -200,6 +205,9 @@ func (a *answer) fill(r *Result) {
 		if idx.Activation >= 0 {
 			param("filler activation energy", "kJ/mol", s.Activation(), cov.Theta(idx.Activation).Deviation(), 5)
 		}
+	}
+	if root := cov.PhaseRoot(); root != nil {
+		param("common phase error", "°", deg(s.Phase()), deg(root.Deviation()), math.Inf(1))
 	}
 	for i, p := range a.pieces {
 		f := SpecimenFactor{Specimen: p.specimen, Mounting: p.mounting, Factor: number(s.Factor(i)), U: number(a.problem.UGeometry)}
@@ -245,6 +253,16 @@ func (a *answer) fill(r *Result) {
 	}
 }
 
+// commonShift is what the calibration of temperature adds to the uncertainty of
+// log a_T: it moves T and T_ref together.
+func (a *answer) commonShift(T float64) float64 {
+	u, law := a.campaign.Uncertainty.TemperatureCommon, a.final.Law()
+	if law == nil || !(u > 0) {
+		return 0
+	}
+	return u * math.Abs(law.Slope(T)-law.Slope(a.reference))
+}
+
 // preferredC are the temperatures of ISO 23529 and ASTM D1349-09, °C, at which
 // constants and properties are stated (ASTM list: its public summary).
 var preferredC = []float64{-75, -70, -55, -40, -25, -10, 0, 23, 35, 40, 50, 55, 70, 85, 90, 100, 105, 120, 125, 130, 135, 150, 155, 160, 175, 180, 200, 225, 250, 275, 300}
@@ -270,6 +288,7 @@ func (a *answer) fillShifts(r *Result, cov *superpose.Covariance) {
 	overlap := a.overlapShifts()
 	for i, T := range a.problem.Knots {
 		u := freeCov.LogShift(T).Deviation()
+		u = math.Hypot(u, a.commonShift(T))
 		row := Shift{
 			TemperatureC: number(degreesC(T)), Log: number(a.free.LogShift(T)), U: number(u),
 			Overlap: number(overlap.Log[i]), Law: unit.NaN(), LawU: unit.NaN(),
@@ -282,7 +301,8 @@ func (a *answer) fillShifts(r *Result, cov *superpose.Covariance) {
 				"the isotherm hardly depends on frequency", "test lower temperatures or a wider range of frequencies")
 		}
 		if s.Form.Law != superpose.Factors {
-			row.Law, row.LawU = number(s.LogShift(T)), number(cov.LogShift(T).Deviation())
+			row.Law = number(s.LogShift(T))
+			row.LawU = number(math.Hypot(cov.LogShift(T).Deviation(), a.commonShift(T)))
 		}
 		r.Shifts = append(r.Shifts, row)
 	}
@@ -302,7 +322,12 @@ func (a *answer) fillShifts(r *Result, cov *superpose.Covariance) {
 		seen[tc] = true
 		v := w.At(tc + zeroC)
 		j := w.AtJacobian(tc + zeroC)
-		b1, b2 := make(superpose.Root, len(r1)), make(superpose.Root, len(r1))
+		b1, b2 := make(superpose.Root, len(r1)+1), make(superpose.Root, len(r1)+1)
+		// A common error δ of all temperatures moves the pole: C2 falls by δ and
+		// C1C2 stays.
+		if u := a.campaign.Uncertainty.TemperatureCommon; u > 0 {
+			b1[len(r1)], b2[len(r1)] = v.C1/v.C2*u, -u
+		}
 		var dot float64
 		for k := range r1 {
 			b1[k] = j[0][0]*r1[k] + j[0][1]*r2[k]

@@ -37,6 +37,9 @@ type Result struct {
 	Inputs      []models.InputFile `json:"inputs"`
 	Uncertainty StatedUncertainty  `json:"stated_uncertainty"`
 	Fit         Counts             `json:"fit"`
+	// Files lists what was written beside result.json, with hashes; empty
+	// until it is written.
+	Files []models.InputFile `json:"files"`
 }
 
 // Header says what was tested by whom.

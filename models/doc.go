@@ -28,7 +28,9 @@
 // with ν degrees of freedom. The gradients are closed forms: G* is linear in
 // the moduli; ∂G*/∂ log a_T = ln10 · b_T Σ G_k d/d ln x [ix/(1+ix)] carries the
 // shift constants; a common factor of the specimens multiplies everything, a
-// common error of temperature acts as −∂G*/∂T, a common error of phase as iG*.
+// common error of temperature acts as −∂G*/∂T. The common phase error of the
+// apparatus was fitted and taken out, with its prior: it has a row of the
+// covariance, because the moduli depend on it, and the gradient zero.
 // For the derived numbers, with G* = G'+iG” and dG* given,
 // d|G*| = (G'dG' + G”dG”)/|G*| and dη = (dG” − η dG')/G'.
 package models

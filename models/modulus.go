@@ -300,7 +300,7 @@ func (c *Compound) Gradient(q Condition, g []complex128) complex128 {
 		case pTemperature:
 			g[i] = -dT
 		case pPhase:
-			g[i] = value * complex(0, math.Pi/180)
+			g[i] = 0 // the moduli are those without the error of the phase
 		}
 	}
 	return value

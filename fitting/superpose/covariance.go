@@ -144,6 +144,14 @@ func (c *Covariance) OffsetRoot(j int) Root {
 	return nil
 }
 
+// PhaseRoot is the root of the common phase error, rad; nil where it was held.
+func (c *Covariance) PhaseRoot() Root {
+	if c.z.e.l.phase < 0 {
+		return nil
+	}
+	return c.Theta(c.z.e.l.phase)
+}
+
 // FactorRoot is the root of ln s_p; nil where the factors were held.
 func (c *Covariance) FactorRoot(p int) Root {
 	l := &c.z.e.l

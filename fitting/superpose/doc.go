@@ -14,6 +14,12 @@
 // amplitude ratio and a phase. A relaxation row has ln(G_i/M_i)/σ alone. Prior
 // rows d_j/u_j and ln s_p/u_g stand below.
 //
+// Where the standard uncertainty u_φ of the apparatus' phase is stated, M_i is
+// turned by a common angle φ with the prior row φ/u_φ. Left out, it would not
+// only turn the answers: G” tells by causality how fast G' rises with
+// frequency, so a phase error of 0.05° at a loss angle of 3° is an error of 2 %
+// in the slope of log a_T near the rubber plateau.
+//
 // With D_i near M_i, ln(G_i/M_i) = ln(G_i/D_i) + 1 − M_i/D_i up to the square
 // of M_i/D_i − 1. That is linear in the moduli. D_i is the measured modulus
 // first and the fitted one from the second round of the noise iteration on, so

@@ -85,6 +85,9 @@ func newEngine(p *Problem, f *Form) *engine {
 	if e.l.nFactor > 0 {
 		e.priors += p.Factors
 	}
+	if e.l.phase >= 0 {
+		e.priors++
+	}
 	e.nc = 1 + len(f.Lattice)
 	if f.Filler {
 		e.nc += 2
@@ -142,6 +145,10 @@ func (e *engine) prepare(theta []float64) {
 			ea = theta[l.activation]
 		}
 	}
+	turn := complex(1, 0)
+	if l.phase >= 0 {
+		turn = cmplx.Rect(1, theta[l.phase])
+	}
 	density := thermal.Density{Expansion: f.Expansion, Reference: p.Reference}
 	var vertical *anchored
 	if l.nVer > 0 {
@@ -167,6 +174,9 @@ func (e *engine) prepare(theta []float64) {
 			s.bSlope = s.b * vertical.Slope(s.T)
 		}
 		s.q = complex(e.factors[r.Factor], 0) / e.denom[i]
+		if !r.Relaxation {
+			s.q *= turn
+		}
 		if !f.Filler {
 			continue
 		}
@@ -283,6 +293,9 @@ func (e *engine) priorRows(r, theta []float64) {
 			k++
 		}
 	}
+	if e.l.phase >= 0 {
+		r[k] = theta[e.l.phase] / e.p.UPhase
+	}
 }
 
 // solve finds the moduli; the passive set of the last θ is its warm start.
@@ -353,10 +366,15 @@ func (e *engine) sums() {
 	}
 }
 
-// model is the fitted modulus of row i, Pa, after sums.
+// model is the fitted modulus of row i, Pa, after sums, with everything that
+// the measurement has: specimen factor, temperature offset, common phase.
 func (e *engine) model(i int) complex128 {
 	s := &e.state[i]
-	return complex(e.factors[e.p.Rows[i].Factor]*e.scale, 0) *
+	turn := complex(1, 0)
+	if e.l.phase >= 0 && !e.p.Rows[i].Relaxation {
+		turn = cmplx.Rect(1, e.theta[e.l.phase])
+	}
+	return turn * complex(e.factors[e.p.Rows[i].Factor]*e.scale, 0) *
 		complex(s.b*s.polyRe+s.phi*s.fillRe, s.b*s.polyIm+s.phi*s.fillIm)
 }
 
@@ -413,8 +431,11 @@ func (e *engine) derivatives(d []float64, ld int) {
 		if o := l.offset[r.Run]; o >= 0 {
 			add(o, byLog*complex(s.slope, 0)+complex(s.bSlope, 0)*poly+complex(s.phiByT, 0)*fill)
 		}
+		whole := complex(s.b, 0)*poly + complex(s.phi, 0)*fill
+		if l.phase >= 0 && !relaxation {
+			add(l.phase, whole*1i)
+		}
 		if l.nFactor > 0 {
-			whole := complex(s.b, 0)*poly + complex(s.phi, 0)*fill
 			if r.Factor < l.nFactor {
 				add(l.factor+r.Factor, whole)
 			} else {
@@ -464,6 +485,9 @@ func (e *engine) priorJacobian(d []float64, ld int) {
 			}
 			k++
 		}
+	}
+	if l.phase >= 0 {
+		d[l.phase*ld+k] = 1 / e.p.UPhase
 	}
 }
 

@@ -31,6 +31,7 @@ type Problem struct {
 	Runs      []Run
 	Factors   int       // number of specimens and mountings, at least 1
 	UGeometry float64   // standard deviation of ln s_p; 0 holds all factors at one
+	UPhase    float64   // standard deviation of the phase error that all oscillatory rows share, rad; 0 holds it at zero
 	Knots     []float64 // tested temperatures of the law Factors, K, rising
 	Groups    int       // number of noise groups
 	F0        float64   // geometric mean frequency of the strain sweeps, Hz
@@ -86,6 +87,7 @@ type layout struct {
 	offset         []int // per run
 	factor         int   // first of Factors−1
 	nFactor        int
+	phase          int // common phase error, rad
 	activation     int
 	critical       int
 	exponent       int
@@ -105,7 +107,7 @@ func (p *Problem) anchor() int {
 }
 
 func (p *Problem) layout(f *Form) layout {
-	l := layout{law: -1, vertical: -1, factor: -1, activation: -1, critical: -1, exponent: -1}
+	l := layout{law: -1, vertical: -1, factor: -1, phase: -1, activation: -1, critical: -1, exponent: -1}
 	take := func(n int) int {
 		at := l.n
 		l.n += n
@@ -136,6 +138,9 @@ func (p *Problem) layout(f *Form) layout {
 	if p.UGeometry > 0 && p.Factors > 1 {
 		l.nFactor = p.Factors - 1
 		l.factor = take(l.nFactor)
+	}
+	if p.UPhase > 0 {
+		l.phase = take(1)
 	}
 	if f.Filler {
 		if f.Activation {
@@ -241,6 +246,9 @@ func (p *Problem) bounds(f *Form, l *layout) (lower, upper []float64) {
 		if o := l.offset[j]; o >= 0 {
 			lower[o], upper[o] = -12*r.U, 12*r.U
 		}
+	}
+	if l.phase >= 0 {
+		lower[l.phase], upper[l.phase] = -12*p.UPhase, 12*p.UPhase
 	}
 	if l.critical >= 0 {
 		lower[l.critical], upper[l.critical] = math.Log(1e-6), math.Log(10)

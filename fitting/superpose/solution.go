@@ -156,6 +156,14 @@ func (s *Solution) Offset(j int) float64 {
 	return 0
 }
 
+// Phase is the fitted common phase error, rad; 0 where it was held.
+func (s *Solution) Phase() float64 {
+	if s.e.l.phase < 0 {
+		return 0
+	}
+	return s.Theta[s.e.l.phase]
+}
+
 // Factor is the fitted specimen factor s_p.
 func (s *Solution) Factor(p int) float64 { return s.e.factors[p] }
 
