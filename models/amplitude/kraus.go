@@ -50,8 +50,8 @@ func (k Kraus) shape(gamma float64) (k1, k2, lnr float64) {
 func (k Kraus) Slopes(gamma float64) (k1, k2, k1c, k2c, k1m, k2m float64) {
 	var lnr float64
 	k1, k2, lnr = k.shape(gamma)
-	if gamma <= 0 {
-		return k1, k2, 0, 0, 0, 0
+	if math.IsInf(lnr, 0) {
+		return k1, k2, 0, 0, 0, 0 // both ends are level
 	}
 	// dK1/d(m ln r) = −2K1(1−K1), dK2/d(m ln r) = K2(2K1−1).
 	d1 := -2 * k1 * (1 - k1)
