@@ -76,12 +76,13 @@ func (s Segment) at(y float64) float64 {
 }
 
 // Overlap gives log10 a of warm minus that of cold: negative for a sound
-// material. window is the height of the common window in decades; ok is false
-// where there is none, and then nothing is extrapolated.
+// material. window is the height of the common window in decades, negative where
+// there is a gap and −Inf where one of the two is no rising curve; ok is false
+// where there is no window, and then nothing is extrapolated.
 func Overlap(cold, warm Segment) (logA, window float64, ok bool) {
 	c, w := cold.rising(), warm.rising()
-	if len(c.X) < 2 || len(w.X) < 2 {
-		return math.NaN(), 0, false
+	if len(c.X) == 0 || len(w.X) == 0 {
+		return math.NaN(), math.Inf(-1), false
 	}
 	L := max(c.Y[0], w.Y[0])
 	U := min(c.Y[len(c.Y)-1], w.Y[len(w.Y)-1])
