@@ -544,6 +544,13 @@ func (a *answer) settleScatter() error {
 	if a.stated || a.oneTemperature() {
 		return nil
 	}
+	if a.final.Form.Law == superpose.Factors {
+		a.find("temperature-scatter-not-stated", data.Note, "",
+			fmt.Sprintf("temperature scatter from run to run: %.2g K assumed; without a shift law the isotherms do not show it", a.scatter),
+			"", "state `uncertainty: {temperature_scatter: …}`")
+		a.assume("temperature scatter from run to run: %.2g K, not stated (common practice, no source)", a.scatter)
+		return nil
+	}
 	for range 4 {
 		u := a.final.Scatter(a.shared, scatterLimit)
 		u = max(u, 0.01) // a hundredth of a kelvin holds the offsets as good as at zero

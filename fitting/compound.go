@@ -26,7 +26,14 @@ func round15(x float64) float64 {
 	return v
 }
 
-func number(x float64) unit.Number { return unit.Number(round15(x)) }
+// number is a rounded number for a file; an infinity, which a file cannot hold
+// and which is no measurement, counts as not measured.
+func number(x float64) unit.Number {
+	if math.IsInf(x, 0) {
+		return unit.NaN()
+	}
+	return unit.Number(round15(x))
+}
 
 // degreesC turns K into °C without the noise of the subtraction.
 func degreesC(T float64) float64 { return math.Round((T-zeroC)*1e6) / 1e6 }

@@ -410,7 +410,7 @@ func (a *answer) fitted(row *Point, n int) {
 // and amplitude, as far as the temperature dependence at one frequency needs:
 // for every frequency of temperature sweeps and of single-frequency tests.
 func (a *answer) fixed() []FixedFrequency {
-	type key struct{ f, T, s float64 }
+	type key struct{ f, T float64 } // Hz, °C
 	type sums struct {
 		n                      int
 		st, lo, eta, st2, eta2 float64
@@ -425,11 +425,11 @@ func (a *answer) fixed() []FixedFrequency {
 			if !p.Used {
 				continue
 			}
-			T := run.Temperature
+			T := math.Round((run.Temperature-zeroC)*10) / 10
 			if math.IsNaN(T) {
-				T = math.Round(p.Temperature-zeroC) + zeroC
+				T = math.Round(p.Temperature - zeroC)
 			}
-			k := key{f: round6(p.Frequency), T: math.Round(T*10) / 10}
+			k := key{f: round6(p.Frequency), T: T}
 			g := groups[k]
 			if g == nil {
 				g = &sums{}
@@ -464,7 +464,7 @@ func (a *answer) fixed() []FixedFrequency {
 			return models.Quantile(n-1) * math.Sqrt(v/n)
 		}
 		out = append(out, FixedFrequency{
-			TemperatureC: number(math.Round((k.T-zeroC)*10) / 10), Frequency: number(k.f), Strain: number(100 * g.strain / n), Points: g.n,
+			TemperatureC: number(k.T), Frequency: number(k.f), Strain: number(100 * g.strain / n), Points: g.n,
 			Storage: number(g.st / n / 1e6), Loss: number(g.lo / n / 1e6), LossFactor: number(g.eta / n),
 			StorageU95: number(half(g.st, g.st2) / 1e6), LossFactorU95: number(half(g.eta, g.eta2)),
 		})

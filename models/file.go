@@ -3,13 +3,22 @@ package models
 import (
 	"bytes"
 	"encoding/json"
-	"fmt"
+	"errors"
+	"io"
+	"io/fs"
 	"os"
-	"reflect"
-	"strings"
+	"regexp"
+	"strconv"
+	"unicode/utf8"
 
 	"gopkg.in/yaml.v3"
+
+	"phaselag/data/place"
 )
+
+// sizeLimit is the greatest compound file that is read, bytes: a thousand
+// parameters with their covariance take a third of it.
+const sizeLimit = 32 << 20
 
 // YAML is the compound file as YAML, the same bytes for the same Compound.
 func (c *Compound) YAML() ([]byte, error) {
@@ -31,138 +40,108 @@ func (c *Compound) JSON() ([]byte, error) {
 	return append(b, '\n'), nil
 }
 
-// Open reads a compound file, YAML or JSON.
+// Open reads a compound file, YAML or JSON. Faults in it are *place.Error.
 func Open(path string) (*Compound, error) {
-	b, err := os.ReadFile(path)
+	f, err := os.Open(path)
 	if err != nil {
-		return nil, err
+		var p *fs.PathError
+		if errors.As(err, &p) {
+			err = p.Err
+		}
+		return nil, &place.Error{File: path, What: "cannot read the compound file", Err: err}
 	}
-	c, err := Read(b)
+	defer f.Close()
+	b, err := io.ReadAll(io.LimitReader(f, sizeLimit+1))
 	if err != nil {
-		return nil, fmt.Errorf("%s:%w", path, err)
+		return nil, &place.Error{File: path, What: "cannot read the compound file", Err: err}
 	}
-	return c, nil
+	return read(path, b)
 }
 
 // Read reads the bytes of a compound file, YAML or JSON. Every key of the
-// format must be there, and no other; numbers come back bit for bit. Errors
-// begin with line and column where a key is at fault.
-func Read(b []byte) (*Compound, error) {
-	var doc yaml.Node
-	if err := yaml.Unmarshal(b, &doc); err != nil {
-		return nil, fmt.Errorf(" not a compound file: %w", err)
-	}
-	if len(doc.Content) == 0 || doc.Content[0].Kind != yaml.MappingNode {
-		return nil, fmt.Errorf(" not a compound file: it has no keys")
-	}
-	root := doc.Content[0]
-	if find(root, "phaselag_compound") == nil {
-		return nil, fmt.Errorf("%d:%d: not a compound file: it has no key phaselag_compound", root.Line, root.Column)
-	}
-	if err := checkKeys(root, reflect.TypeFor[Compound](), ""); err != nil {
+// format must be there, and no other; numbers come back bit for bit, a null
+// number as NaN. Faults are *place.Error with line and column, under the name
+// "compound file".
+func Read(b []byte) (*Compound, error) { return read("compound file", b) }
+
+func read(file string, b []byte) (*Compound, error) {
+	root, err := tree(file, b)
+	if err != nil {
 		return nil, err
 	}
-	// Through JSON, because a JSON null reaches unit.Number while a YAML null
-	// does not; float64 survives the way bit for bit.
-	var value any
-	if err := root.Decode(&value); err != nil {
-		return nil, fmt.Errorf(" %w", err)
-	}
-	j, err := json.Marshal(value)
-	if err != nil {
-		return nil, fmt.Errorf(" not a compound file: %w", err)
+	d := decoder{file: file}
+	if err := d.version(root); err != nil {
+		return nil, err
 	}
 	var c Compound
-	if err := json.Unmarshal(j, &c); err != nil {
-		if te, ok := err.(*json.UnmarshalTypeError); ok {
-			return nil, fmt.Errorf("%s %s: a %s cannot stand here", position(root, te.Field), te.Field, te.Value)
-		}
-		return nil, fmt.Errorf(" %w", err)
+	if err := d.compound(root, &c); err != nil {
+		return nil, err
 	}
 	out, err := New(c)
 	if ke, ok := err.(*KeyError); ok {
-		return nil, fmt.Errorf("%s %w", position(root, ke.Key), ke)
+		n := deepest(root, ke.Key)
+		return nil, &place.Error{File: file, Line: n.Line, Column: n.Column, Path: ke.Key, What: ke.What}
 	}
 	return out, err
 }
 
-func find(m *yaml.Node, key string) *yaml.Node {
-	for i := 0; i+1 < len(m.Content); i += 2 {
-		if m.Content[i].Value == key {
-			return m.Content[i+1]
+// tree parses b into a mapping.
+func tree(file string, b []byte) (*yaml.Node, error) {
+	b = bytes.TrimPrefix(b, []byte("\ufeff"))
+	fault := func(line, column int, what string) error {
+		return &place.Error{File: file, Line: line, Column: column, What: "not a compound file: " + what,
+			Hint: "a compound file is what characterize writes as compound.yaml or compound.json"}
+	}
+	if len(b) > sizeLimit {
+		return nil, fault(1, 1, "it is longer than 32 MiB")
+	}
+	for i, r := range string(b) {
+		if r == utf8.RuneError && !utf8.FullRune(b[i:]) || r == utf8.RuneError && b[i] != 0xEF {
+			line, column := newPlaces(b).at(i)
+			return nil, fault(line, column, "it is not text in UTF-8")
+		}
+		if r < ' ' && r != '\n' && r != '\r' && r != '\t' {
+			line, column := newPlaces(b).at(i)
+			return nil, fault(line, column, "it has a control character")
 		}
 	}
-	return nil
+	if len(bytes.TrimSpace(b)) == 0 {
+		return nil, fault(1, 1, "it is empty")
+	}
+	root := jsonTree(b)
+	if root == nil {
+		var doc, second yaml.Node
+		dec := yaml.NewDecoder(bytes.NewReader(b))
+		if err := dec.Decode(&doc); err == io.EOF {
+			return nil, fault(1, 1, "it is empty")
+		} else if err != nil {
+			line, what := yamlSyntax(err)
+			return nil, fault(line, 1, what)
+		}
+		switch err := dec.Decode(&second); {
+		case err == nil:
+			return nil, fault(second.Line, second.Column, "a second document follows")
+		case err != io.EOF:
+			line, what := yamlSyntax(err)
+			return nil, fault(line, 1, what)
+		}
+		root = doc.Content[0]
+	}
+	if root.Kind != yaml.MappingNode {
+		return nil, fault(root.Line, root.Column, "it has no keys")
+	}
+	return root, nil
 }
 
-// position is "line:column:" of the deepest part of a key's path that exists.
-func position(n *yaml.Node, path string) string {
-	for _, part := range strings.Split(path, ".") {
-		var next *yaml.Node
-		switch n.Kind {
-		case yaml.MappingNode:
-			next = find(n, part)
-		case yaml.SequenceNode:
-			var i int
-			if _, err := fmt.Sscanf(part, "%d", &i); err == nil && i >= 0 && i < len(n.Content) {
-				next = n.Content[i]
-			}
-		}
-		if next == nil {
-			break
-		}
-		n = next
-	}
-	return fmt.Sprintf("%d:%d:", n.Line, n.Column)
-}
+var yamlLine = regexp.MustCompile(`^yaml: (?:line (\d+): )?`)
 
-// checkKeys compares the keys of a mapping with the fields of a struct type,
-// recursively: all must be there and no other.
-func checkKeys(n *yaml.Node, t reflect.Type, path string) error {
-	for t.Kind() == reflect.Pointer {
-		if n.Tag == "!!null" {
-			return nil
-		}
-		t = t.Elem()
+// yamlSyntax takes the line out of the YAML reader's own error; 1 where it
+// knows none.
+func yamlSyntax(err error) (line int, what string) {
+	text := err.Error()
+	line = 1
+	if m := yamlLine.FindStringSubmatch(text); m != nil && m[1] != "" {
+		line, _ = strconv.Atoi(m[1])
 	}
-	join := func(key string) string { return strings.TrimPrefix(path+"."+key, ".") }
-	switch t.Kind() {
-	case reflect.Slice:
-		if n.Kind != yaml.SequenceNode {
-			if n.Tag == "!!null" {
-				return nil
-			}
-			return fmt.Errorf("%d:%d: %s: must be a list", n.Line, n.Column, path)
-		}
-		for i, item := range n.Content {
-			if err := checkKeys(item, t.Elem(), join(fmt.Sprint(i))); err != nil {
-				return err
-			}
-		}
-	case reflect.Struct:
-		if n.Kind != yaml.MappingNode {
-			return fmt.Errorf("%d:%d: %s: must be a mapping", n.Line, n.Column, path)
-		}
-		known := map[string]bool{}
-		for i := range t.NumField() {
-			key, _, _ := strings.Cut(t.Field(i).Tag.Get("json"), ",")
-			if key == "" {
-				continue
-			}
-			known[key] = true
-			value := find(n, key)
-			if value == nil {
-				return fmt.Errorf("%d:%d: %s: is missing", n.Line, n.Column, join(key))
-			}
-			if err := checkKeys(value, t.Field(i).Type, join(key)); err != nil {
-				return err
-			}
-		}
-		for i := 0; i < len(n.Content); i += 2 {
-			if k := n.Content[i]; !known[k.Value] {
-				return fmt.Errorf("%d:%d: %s: is no key of a compound file", k.Line, k.Column, join(k.Value))
-			}
-		}
-	}
-	return nil
+	return line, yamlLine.ReplaceAllString(text, "")
 }

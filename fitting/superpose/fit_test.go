@@ -60,40 +60,92 @@ func (l laboratory) problem(seed uint64) *Problem {
 	return p
 }
 
-func TestDebugFit(t *testing.T) {
-	for _, l := range []laboratory{
-		{truth: demo.Gum()},
-		{truth: demo.Gum(), sigmaM: 0.005, sigmaD: 0.3 * math.Pi / 180, scatter: 0.3, factor: 0.015},
-		{truth: demo.HM60(), sweeps: true},
-		{truth: demo.HM60(), sweeps: true, sigmaM: 0.005, sigmaD: 0.3 * math.Pi / 180, scatter: 0.3, factor: 0.015},
-	} {
+// TestExact: without noise the joint fit finds the simulated shift factors, as
+// the law's and as free factors, to 0.002 decade.
+func TestExact(t *testing.T) {
+	for _, l := range []laboratory{{truth: demo.Gum()}, {truth: demo.HM60(), sweeps: true}} {
 		p := l.problem(7)
-		f := Form{Law: WLF, Filler: l.sweeps, Activation: true, Kappa: 1, Sigma: []Sigma{{0.01, 0.01}, {0.01, 0.01}}[:p.Groups]}
-		for k := -24; k <= 3; k++ {
-			f.Lattice = append(f.Lattice, math.Pow(10, float64(k)/3))
+		for i := range p.Runs {
+			p.Runs[i].U = 0
 		}
+		f := l.form(p)
 		st := Start{Filler: FillerStart{5, 0.01, 0.6}}
 		st.WLF.C1, st.WLF.C2, st.WLF.Reference = 8, 120, p.Reference
-		s, err := Fit(p, f, st)
+		law, err := Fit(p, f, st)
 		if err != nil {
 			t.Fatal(err)
 		}
-		t.Log("WLF", s.Iterations, s.Evaluations, s.Objective, s.Theta[:2], s.Activation())
-		s2, noise, err := s.Refine(5)
+		f.Law = Factors
+		free, err := Fit(p, f, law.Start())
 		if err != nil {
 			t.Fatal(err)
 		}
-		t.Log("refined", s2.Iterations, s2.Objective, s2.Theta[:2], s2.Activation(), noise)
-		f2 := s2.Form
-		f2.Law = Factors
-		s3, err := Fit(p, f2, s2.Start())
-		if err != nil {
-			t.Fatal(err)
-		}
-		t.Log("factors", s3.Iterations, s3.Objective, s3.AICc(), s2.AICc())
-		cov := s3.Covariance()
 		for _, T := range p.Knots {
-			t.Logf("%6.1f %9.4f ± %.4f true %9.4f", T-c0, s3.LogShift(T), cov.LogShift(T).Deviation(), math.Log10(l.truth.ShiftFactor(T)))
+			want := math.Log10(l.truth.ShiftFactor(T))
+			for _, s := range []*Solution{law, free} {
+				if got := s.LogShift(T); math.Abs(got-want) > 0.002 {
+					t.Errorf("%s, %s, %.1f °C: log a_T %.5f, simulated %.5f", l.truth.Name, s.Form.Law, T-c0, got, want)
+				}
+			}
+		}
+	}
+}
+
+// form is the right model for the laboratory's compound.
+func (l laboratory) form(p *Problem) Form {
+	f := Form{Law: WLF, Filler: l.sweeps, Activation: true, Kappa: 1}
+	for range p.Groups {
+		f.Sigma = append(f.Sigma, Sigma{0.005, 0.005})
+	}
+	for k := -25; k <= 8; k++ {
+		f.Lattice = append(f.Lattice, math.Pow(10, float64(k)/3))
+	}
+	return f
+}
+
+// TestJacobian compares Kaufman's Jacobian with differences in the one quantity
+// that it gives exactly, the gradient of the objective.
+func TestJacobian(t *testing.T) {
+	l := laboratory{truth: demo.HM60(), sweeps: true, sigmaM: 0.02, sigmaD: 0.02, scatter: 0.3, factor: 0.015}
+	p := l.problem(3)
+	p.UPhase = 0.001
+	for _, law := range []Law{WLF, Factors, Arrhenius} {
+		for _, v := range []Vertical{NoVertical, Density, Free} {
+			f := l.form(p)
+			f.Law, f.Vertical, f.Expansion = law, v, 6.6e-4
+			e := newEngine(p, &f)
+			s := Start{Activation: 90e3, Filler: FillerStart{5, 0.02, 0.6}}
+			s.WLF.C1, s.WLF.C2, s.WLF.Reference = 6, 150, p.Reference
+			for _, T := range p.Knots {
+				s.LogShift = append(s.LogShift, s.WLF.LogShift(T))
+			}
+			x := p.theta(&f, &e.l, s)
+			for i := range x {
+				x[i] += 0.001 * float64(i%5)
+			}
+			r := make([]float64, e.m+e.priors)
+			if !e.residual(r, x) {
+				t.Fatal("no residual")
+			}
+			j := make([]float64, len(r)*e.l.n)
+			if !e.jacobian(j, x) {
+				t.Fatal("no Jacobian")
+			}
+			for k := range x {
+				got := 2 * dot(j[k*len(r):(k+1)*len(r)], r)
+				h := 1e-5 * max(1, math.Abs(x[k]))
+				side := func(d float64) float64 {
+					y := append([]float64(nil), x...)
+					y[k] += d
+					q := make([]float64, len(r))
+					e.residual(q, y)
+					return squares(q)
+				}
+				want := (side(h) - side(-h)) / (2 * h)
+				if math.Abs(got-want) > 1e-4*(math.Abs(want)+1e-3*squares(r)) {
+					t.Errorf("%v, %v, parameter %d: gradient %g, by differences %g", law, v, k, got, want)
+				}
+			}
 		}
 	}
 }

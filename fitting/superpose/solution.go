@@ -98,13 +98,12 @@ func (e *engine) run(theta []float64) (*Solution, error) {
 		}
 		s.Objective = squares(r)
 	} else {
-		res, ok := e.minimise(theta)
-		if !ok {
-			return nil, ErrNoFit
+		res, err := e.minimise(theta)
+		if err != nil {
+			return nil, err
 		}
-		theta = res.x
-		s.Objective = res.s
-		s.Iterations, s.Evaluations = res.iter, res.evals
+		theta, s.Objective = res.x, res.objective
+		s.Iterations, s.Evaluations = res.iterations, res.evaluations
 	}
 	s.Theta = append([]float64(nil), theta...)
 	s.settle()

@@ -90,6 +90,10 @@ func textWidth(s string, st textStyle) float64 {
 	return w
 }
 
+// Em returns the width of marked-up text in units of its size, in the regular
+// face.
+func Em(s string) float64 { return textWidth(s, textStyle{size: 1}) / point }
+
 // text draws marked-up text at a point in mm.
 func (p *pen) text(s string, x, y float64, st textStyle) {
 	if s == "" {

@@ -41,6 +41,17 @@ func TestTicks(t *testing.T) {
 	}
 }
 
+// Widths of Liberation Sans are those of the metric-compatible common sans
+// faces: a digit takes 0.556, a full stop 0.278 of the size (common practice,
+// no source).
+func TestEm(t *testing.T) {
+	for s, want := range map[string]float64{"0": 0.556, "1.5": 2*0.556 + 0.278, "^{0}": 0.7 * 0.556, "": 0} {
+		if got := Em(s); math.Abs(got-want) > 0.001 {
+			t.Errorf("%q is %g wide, want %g", s, got, want)
+		}
+	}
+}
+
 // circle checks that a traced arc keeps its radius to 2.8e-4 of it, which is
 // the largest radial error of the cubic quarter circle (common practice, no
 // source).

@@ -1,0 +1,127 @@
+package cli
+
+import (
+	"math"
+
+	"github.com/spf13/cobra"
+
+	"phaselag/data/unit"
+	"phaselag/models"
+	"phaselag/reports"
+	"phaselag/reports/table"
+)
+
+type modulusOptions struct {
+	file                           string
+	frequency, temperature, strain string
+	extrapolate                    bool
+	format                         string
+}
+
+func (a *app) modulusCmd() *cobra.Command {
+	var o modulusOptions
+	cmd := &cobra.Command{
+		Use:   "modulus COMPOUND --frequency LIST --temperature LIST [--strain LIST]",
+		Short: "Complex modulus with 95 % intervals at conditions, from the compound file alone",
+		Long: `modulus answers at every combination of the listed conditions. A list has items
+separated by commas; an item is a number, a:b:step or a:b:N/decade; the unit
+stands once, last: 1:100:5/decade,200Hz or -20:60:10C or 0.5%.
+
+A condition outside the domain is refused, with the reason and the nearest
+allowed value, and the exit code is 1; --extrapolate answers and marks it.`,
+		Example: `  phaselag modulus compound.yaml --frequency 1:100:5/decade,200Hz --temperature -20:60:10C --strain 0.5%`,
+		Args:    exactly("COMPOUND"),
+		RunE: func(_ *cobra.Command, args []string) error {
+			o.file = args[0]
+			return a.modulus(o)
+		},
+	}
+	conditionFlags(cmd, &o.frequency, &o.temperature)
+	cmd.Flags().StringVar(&o.strain, "strain", "", "strain amplitudes, zero to peak (default: the isotherms' own)")
+	cmd.Flags().BoolVar(&o.extrapolate, "extrapolate", false, "answer outside the domain, marked")
+	formatFlag(cmd, &o.format)
+	return cmd
+}
+
+func conditionFlags(cmd *cobra.Command, frequency, temperature *string) {
+	cmd.Flags().StringVar(frequency, "frequency", "", "frequencies, for example 1:100:5/decade,200Hz (required)")
+	cmd.Flags().StringVar(temperature, "temperature", "", "temperatures, for example -20:60:10C (required)")
+}
+
+// list parses a list of a flag.
+func list(flag, text string, q unit.Quantity) ([]float64, error) {
+	if text == "" {
+		return nil, usagef("--%s is missing", flag)
+	}
+	v, err := unit.ParseList(text, q)
+	if err != nil {
+		return nil, hintedAt("--"+flag, err)
+	}
+	return v, nil
+}
+
+// maxConditions bounds the answers of one call.
+const maxConditions = 1_000_000
+
+func (a *app) modulus(o modulusOptions) error {
+	f, err := list("frequency", o.frequency, unit.Frequency)
+	if err != nil {
+		return err
+	}
+	T, err := list("temperature", o.temperature, unit.Temperature)
+	if err != nil {
+		return err
+	}
+	strains := []float64{math.NaN()}
+	if o.strain != "" {
+		if strains, err = list("strain", o.strain, unit.Strain); err != nil {
+			return err
+		}
+	}
+	if len(f)*len(T)*len(strains) > maxConditions {
+		return usagef("%d conditions are more than %d", len(f)*len(T)*len(strains), maxConditions)
+	}
+	c, err := models.Open(o.file)
+	if err != nil {
+		return err
+	}
+	var q []models.Condition
+	for _, t := range T {
+		for _, s := range strains {
+			for _, v := range f {
+				q = append(q, models.Condition{Frequency: v, Temperature: t, Strain: s})
+			}
+		}
+	}
+	t, outside, err := reports.ModulusTable(c, q, o.extrapolate)
+	if err != nil {
+		return err
+	}
+	if o.strain == "" {
+		t.Assumptions = append(t.Assumptions, reports.OwnStrainNote(c))
+	}
+	if err := a.answer(t, o.format); err != nil {
+		return err
+	}
+	if outside > 0 {
+		return errNo
+	}
+	return nil
+}
+
+// answer prints a table on stdout; assumptions go with it in JSON, and to
+// stderr otherwise.
+func (a *app) answer(t table.Table, format string) error {
+	if table.Format(format) != table.JSON {
+		for _, s := range t.Assumptions {
+			a.note(s)
+		}
+		if table.Format(format) == table.CSV {
+			t.Assumptions = nil
+		}
+	}
+	if table.Format(format) == table.Terminal {
+		t.Assumptions = nil
+	}
+	return table.Write(a.out, table.Format(format), t)
+}

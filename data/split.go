@@ -1,0 +1,181 @@
+package data
+
+import (
+	"fmt"
+	"math"
+
+	"phaselag/data/unit"
+)
+
+const (
+	// temperatureJump parts runs: a step from the mean of the run so far, K.
+	temperatureJump = 1.0
+	// restartSteps parts runs: going back towards the first value by more than
+	// so many usual steps at once.
+	restartSteps = 3.0
+)
+
+// split parts the points of a test into runs. Isotherms, strain sweeps and
+// relaxations end where the temperature jumps, where a segment column or a new
+// block says so, or where frequency, strain or time starts again; temperature
+// sweeps are parted by frequency.
+func split(c *Campaign, p *plan) []Run {
+	if p.Kind == Static {
+		return nil
+	}
+	segments := p.usefulSegments()
+	var runs []Run
+	if p.Kind == TemperatureSweep {
+		runs = p.splitByFrequency(segments)
+	} else {
+		var start int
+		for i := 1; i <= len(p.points); i++ {
+			if i < len(p.points) && !p.breaks(start, i, segments) {
+				continue
+			}
+			runs = append(runs, p.run(p.points[start:i]))
+			start = i
+		}
+	}
+	seen := map[string]int{}
+	for i := range runs {
+		name := runName(p, &runs[i])
+		seen[name]++
+		if n := seen[name]; n > 1 {
+			name = fmt.Sprintf("%s, repeat %d", name, n)
+		}
+		runs[i].Name = name
+	}
+	return runs
+}
+
+// usefulSegments reports whether segment columns part the points: a column that
+// changes with nearly every row numbers the points.
+func (p *plan) usefulSegments() bool {
+	changes := 0
+	for i := 1; i < len(p.points); i++ {
+		if p.points[i].segment != p.points[i-1].segment {
+			changes++
+		}
+	}
+	return changes > 0 && 2*changes < len(p.points)
+}
+
+// breaks reports whether a new run begins at point i.
+func (p *plan) breaks(start, i int, segments bool) bool {
+	a, b := p.points[i-1], p.points[i]
+	if a.File != b.File || a.block != b.block || segments && a.segment != b.segment {
+		return true
+	}
+	if math.Abs(b.Temperature-p.mean(start, i)) > temperatureJump {
+		return true
+	}
+	switch p.Kind {
+	case FrequencySweep:
+		return p.restarts(start, i, func(r raw) float64 { return r.Frequency })
+	case StrainSweep:
+		return math.Abs(b.Frequency-a.Frequency) > 0.01*a.Frequency || p.restarts(start, i, func(r raw) float64 { return r.Strain })
+	case Relaxation:
+		return b.Time < a.Time
+	}
+	return false
+}
+
+// mean is the mean temperature of the points [start, i).
+func (p *plan) mean(start, i int) float64 {
+	var sum float64
+	n := 0
+	for _, pt := range p.points[start:i] {
+		if !math.IsNaN(pt.Temperature) {
+			sum += pt.Temperature
+			n++
+		}
+	}
+	return sum / float64(n) // NaN, which breaks nothing, where none is known
+}
+
+// restarts reports whether a quantity that climbs (or falls) on a logarithmic
+// scale jumps back by several of its usual steps.
+func (p *plan) restarts(start, i int, get func(raw) float64) bool {
+	if i-start < 2 {
+		return false
+	}
+	first, last, next := get(p.points[start]), get(p.points[i-1]), get(p.points[i])
+	usual := math.Abs(math.Log(last/first)) / float64(i-start-1)
+	jump := math.Log(next / last)
+	if usual < 1e-6 || math.IsNaN(jump) {
+		return false
+	}
+	back := math.Signbit(jump) != math.Signbit(math.Log(last/first))
+	return back && math.Abs(jump) > restartSteps*usual
+}
+
+// sameFrequency is how far apart two frequencies may be to be one, relative.
+const sameFrequency = 0.005
+
+func (p *plan) splitByFrequency(segments bool) []Run {
+	var groups [][]raw
+	for _, pt := range p.points {
+		found := false
+		for i, g := range groups {
+			same := math.Abs(pt.Frequency-g[0].Frequency) <= sameFrequency*g[0].Frequency || math.IsNaN(pt.Frequency)
+			if same && g[0].File == pt.File && g[0].block == pt.block && (!segments || g[0].segment == pt.segment) {
+				groups[i] = append(g, pt)
+				found = true
+				break
+			}
+		}
+		if !found {
+			groups = append(groups, []raw{pt})
+		}
+	}
+	var runs []Run
+	for _, g := range groups {
+		runs = append(runs, p.run(g))
+	}
+	return runs
+}
+
+// run makes a run of points.
+func (p *plan) run(points []raw) Run {
+	r := Run{Temperature: math.NaN(), Frequency: math.NaN(), Strain: math.NaN()}
+	var T, f, s []float64
+	for _, pt := range points {
+		r.Points = append(r.Points, pt.Point)
+		if pt.Used {
+			T, f, s = append(T, pt.Temperature), append(f, pt.Frequency), append(s, pt.Strain)
+		}
+	}
+	if p.Kind != TemperatureSweep {
+		r.Temperature = nominal(T)
+		if !math.IsNaN(p.temperature) {
+			r.Temperature = p.temperature
+		}
+	}
+	r.Frequency = constant(f, sameFrequency)
+	r.Strain = constant(s, 0.1)
+	return r
+}
+
+// nominal is the mean rounded to 0.1 °C; NaN of nothing.
+func nominal(T []float64) float64 {
+	var sum float64
+	for _, v := range T {
+		sum += v
+	}
+	return unit.Kelvin(math.Round((sum/float64(len(T))-273.15)*10) / 10)
+}
+
+// constant is the first value where all agree within a relative tolerance, NaN
+// otherwise.
+func constant(v []float64, tolerance float64) float64 {
+	if len(v) == 0 {
+		return math.NaN()
+	}
+	for _, x := range v {
+		if !(math.Abs(x-v[0]) <= tolerance*math.Abs(v[0])) {
+			return math.NaN()
+		}
+	}
+	return v[0]
+}

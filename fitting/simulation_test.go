@@ -1,0 +1,224 @@
+package fitting
+
+import (
+	"flag"
+	"fmt"
+	"math"
+	"math/cmplx"
+	"runtime"
+	"sort"
+	"strings"
+	"sync"
+	"testing"
+
+	"phaselag/data"
+	"phaselag/data/demo"
+	"phaselag/models"
+)
+
+var (
+	campaigns = flag.Int("campaigns", 0, "simulated campaigns a scenario in TestCoverage (0: the short form)")
+	workers   = flag.Int("workers", runtime.GOMAXPROCS(0), "goroutines of TestCoverage")
+)
+
+// scenario is one simulated laboratory with its compound.
+type scenario struct {
+	name  string
+	truth demo.Truth
+	plan  demo.Plan
+	class bool // law and filler constants exist in the truth
+}
+
+func scenarios() []scenario {
+	return []scenario{
+		{"filled, strain sweeps", demo.HM60(), demo.HM60Plan(), true},
+		{"gum, isotherms only", demo.Gum(), demo.IsothermPlan(), true},
+	}
+}
+
+// service are the conditions at which G' and tan δ are judged.
+var service = []models.Condition{
+	{Frequency: 4, Temperature: 253.15, Strain: 0.002},
+	{Frequency: 30, Temperature: 263.15, Strain: 0.002},
+	{Frequency: 10, Temperature: 296.15, Strain: 0.002},
+	{Frequency: 25, Temperature: 313.15, Strain: 0.002},
+	{Frequency: 4, Temperature: 333.15, Strain: 0.002},
+	// The edges of the window.
+	{Frequency: 50, Temperature: 233.15, Strain: 0.002},
+	{Frequency: 0.5, Temperature: 353.15, Strain: 0.002},
+}
+
+// tally counts how often an interval held the truth.
+type tally struct {
+	hit, n int
+	z, z2  float64 // sums of error over standard uncertainty, and of its square
+}
+
+type score map[string]*tally
+
+func (s score) add(name string, err, half float64) {
+	t := s[name]
+	if t == nil {
+		t = &tally{}
+		s[name] = t
+	}
+	t.n++
+	if math.Abs(err) <= half {
+		t.hit++
+	}
+	z := 1.96 * err / half
+	t.z += z
+	t.z2 += z * z
+}
+
+func (s score) merge(o score) {
+	for k, v := range o {
+		if s[k] == nil {
+			s[k] = &tally{}
+		}
+		s[k].hit += v.hit
+		s[k].n += v.n
+		s[k].z += v.z
+		s[k].z2 += v.z2
+	}
+}
+
+// judge scores one campaign.
+func (sc scenario) judge(seed uint64) (score, error) {
+	out := score{}
+	campaign, err := data.OpenFS(demo.Campaign(sc.truth, sc.plan, seed), "campaign.yaml")
+	if err != nil {
+		return nil, err
+	}
+	r, err := Characterize(campaign, &Settings{Replicates: -1, Workers: 1})
+	if err != nil {
+		return nil, err
+	}
+	c := r.Compound
+	Tref := c.ReferenceTempC + 273.15
+	logA := func(T float64) float64 {
+		return math.Log10(sc.truth.ShiftFactor(T)) - math.Log10(sc.truth.ShiftFactor(Tref))
+	}
+	for _, s := range r.Shifts {
+		T := float64(s.TemperatureC)
+		if s.Determined && float64(s.U) > 0 {
+			out.add(fmt.Sprintf("factor/log aT %g", T), float64(s.Log)-logA(T+273.15), 1.96*float64(s.U))
+		}
+		if float64(s.LawU) > 0 {
+			out.add(fmt.Sprintf("law/log aT %g", T), float64(s.Law)-logA(T+273.15), 1.96*float64(s.LawU))
+		}
+	}
+	truth := map[string]float64{}
+	// The constants that reproduce the truth's law at this reference.
+	if w, ok := wlfOf(sc.truth, Tref); ok {
+		truth["C1"], truth["C2"] = w[0], w[1]
+	}
+	if f := sc.truth.Filler; f.Storage > 0 {
+		truth["filler storage ΔG′"], truth["filler loss ΔG″"] = f.Storage/1e6, f.Loss/1e6
+		truth["critical strain"], truth["Kraus exponent m"], truth["filler activation energy"] = 100*f.Strain, f.Exponent, f.Energy/1e3
+		// ΔG' of the truth holds at the truth's reference temperature.
+		phi := math.Exp(f.Energy / 8.31446261815324 * (1/Tref - 1/sc.truth.Reference))
+		truth["filler storage ΔG′"] *= phi
+		truth["filler loss ΔG″"] *= phi
+	}
+	for _, p := range r.Parameters {
+		if v, ok := truth[p.Name]; ok {
+			out.add("constant/"+p.Name, float64(p.Value)-v, float64(p.U95))
+		}
+	}
+	for i, q := range service {
+		m, err := c.Modulus(q)
+		if err != nil {
+			continue
+		}
+		g := sc.truth.Modulus(q.Frequency, q.Temperature, q.Strain)
+		out.add(fmt.Sprintf("G'/condition %d", i+1), m.Storage-real(g), m.StorageU95)
+		out.add(fmt.Sprintf("tan δ/condition %d", i+1), m.LossFactor-math.Tan(cmplx.Phase(g)), m.LossFactorU95)
+	}
+	holds := 0.0
+	if c.Fit.Superposition.Holds == models.HoldsNo {
+		holds = 2
+	}
+	out.add("alarm/superposition (share without)", holds, 1)
+	return out, nil
+}
+
+// wlfOf reads C1 and C2 off two shift factors; ok is false where a third does
+// not lie on the same law.
+func wlfOf(t demo.Truth, Tref float64) ([2]float64, bool) {
+	l := func(d float64) float64 {
+		return math.Log10(t.ShiftFactor(Tref+d)) - math.Log10(t.ShiftFactor(Tref))
+	}
+	// d/log a = −(C2 + d)/C1, a straight line in d.
+	y1, y2, y3 := -30/l(-30), 30/l(30), 50/l(50)
+	slope := (y2 - y1) / 60
+	c1 := -1 / slope
+	c2 := c1 * -(y1 + 30*slope)
+	ok := math.Abs(y3-(y2+20*slope)) < 1e-6*math.Abs(y3) && c2 > 0
+	return [2]float64{c1, c2}, ok
+}
+
+// TestCoverage simulates campaigns and counts how often the stated 95 %
+// intervals hold the truth. The long form is run by hand:
+//
+//	go test ./fitting -run TestCoverage -v -campaigns 1000 -timeout 0
+func TestCoverage(t *testing.T) {
+	n := *campaigns
+	if n == 0 {
+		n = 24
+	}
+	for _, sc := range scenarios() {
+		total := score{}
+		var mu sync.Mutex
+		var wg sync.WaitGroup
+		next := make(chan uint64, n)
+		for i := range n {
+			next <- uint64(1000 + i)
+		}
+		close(next)
+		for range *workers {
+			wg.Add(1)
+			go func() {
+				defer wg.Done()
+				for seed := range next {
+					s, err := sc.judge(seed)
+					mu.Lock()
+					if err != nil {
+						t.Errorf("%s, seed %d: %v", sc.name, seed, err)
+					} else {
+						total.merge(s)
+					}
+					mu.Unlock()
+				}
+			}()
+		}
+		wg.Wait()
+		report(t, sc.name, n, total)
+	}
+}
+
+func report(t *testing.T, name string, n int, total score) {
+	var keys []string
+	for k := range total {
+		keys = append(keys, k)
+	}
+	sort.Strings(keys)
+	t.Logf("%s, %d campaigns", name, n)
+	class := map[string]*tally{}
+	for _, k := range keys {
+		v := total[k]
+		t.Logf("  %-42s %6.3f of %5d   mean z %6.3f, rms z %.3f", k, float64(v.hit)/float64(v.n), v.n, v.z/float64(v.n), math.Sqrt(v.z2/float64(v.n)))
+		c, _, _ := strings.Cut(k, "/")
+		if class[c] == nil {
+			class[c] = &tally{}
+		}
+		class[c].hit += v.hit
+		class[c].n += v.n
+		class[c].z2 += v.z2
+	}
+	for _, c := range []string{"factor", "law", "constant", "G'", "tan δ", "alarm"} {
+		if v := class[c]; v != nil {
+			t.Logf("  pooled %-35s %6.3f of %5d   rms z %.3f", c, float64(v.hit)/float64(v.n), v.n, math.Sqrt(v.z2/float64(v.n)))
+		}
+	}
+}

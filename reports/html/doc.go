@@ -1,0 +1,8 @@
+// Package html renders a document as one page that needs nothing else: its
+// style and its figures are inside, and nothing is fetched.
+//
+// [Write] is the front door. The page reads on paper (print style), on a
+// telephone (tables scroll within their own frame) and by a screen reader
+// (headings, captions, and a sentence for every figure). Equal documents give
+// equal bytes.
+package html
