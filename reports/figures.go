@@ -59,7 +59,6 @@ func xy(points []fitting.Point, x, y func(fitting.Point) float64) (xs, ys []floa
 }
 
 func pFrequency(p fitting.Point) float64 { return float64(p.Frequency) }
-func pReduced(p fitting.Point) float64   { return float64(p.ReducedFrequency) }
 func pStorage(p fitting.Point) float64   { return float64(p.Storage) }
 func pLoss(p fitting.Point) float64      { return float64(p.Loss) }
 func pEta(p fitting.Point) float64       { return float64(p.Loss) / float64(p.Storage) }

@@ -33,15 +33,6 @@ func (s *Solution) covariance(columns []int) *Covariance {
 	return c
 }
 
-// factorRow writes row i of R⁻¹, whose products are the covariance.
-func (c *Covariance) row(i int) []float64 {
-	r := make([]float64, c.n)
-	for j := range r {
-		r[j] = c.rinv[i+j*c.n]
-	}
-	return r
-}
-
 // Root is a row of a square root of the covariance: Cov(a, b) = Σ a_k b_k.
 type Root []float64
 
@@ -54,7 +45,7 @@ func (r Root) Deviation() float64 {
 	return math.Sqrt(s)
 }
 
-// combine adds w times row i to the root.
+// add adds w times row i of R⁻¹, whose products are the covariance, to a root.
 func (c *Covariance) add(r Root, i int, w float64) {
 	if w == 0 {
 		return
@@ -120,8 +111,8 @@ func (c *Covariance) Vertical(T float64) Root {
 	return r
 }
 
-// Names of the nonlinear parameters of a form, as indices into θ; -1 where the
-// form has none such.
+// Indices are places of nonlinear parameters in θ; -1 where the form has none
+// such.
 type Indices struct {
 	Law        int // first of the law's constants
 	Activation int

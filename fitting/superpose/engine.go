@@ -38,7 +38,6 @@ type engine struct {
 	a, y    []float64 // m×nc, m
 	c       []float64 // nc, in units of scale
 	passive []bool
-	norm2   float64
 	known   bool
 
 	solver nnls.Solver

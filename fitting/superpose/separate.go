@@ -86,7 +86,6 @@ type separateSums struct {
 	jointM, jointD      []float64
 	sepM, sepD          []float64
 	parameters          int // passive columns of all knots
-	pointsM, pointsD    []int
 	jointPassive, total int
 }
 
