@@ -1,8 +1,6 @@
 package models
 
 import (
-	"math"
-
 	"gopkg.in/yaml.v3"
 
 	"phaselag/data/unit"
@@ -151,19 +149,6 @@ type StaticItem struct {
 	TemperatureC unit.Number `yaml:"temperature_C" json:"temperature_C"`
 	Source       string      `yaml:"source" json:"source"`
 }
-
-// Range is a closed interval [lower, upper].
-type Range [2]float64
-
-// Contains reports whether x is inside, with a relative guard of 1e-9 of the
-// larger bound against rounding in unit conversion.
-func (r Range) Contains(x float64) bool {
-	eps := 1e-9 * max(math.Abs(r[0]), math.Abs(r[1]))
-	return x >= r[0]-eps && x <= r[1]+eps
-}
-
-// Nearest is the value of the interval that is nearest to x.
-func (r Range) Nearest(x float64) float64 { return max(r[0], min(r[1], x)) }
 
 // Domain is where the compound answers.
 type Domain struct {

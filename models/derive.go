@@ -3,8 +3,6 @@ package models
 import (
 	"fmt"
 	"math"
-	"strconv"
-	"strings"
 
 	"phaselag/models/amplitude"
 	"phaselag/models/linear"
@@ -38,61 +36,28 @@ type filler struct {
 	kappa, f0     float64
 }
 
-// paramKind says what a row of the covariance belongs to.
-type paramKind int
-
-const (
-	pEquilibrium paramKind = iota
-	pBranch
-	pC1
-	pC2
-	pShiftActivation
-	pFactor
-	pVertical
-	pStorage
-	pLoss
-	pCritical
-	pExponent
-	pActivation
-	pSpecimen
-	pTemperature
-	pPhase
-)
-
-type parameter struct {
-	kind  paramKind
-	index int
-}
-
-// The names of the common errors among Uncertainty.Parameters.
-const (
-	ParamSpecimen    = "specimen_factor"
-	ParamTemperature = "temperature_common_K"
-	ParamPhase       = "phase_common_deg"
-)
-
-var plainParams = map[string]paramKind{
-	"linear.equilibrium_modulus_MPa":    pEquilibrium,
-	"shift.c1":                          pC1,
-	"shift.c2_K":                        pC2,
-	"shift.activation_kJ_per_mol":       pShiftActivation,
-	"amplitude.storage_MPa":             pStorage,
-	"amplitude.loss_MPa":                pLoss,
-	"amplitude.critical_strain_percent": pCritical,
-	"amplitude.exponent":                pExponent,
-	"amplitude.activation_kJ_per_mol":   pActivation,
-	ParamSpecimen:                       pSpecimen,
-	ParamTemperature:                    pTemperature,
-	ParamPhase:                          pPhase,
-}
-
 // New checks the fields of c, derives its SI values and returns it ready for
-// use. The error names the key at fault.
+// use; a nil list becomes an empty one, as it is in a file. The error names
+// the key at fault.
 func New(c Compound) (*Compound, error) {
+	notNil(&c.Linear.Branches)
+	notNil(&c.Shift.Factors)
+	notNil(&c.Vertical.Factors)
+	notNil(&c.Static)
+	notNil(&c.Uncertainty.Parameters)
+	notNil(&c.Uncertainty.Cholesky)
+	notNil(&c.Provenance.Inputs)
+	notNil(&c.Provenance.Assumptions)
 	if err := c.derive(); err != nil {
 		return nil, err
 	}
 	return &c, nil
+}
+
+func notNil[T any, S ~[]T](s *S) {
+	if *s == nil {
+		*s = S{}
+	}
 }
 
 func (c *Compound) derive() error {
@@ -125,6 +90,16 @@ func (c *Compound) derive() error {
 		d.spectrum.Times = append(d.spectrum.Times, b.Time)
 		d.spectrum.Moduli = append(d.spectrum.Moduli, b.Modulus*mega)
 	}
+	for i, item := range c.Static {
+		if !(item.Modulus > 0) || math.IsInf(item.Modulus, 0) {
+			return bad(fmt.Sprintf("static.%d.modulus_MPa", i), "must be positive and finite")
+		}
+	}
+	if u := c.Uncertainty; !(u.Coverage > 0 && u.Coverage < 1) {
+		return bad("uncertainty.coverage", "must lie between 0 and 1")
+	} else if u.DegreesOfFreedom < 0 {
+		return bad("uncertainty.degrees_of_freedom", "must not be negative")
+	}
 	if c.Linear.Equilibrium == 0 && len(c.Linear.Branches) == 0 {
 		return bad("linear", "has neither an equilibrium modulus nor a branch")
 	}
@@ -134,7 +109,7 @@ func (c *Compound) derive() error {
 	if err := c.deriveFiller(&d, bad); err != nil {
 		return err
 	}
-	if err := c.deriveDomain(bad); err != nil {
+	if err := c.deriveDomain(&d, bad); err != nil {
 		return err
 	}
 	if err := c.deriveParameters(&d, bad); err != nil {
@@ -148,6 +123,19 @@ type badFunc func(key, format string, a ...any) error
 
 func (c *Compound) deriveShift(d *derived, bad badFunc) error {
 	positive := func(x float64) bool { return x > 0 && !math.IsInf(x, 0) }
+	for i, s := range c.Shift.Factors {
+		if !positive(s.TemperatureC + zeroC) {
+			return bad(fmt.Sprintf("shift.factors.%d.temperature_C", i), "must be finite and above absolute zero")
+		}
+		if math.IsInf(float64(s.LogShift), 0) {
+			return bad(fmt.Sprintf("shift.factors.%d.log10_aT", i), "must be finite or null")
+		}
+	}
+	for i, v := range c.Vertical.Factors {
+		if !positive(v.TemperatureC + zeroC) {
+			return bad(fmt.Sprintf("vertical.factors.%d.temperature_C", i), "must be finite and above absolute zero")
+		}
+	}
 	switch c.Shift.Law {
 	case LawWLF:
 		w := thermal.WLF{C1: float64(c.Shift.C1), C2: float64(c.Shift.C2), Reference: d.reference}
@@ -235,108 +223,32 @@ func (c *Compound) deriveFiller(d *derived, bad badFunc) error {
 	default:
 		return bad("amplitude.frequency_dependence", "%q is not one of causal, rate_independent", a.Frequency)
 	}
-	if !(f.storage >= 0) || !(f.loss >= 0) {
-		return bad("amplitude", "storage_MPa and loss_MPa must not be negative")
+	for _, v := range []struct {
+		key      string
+		x        float64
+		positive bool
+	}{
+		{"storage_MPa", f.storage, false}, {"loss_MPa", f.loss, false},
+		{"critical_strain_percent", f.kraus.Critical, true}, {"exponent", f.kraus.Exponent, true},
+	} {
+		switch {
+		case math.IsNaN(v.x) || math.IsInf(v.x, 0):
+			return bad("amplitude."+v.key, "the amplitude law needs a finite number")
+		case v.x < 0 || v.positive && v.x == 0:
+			return bad("amplitude."+v.key, "%g has the wrong sign", v.x)
+		}
 	}
-	if !(f.kraus.Critical > 0) || !(f.kraus.Exponent > 0) || math.IsInf(f.kraus.Critical, 0) {
-		return bad("amplitude", "critical_strain_percent and exponent must be positive")
-	}
-	if math.IsNaN(f.arrhenius.Activation) {
+	switch {
+	case math.IsNaN(f.arrhenius.Activation):
 		f.arrhenius.Activation = 0
+	case math.IsInf(f.arrhenius.Activation, 0):
+		return bad("amplitude.activation_kJ_per_mol", "must be finite or null")
 	}
-	if f.kappa != 0 && !(f.f0 > 0) {
-		return bad("amplitude.reference_frequency_Hz", "must be positive")
+	if f.kappa != 0 && (!(f.f0 > 0) || math.IsInf(f.f0, 0)) {
+		return bad("amplitude.reference_frequency_Hz", "must be positive and finite")
 	}
 	d.filler = &f
 	return nil
-}
-
-func (c *Compound) deriveDomain(bad badFunc) error {
-	check := func(key string, r Range, lower float64) error {
-		if !(r[0] >= lower) || !(r[1] >= r[0]) || math.IsInf(r[1], 0) {
-			return bad(key, "must be a rising pair of finite numbers")
-		}
-		return nil
-	}
-	if err := check("domain.temperature_C", c.Domain.Temperature, -zeroC); err != nil {
-		return err
-	}
-	if err := check("domain.reduced_frequency_Hz", c.Domain.ReducedFrequency, 0); err != nil {
-		return err
-	}
-	if r := c.Domain.Strain; r != nil {
-		if err := check("domain.strain_amplitude_percent", *r, 0); err != nil {
-			return err
-		}
-	}
-	if c.Amplitude.Law != AmplitudeNone && math.IsNaN(float64(c.Domain.OwnStrain)) {
-		return bad("domain.own_strain_amplitude_percent", "is needed where there is an amplitude law")
-	}
-	return nil
-}
-
-func (c *Compound) deriveParameters(d *derived, bad badFunc) error {
-	u := c.Uncertainty
-	if len(u.Cholesky) != len(u.Parameters) {
-		return bad("uncertainty.cholesky", "%d rows for %d parameters", len(u.Cholesky), len(u.Parameters))
-	}
-	seen := map[string]bool{}
-	for i, name := range u.Parameters {
-		if len(u.Cholesky[i]) != i+1 {
-			return bad(fmt.Sprintf("uncertainty.cholesky.%d", i), "has %d numbers, row %d of a lower triangle has %d", len(u.Cholesky[i]), i, i+1)
-		}
-		for _, v := range u.Cholesky[i] {
-			if math.IsNaN(v) || math.IsInf(v, 0) {
-				return bad(fmt.Sprintf("uncertainty.cholesky.%d", i), "has a number that is not finite")
-			}
-		}
-		if seen[name] {
-			return bad(fmt.Sprintf("uncertainty.parameters.%d", i), "%q stands twice", name)
-		}
-		seen[name] = true
-		p, ok := c.parameter(name, d)
-		if !ok {
-			return bad(fmt.Sprintf("uncertainty.parameters.%d", i), "%q is no parameter of this compound", name)
-		}
-		d.params = append(d.params, p)
-	}
-	return nil
-}
-
-// parameter finds the parameter of a name; ok is false if c has none such.
-func (c *Compound) parameter(name string, d *derived) (p parameter, ok bool) {
-	if kind, plain := plainParams[name]; plain {
-		switch kind {
-		case pC1, pC2:
-			return parameter{kind: kind}, d.wlf != nil
-		case pShiftActivation:
-			return parameter{kind: kind}, c.Shift.Law == LawArrhenius
-		case pStorage, pLoss, pCritical, pExponent, pActivation:
-			return parameter{kind: kind}, d.filler != nil
-		}
-		return parameter{kind: kind}, true
-	}
-	parts := strings.Split(name, ".")
-	if len(parts) != 4 {
-		return p, false
-	}
-	i, err := strconv.Atoi(parts[2])
-	if err != nil || i < 0 {
-		return p, false
-	}
-	switch parts[0] + "." + parts[1] + "." + parts[3] {
-	case "linear.branches.modulus_MPa":
-		return parameter{pBranch, i}, i < len(c.Linear.Branches)
-	case "shift.factors.log10_aT":
-		for k, j := range d.factorIdx {
-			if j == i {
-				return parameter{pFactor, k}, true
-			}
-		}
-	case "vertical.factors.b_T":
-		return parameter{pVertical, i}, d.vertical != nil && i < len(d.vertical.T)
-	}
-	return p, false
 }
 
 // KeyError is a fault of a compound file: the path of the key and what is

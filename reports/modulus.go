@@ -2,7 +2,9 @@ package reports
 
 import (
 	"errors"
+	"fmt"
 	"math"
+	"strings"
 
 	"phaselag/fitting"
 	"phaselag/models"
@@ -98,4 +100,39 @@ func propertiesAt(r *fitting.Result, frequencies []float64) table.Table {
 		panic("reports: " + err.Error())
 	}
 	return t
+}
+
+// Footnotes replaces the reasons in the last column of a table of answers by
+// numbers, for a terminal, and gives the reasons as lines of at most 80 columns.
+func Footnotes(t table.Table) (table.Table, []string) {
+	last := len(t.Columns) - 1
+	numbers := map[string]int{}
+	var lines []string
+	rows := make([][]table.Cell, len(t.Rows))
+	texts := t.Strings()
+	for i, row := range t.Rows {
+		rows[i] = append([]table.Cell{}, row...)
+		text := texts[i][last]
+		reason, outside := strings.CutPrefix(text, "outside: ")
+		if !outside {
+			continue
+		}
+		n, seen := numbers[reason]
+		if !seen {
+			n = len(numbers) + 1
+			numbers[reason] = n
+			for k, l := range wrap(fmt.Sprintf("[%d] %s", n, reason), 76) {
+				if k > 0 {
+					l = "    " + l
+				}
+				lines = append(lines, l)
+			}
+		}
+		rows[i][last] = table.Text(fmt.Sprintf("outside [%d]", n))
+	}
+	t.Rows = rows
+	if len(lines) > 0 {
+		lines = append([]string{""}, lines...)
+	}
+	return t, lines
 }

@@ -47,6 +47,10 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 		{Key: "domain"},
 	}}
 	t.Assumptions = append(t.Assumptions, m.Assumptions...)
+	t.Assumptions = append(t.Assumptions, partCaution)
+	if math.IsNaN(m.Tolerance.Hardness) {
+		t.Assumptions = append(t.Assumptions, "no production tolerance is stated: the intervals are those of the tested batch")
+	}
 	ref, err := mountAt(c, m, reference)
 	if err != nil {
 		return table.Table{}, 0, fmt.Errorf("reference condition: %w", err)
@@ -100,6 +104,9 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 	}
 	return t, outside, nil
 }
+
+// partCaution goes with every stiffness.
+const partCaution = "stiffness of the tested compound in an idealised part; production spread is not in the intervals; supports that people depend on belong to a qualified engineer and the codes in force"
 
 // standardGravity is g_n, m/s² (CGPM 1901).
 const standardGravity = 9.80665

@@ -21,13 +21,13 @@ func Understood(w io.Writer, c *data.Campaign, findings []data.Finding) error {
 	for _, t := range c.Tests {
 		fmt.Fprintf(&b, "\n%s: %s, specimen %s, mounting %s, %s\n", t.Name, t.Kind, t.Specimen, t.Mounting, t.Deformation)
 		for _, col := range t.Columns {
-			fmt.Fprintf(&b, "    %-26s %s in %s (%s)\n", col.Quantity, quoted(col.Heading), unitText(col.Unit), col.File)
+			fmt.Fprintf(&b, "    %-19s %s in %s (%s)\n", col.Quantity, quoted(col.Heading), unitText(col.Unit), col.File)
 		}
 		for _, v := range t.StaticValues {
 			fmt.Fprintf(&b, "    %.4g MPa at %s strain, %s, %s\n", v.Modulus/1e6, percentText(v.Strain), secondsText(v.Time), tempText(v.Temperature))
 		}
 		for _, r := range t.Runs {
-			fmt.Fprintf(&b, "    %s\n", runText(r))
+			fmt.Fprintf(&b, "    %s\n", runText(r, t.Name))
 		}
 	}
 	if len(c.Assumptions) > 0 {
@@ -84,7 +84,7 @@ func tempText(T float64) string {
 }
 
 // runText is one line on a run: what varies, from where to where.
-func runText(r data.Run) string {
+func runText(r data.Run, test string) string {
 	type span struct {
 		name  string
 		scale float64
@@ -97,7 +97,7 @@ func runText(r data.Run) string {
 			used++
 		}
 	}
-	text := fmt.Sprintf("%-28s %3d points", r.Name, len(r.Points))
+	text := fmt.Sprintf("%-12s %3d points", strings.TrimPrefix(strings.TrimPrefix(r.Name, test), ", "), len(r.Points))
 	if used < len(r.Points) {
 		text += fmt.Sprintf(", %d used", used)
 	}
@@ -105,7 +105,7 @@ func runText(r data.Run) string {
 		{"f", 1, "Hz", func(p data.Point) float64 { return p.Frequency }},
 		{"t", 1, "s", func(p data.Point) float64 { return p.Time }},
 		{"strain", 100, "%", func(p data.Point) float64 { return p.Strain }},
-		{"modulus", 1e-6, "MPa", func(p data.Point) float64 { return p.Storage }},
+		{"", 1e-6, "MPa", func(p data.Point) float64 { return p.Storage }},
 	} {
 		lo, hi := math.Inf(1), math.Inf(-1)
 		for _, p := range r.Points {
@@ -116,9 +116,9 @@ func runText(r data.Run) string {
 		switch {
 		case lo > hi:
 		case hi-lo <= 1e-9*hi:
-			text += fmt.Sprintf(", %s %.3g %s", s.name, lo, s.unit)
+			text += fmt.Sprintf(", %s %s", strings.TrimSpace(fmt.Sprintf("%s %.3g", s.name, lo)), s.unit)
 		default:
-			text += fmt.Sprintf(", %s %.3g to %.3g %s", s.name, lo, hi, s.unit)
+			text += fmt.Sprintf(", %s to %.3g %s", strings.TrimSpace(fmt.Sprintf("%s %.3g", s.name, lo)), hi, s.unit)
 		}
 	}
 	return text

@@ -1,6 +1,7 @@
 package cli
 
 import (
+	"fmt"
 	"math"
 
 	"github.com/spf13/cobra"
@@ -110,18 +111,26 @@ func (a *app) modulus(o modulusOptions) error {
 }
 
 // answer prints a table on stdout; assumptions go with it in JSON, and to
-// stderr otherwise.
+// stderr otherwise. On a terminal, long reasons stand below the table.
 func (a *app) answer(t table.Table, format string) error {
-	if table.Format(format) != table.JSON {
-		for _, s := range t.Assumptions {
-			a.note(s)
-		}
-		if table.Format(format) == table.CSV {
-			t.Assumptions = nil
+	if table.Format(format) == table.JSON {
+		return table.Write(a.out, table.JSON, t)
+	}
+	for _, s := range t.Assumptions {
+		a.note(s)
+	}
+	t.Assumptions = nil
+	if table.Format(format) != table.Terminal {
+		return table.Write(a.out, table.Format(format), t)
+	}
+	t, reasons := reports.Footnotes(t)
+	if err := table.Write(a.out, table.Terminal, t); err != nil {
+		return err
+	}
+	for _, line := range reasons {
+		if _, err := fmt.Fprintln(a.out, line); err != nil {
+			return err
 		}
 	}
-	if table.Format(format) == table.Terminal {
-		t.Assumptions = nil
-	}
-	return table.Write(a.out, table.Format(format), t)
+	return nil
 }
