@@ -69,17 +69,17 @@ func compoundLines(line func(string, ...any), r *fitting.Result) {
 	}
 	if n := len(r.Isotherms); n > 0 {
 		m := r.Common
-		line("one curve   superposition %s (p %.2g): misses phase by %.2g° and magnitude by %.2g %%",
+		line("one curve   superposition %s (p %.2g): it misses the phase by %.2g° and the",
 			map[string]string{models.HoldsYes: "holds", models.HoldsNo: "DOES NOT HOLD", models.HoldsUndecided: "is undecided"}[c.Fit.Superposition.Holds],
-			float64(m.P), float64(m.PhaseDeg), float64(m.Percent))
-		line("            rms, curves of their own by %.2g° and %.2g %%", float64(m.PhaseFloorDeg), float64(m.PercentFloor))
+			float64(m.P), float64(m.PhaseDeg))
+		line("            magnitude by %.2g %% rms, curves of their own by %.2g° and %.2g %%", float64(m.Percent), float64(m.PhaseFloorDeg), float64(m.PercentFloor))
 	}
 	if c.Vertical.Law != models.VerticalNone {
 		line("vertical    %s", c.Vertical.Law)
 	}
 	if c.Amplitude.Law != models.AmplitudeNone {
-		line("strain      Kraus: ΔG' %s, ΔG'' %s MPa, critical %s %%, m %s", parameterText(r, "filler storage ΔG′"), parameterText(r, "filler loss ΔG″"), parameterText(r, "critical strain"), parameterText(r, "Kraus exponent m"))
-		line("            E_a %s kJ/mol, %s", parameterText(r, "filler activation energy"), strings.ReplaceAll(c.Amplitude.Frequency, "_", " "))
+		line("strain      Kraus, %s: ΔG' %s, ΔG'' %s MPa,", strings.ReplaceAll(c.Amplitude.Frequency, "_", " "), parameterText(r, "filler storage ΔG′"), parameterText(r, "filler loss ΔG″"))
+		line("            critical strain %s %%, m %s, E_a %s kJ/mol", parameterText(r, "critical strain"), parameterText(r, "Kraus exponent m"), parameterText(r, "filler activation energy"))
 	}
 	line("")
 	line("%10s%10s%18s%18s%18s", "T / °C", "f / Hz", s+"' / MPa", s+"'' / MPa", "tan δ")
