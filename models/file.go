@@ -7,8 +7,11 @@ import (
 	"io"
 	"io/fs"
 	"os"
+	"reflect"
 	"regexp"
 	"strconv"
+	"strings"
+	"unicode"
 	"unicode/utf8"
 
 	"gopkg.in/yaml.v3"
@@ -22,13 +25,48 @@ const sizeLimit = 32 << 20
 
 // YAML is the compound file as YAML, the same bytes for the same Compound.
 func (c *Compound) YAML() ([]byte, error) {
+	var root yaml.Node
+	if err := root.Encode(c); err != nil {
+		return nil, err
+	}
+	quote(&root, reflect.ValueOf(*c))
 	var buf bytes.Buffer
 	enc := yaml.NewEncoder(&buf)
 	enc.SetIndent(2)
-	if err := enc.Encode(c); err != nil {
+	if err := enc.Encode(&root); err != nil {
 		return nil, err
 	}
 	return buf.Bytes(), enc.Close()
+}
+
+// quote puts the texts of v that have line breaks or characters that do not
+// print in double quotation marks in its tree n: as a block, which the YAML
+// library would choose, some line breaks are lost.
+func quote(n *yaml.Node, v reflect.Value) {
+	switch v.Kind() {
+	case reflect.Pointer:
+		if !v.IsNil() {
+			quote(n, v.Elem())
+		}
+	case reflect.Slice:
+		for i := range v.Len() {
+			quote(n.Content[i], v.Index(i))
+		}
+	case reflect.Struct:
+		for i := range v.NumField() {
+			if key, _, _ := strings.Cut(v.Type().Field(i).Tag.Get("yaml"), ","); key != "" {
+				quote(find(n, key), v.Field(i))
+			}
+		}
+	case reflect.String:
+		text := v.String()
+		for _, r := range text {
+			if r != ' ' && !unicode.IsGraphic(r) || r == '\u2028' || r == '\u2029' {
+				*n = yaml.Node{Kind: yaml.ScalarNode, Tag: "!!str", Value: text, Style: yaml.DoubleQuotedStyle}
+				return
+			}
+		}
+	}
 }
 
 // JSON is the compound file as JSON, with the same keys and numbers as YAML.

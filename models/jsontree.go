@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"encoding/json"
 	"sort"
+	"strings"
 	"unicode/utf8"
 
 	"gopkg.in/yaml.v3"
@@ -54,9 +55,9 @@ func (p *jsonParser) value() *yaml.Node {
 	case string:
 		n.Tag, n.Value, n.Style = "!!str", v, yaml.DoubleQuotedStyle
 	case json.Number:
-		n.Tag, n.Value = "!!float", v.String()
-		if bytes.IndexAny([]byte(v), ".eE") < 0 {
-			n.Tag = "!!int"
+		n.Tag, n.Value = "!!int", v.String()
+		if strings.ContainsAny(n.Value, ".eE") {
+			n.Tag = "!!float"
 		}
 	case bool:
 		n.Tag, n.Value = "!!bool", "false"

@@ -112,7 +112,7 @@ func isothermFigure(s string, sets []isothermSet) namedFigure {
 		return p
 	}
 	return namedFigure{"isotherms", "Isotherms as measured, not shifted.", figure.Figure{
-		Width: 170, Height: 150, Columns: 2, Shared: true,
+		Width: 170, Height: 118, Columns: 2, Shared: true,
 		Panels: []figure.Panel{
 			panel("storage modulus "+s+"′ (MPa)", true, pStorage), panel("loss modulus "+s+"″ (MPa)", true, pLoss),
 			panel("loss factor tan δ", false, pEta), panel("magnitude |"+s+"*| (MPa)", true, pMagnitude),
@@ -126,7 +126,7 @@ func wicketFigure(s string, sets []isothermSet) namedFigure {
 		xs, ys := xy(v.points, pMagnitude, pEta)
 		p.Series = append(p.Series, figure.Series{Name: degreesLabel(v.T), X: xs, Y: ys, Glyph: figure.PickGlyph(i), Colour: figure.Ramp(i, len(sets))})
 	}
-	return namedFigure{"wicket", "Wicket plot: with neither frequency nor temperature on the axes, the isotherms of a thermorheologically simple material fall on one curve without any shift.", figure.Figure{Width: 160, Height: 95, Panels: []figure.Panel{p}}}
+	return namedFigure{"wicket", "Wicket plot: with neither frequency nor temperature on the axes, the isotherms of a thermorheologically simple material fall on one curve without any shift.", figure.Figure{Width: 160, Height: 80, Panels: []figure.Panel{p}}}
 }
 
 // curveDecade is how many points a decade a curve has.
@@ -198,11 +198,18 @@ func masterFigure(r *fitting.Result, sets []isothermSet) namedFigure {
 			figure.Series{X: xs, Y: ly, Glyph: g, Size: 1.2, Colour: figure.Vermillion})
 		bottom.Series = append(bottom.Series, figure.Series{X: xs, Y: ey, Glyph: g, Size: 1.2, Colour: figure.Green})
 	}
+	// The curves once more on top of the points, which would hide them.
+	for _, v := range []struct {
+		panel *figure.Panel
+		b     *band
+	}{{&top, &st}, {&top, &lo}, {&bottom, &eta}} {
+		v.panel.Series = append(v.panel.Series, figure.Series{X: v.b.x, Y: v.b.y, Line: figure.Solid, Width: 0.5, Colour: figure.Black})
+	}
 	caption := "Master curve of storage modulus, loss modulus and loss factor at the reference temperature, with 95 % bands. The bands hold everything that the measurements share."
 	if c.Amplitude.Law != models.AmplitudeNone {
 		caption += fmt.Sprintf(" Curve at the isotherms' own amplitude of %.3g %%; the filler's part does not shift with temperature and is moved as the model says.", float64(c.Domain.OwnStrain))
 	}
-	return namedFigure{"master-curve", caption, figure.Figure{Width: 170, Height: 165, Columns: 1, Shared: true, Panels: []figure.Panel{top, bottom}}}
+	return namedFigure{"master-curve", caption, figure.Figure{Width: 170, Height: 140, Columns: 1, Shared: true, Panels: []figure.Panel{top, bottom}}}
 }
 
 func shiftFigure(r *fitting.Result) namedFigure {
@@ -237,7 +244,7 @@ func shiftFigure(r *fitting.Result) namedFigure {
 		diff.X, diff.Y, diff.YError = append(diff.X, float64(v.TemperatureC)), append(diff.Y, float64(v.Log)-float64(v.Law)), append(diff.YError, 1.96*float64(v.U))
 	}
 	residual.Series = []figure.Series{diff}
-	fig := figure.Figure{Width: 170, Height: 80, Panels: []figure.Panel{p}}
+	fig := figure.Figure{Width: 170, Height: 72, Panels: []figure.Panel{p}}
 	caption := "Shift factors of the tested temperatures."
 	if c != nil && c.Shift.Law != models.LawNone {
 		fig.Panels = append(fig.Panels, residual)
@@ -288,7 +295,7 @@ func strainFigure(r *fitting.Result) namedFigure {
 		left.Series = append(left.Series, st.series(name, dash, col))
 		right.Series = append(right.Series, lo.series("", dash, col))
 	}
-	return namedFigure{"strain-dependence", "Dependence on the strain amplitude (single amplitude) as measured, with the compound and its 95 % bands. Points and curves may differ by the factor of the specimen.", figure.Figure{Width: 170, Height: 80, Panels: []figure.Panel{left, right}}}
+	return namedFigure{"strain-dependence", "Dependence on the strain amplitude (single amplitude) as measured, with the compound and its 95 % bands. Points and curves may differ by the factor of the specimen and the temperature offset of the run.", figure.Figure{Width: 170, Height: 72, Panels: []figure.Panel{left, right}}}
 }
 
 func temperatureFigure(r *fitting.Result) namedFigure {
@@ -358,5 +365,5 @@ func relaxationFigure(r *fitting.Result, pts []fitting.Point) namedFigure {
 		{Name: "measured", X: xs, Y: ys, Glyph: figure.PickGlyph(0), Colour: figure.Blue},
 		{Name: "fitted", X: xs, Y: fs, Line: figure.Solid, Colour: figure.Black},
 	}
-	return namedFigure{"relaxation", "Relaxation modulus as measured and fitted, with the specimen's factor.", figure.Figure{Width: 120, Height: 80, Panels: []figure.Panel{p}}}
+	return namedFigure{"relaxation", "Relaxation modulus as measured and fitted, with the specimen's factor.", figure.Figure{Width: 120, Height: 68, Panels: []figure.Panel{p}}}
 }

@@ -1,6 +1,7 @@
 package figure
 
 import (
+	"strconv"
 	"time"
 
 	"phaselag/reports/table"
@@ -145,7 +146,11 @@ func GridOf(t table.Table, caption string) Grid {
 func Readable(s string) string {
 	for i := 1; i < len(s); i++ {
 		if s[i] == 'e' && s[i-1] >= '0' && s[i-1] <= '9' {
-			return minus(s[:i]) + "·10^{" + minus(s[i+1:]) + "}"
+			exponent := s[i+1:]
+			if n, err := strconv.Atoi(exponent); err == nil {
+				exponent = strconv.Itoa(n) // no plus sign, no leading zeros
+			}
+			return minus(s[:i]) + "·10^{" + minus(exponent) + "}"
 		}
 	}
 	return minus(s)
