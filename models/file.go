@@ -41,7 +41,8 @@ func (c *Compound) YAML() ([]byte, error) {
 
 // quote puts the texts of v that have line breaks or characters that do not
 // print in double quotation marks in its tree n: as a block, which the YAML
-// library would choose, some line breaks are lost.
+// library would choose, some line breaks are lost. (It also takes the text <<
+// for an order to merge mappings.)
 func quote(n *yaml.Node, v reflect.Value) {
 	switch v.Kind() {
 	case reflect.Pointer:
@@ -59,12 +60,9 @@ func quote(n *yaml.Node, v reflect.Value) {
 			}
 		}
 	case reflect.String:
-		text := v.String()
-		for _, r := range text {
-			if r != ' ' && !unicode.IsGraphic(r) || r == '\u2028' || r == '\u2029' {
-				*n = yaml.Node{Kind: yaml.ScalarNode, Tag: "!!str", Value: text, Style: yaml.DoubleQuotedStyle}
-				return
-			}
+		odd := func(r rune) bool { return r != ' ' && !unicode.IsGraphic(r) || r == '\u2028' || r == '\u2029' }
+		if text := v.String(); text == "<<" || strings.ContainsFunc(text, odd) {
+			*n = yaml.Node{Kind: yaml.ScalarNode, Tag: "!!str", Value: text, Style: yaml.DoubleQuotedStyle}
 		}
 	}
 }
