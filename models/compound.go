@@ -1,8 +1,6 @@
 package models
 
 import (
-	"gopkg.in/yaml.v3"
-
 	"phaselag/data/unit"
 )
 
@@ -204,16 +202,6 @@ type Uncertainty struct {
 
 // Row is one row of a triangle, written on one line.
 type Row []float64
-
-// MarshalYAML writes the row in flow style.
-func (r Row) MarshalYAML() (any, error) {
-	n := new(yaml.Node)
-	if err := n.Encode([]float64(r)); err != nil {
-		return nil, err
-	}
-	n.Style = yaml.FlowStyle
-	return n, nil
-}
 
 // Provenance says from what the compound was made.
 type Provenance struct {

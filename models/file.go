@@ -10,8 +10,6 @@ import (
 	"reflect"
 	"regexp"
 	"strconv"
-	"strings"
-	"unicode"
 	"unicode/utf8"
 
 	"gopkg.in/yaml.v3"
@@ -25,46 +23,13 @@ const sizeLimit = 32 << 20
 
 // YAML is the compound file as YAML, the same bytes for the same Compound.
 func (c *Compound) YAML() ([]byte, error) {
-	var root yaml.Node
-	if err := root.Encode(c); err != nil {
-		return nil, err
-	}
-	quote(&root, reflect.ValueOf(*c))
 	var buf bytes.Buffer
 	enc := yaml.NewEncoder(&buf)
 	enc.SetIndent(2)
-	if err := enc.Encode(&root); err != nil {
+	if err := enc.Encode(encode(reflect.ValueOf(*c))); err != nil {
 		return nil, err
 	}
 	return buf.Bytes(), enc.Close()
-}
-
-// quote puts the texts of v that have line breaks or characters that do not
-// print in double quotation marks in its tree n: as a block, which the YAML
-// library would choose, some line breaks are lost. (It also takes the text <<
-// for an order to merge mappings.)
-func quote(n *yaml.Node, v reflect.Value) {
-	switch v.Kind() {
-	case reflect.Pointer:
-		if !v.IsNil() {
-			quote(n, v.Elem())
-		}
-	case reflect.Slice:
-		for i := range v.Len() {
-			quote(n.Content[i], v.Index(i))
-		}
-	case reflect.Struct:
-		for i := range v.NumField() {
-			if key, _, _ := strings.Cut(v.Type().Field(i).Tag.Get("yaml"), ","); key != "" {
-				quote(find(n, key), v.Field(i))
-			}
-		}
-	case reflect.String:
-		odd := func(r rune) bool { return r != ' ' && !unicode.IsGraphic(r) || r == '\u2028' || r == '\u2029' }
-		if text := v.String(); text == "<<" || strings.ContainsFunc(text, odd) {
-			*n = yaml.Node{Kind: yaml.ScalarNode, Tag: "!!str", Value: text, Style: yaml.DoubleQuotedStyle}
-		}
-	}
 }
 
 // JSON is the compound file as JSON, with the same keys and numbers as YAML.
