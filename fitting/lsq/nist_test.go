@@ -234,3 +234,27 @@ func TestNISTJacobians(t *testing.T) {
 		}
 	}
 }
+
+// All 54 solutions, one after the other, with one workspace.
+func BenchmarkNIST(b *testing.B) {
+	all := readNIST(b)
+	var s Solver
+	for _, p := range all {
+		q := p.problem()
+		for k, start := range p.start {
+			// The measure counts only for right answers.
+			res, err := s.Solve(q, start, nil)
+			if err != nil || digits(res.X[0], p.certified[0]) < 6 {
+				b.Fatalf("%s, start %d: %v", p.name, k+1, res.Status)
+			}
+		}
+	}
+	b.ReportAllocs()
+	for b.Loop() {
+		for _, p := range all {
+			q := p.problem()
+			_, _ = s.Solve(q, p.start[0], nil)
+			_, _ = s.Solve(q, p.start[1], nil)
+		}
+	}
+}

@@ -44,6 +44,9 @@ type Result struct {
 // ErrSingular says that the data do not determine all parameters together.
 var ErrSingular = errors.New("jacobian singular to working precision: the data do not determine all parameters together")
 
+// ErrNoJacobian says that the Jacobian at the best point could not be had.
+var ErrNoJacobian = errors.New("no jacobian at the best point")
+
 // Usable reports whether X may be taken for a minimum: a test of convergence
 // was passed and the residual is finite. It says nothing about how well the
 // parameters are determined; see Condition and StandardErrors.
@@ -67,10 +70,13 @@ func (r *Result) Variance() float64 {
 // UnitCovariance returns (JᵀJ)⁻¹, the covariance of the parameters for residuals
 // of unit variance, N×N. Rows and columns of held parameters are zero: the
 // covariance is conditional on the bounds they rest at. It is linearised and
-// assumes independent residuals. The error is ErrSingular.
+// assumes independent residuals. The error is ErrSingular or ErrNoJacobian.
 func (r *Result) UnitCovariance() ([]float64, error) {
 	n, k := len(r.X), len(r.column)
 	c := make([]float64, n*n)
+	if r.tri == nil {
+		return nil, ErrNoJacobian
+	}
 	if k == 0 {
 		return c, nil
 	}

@@ -17,7 +17,8 @@ type Settings struct {
 	FunctionTol float64
 
 	// StepTol: converged when ‖D·p‖ ≤ StepTol·‖D·x‖, with p the step, or the
-	// radius of the region for p, and D the column norms of J. Default 1e-12.
+	// radius of the region for p, and D the column norms of J. Default 1e-12; for
+	// many fits in a row 1e-8 is enough and saves the last few steps.
 	StepTol float64
 
 	// MaxEvaluations limits the calls of Residual. Default 2000·(N+1).

@@ -13,7 +13,8 @@ import (
 //	ρ = (½‖r(x)‖² − ½‖r(x+p)‖²) / predicted reduction
 //	ρ ≥ 10⁻⁴: accept;  ρ ≤ 1/4: shrink Δ;  ρ ≥ 3/4: Δ = 2·‖D·p‖
 //
-// D holds the largest norms of the columns of J so far. Reference: J. J. Moré,
+// D holds the norms of the columns of J, which may fall only gradually from one
+// step to the next (memory, in linearise.go). Reference: J. J. Moré,
 // The Levenberg-Marquardt algorithm: implementation and theory, Lecture Notes in
 // Mathematics 630, Springer 1978. See region.go for the step.
 //
@@ -33,6 +34,10 @@ import (
 // noise is the reduction, relative to ½‖r‖², below which rounding in r may
 // decide whether an observed reduction is positive.
 const noise = 1e-10
+
+// floor is the predicted reduction, relative to ½‖r‖², at which a step that does not
+// bring the next one down has nothing more to find.
+const floor = 1e-15
 
 // Solver holds the workspace. The zero value is ready for use. A Solver must not
 // be used by two goroutines at once.
@@ -212,12 +217,15 @@ func (s *Solver) search(p *Problem, res *Result, radius *float64, size float64) 
 		}
 		accepted := ratio >= 1e-4
 		if fine && math.Abs(observed) <= noise*half {
-			// Rounding decides on ρ; the prediction, which comes from the gradient,
-			// is still exact. Steps go on while it falls.
-			*radius = math.Max(before, 2*length)
-			accepted = accepted || predicted < 0.8*s.polish
+			// Rounding may decide on ρ; the prediction, which comes from the gradient,
+			// is still exact. Full steps go on while it falls. Where it does not, they
+			// overshoot and need damping, or all is rounding.
+			falling := predicted < 0.8*s.polish
 			s.polish = predicted
-			if !accepted {
+			if falling {
+				*radius = math.Max(before, 2*length)
+				accepted = true
+			} else if predicted <= floor*half {
 				res.Status = StepConverged
 				return false
 			}

@@ -14,6 +14,9 @@ const (
 	FunctionConverged
 	// StepConverged: steps, or the region for them, have become negligible.
 	StepConverged
+	// Stalled: no step, however short, reduces the residual although the gradient
+	// is not small. The Jacobian may be wrong, or the residual not smooth.
+	Stalled
 	// EvaluationLimit: MaxEvaluations was reached.
 	EvaluationLimit
 	// JacobianFailed: the Jacobian was not finite or returned an error at the
@@ -28,6 +31,7 @@ var statusWords = [...]string{
 	GradientConverged: "gradient converged",
 	FunctionConverged: "function converged",
 	StepConverged:     "step converged",
+	Stalled:           "stalled",
 	EvaluationLimit:   "evaluation limit",
 	JacobianFailed:    "jacobian failed",
 	Stopped:           "stopped",
