@@ -301,7 +301,7 @@ func (a *answer) start() (*superpose.Solution, error) {
 	var best *superpose.Solution
 	for round := range 4 {
 		lo, hi := a.window(logA)
-		form.Lattice = lattice(lo, hi)
+		form.Lattice = lattice(lo, hi, 1)
 		var tries []superpose.Start
 		for _, s := range starts {
 			if !form.Filler {
@@ -346,10 +346,32 @@ func (a *answer) kappas() []float64 {
 	return []float64{1, 0}
 }
 
+// coarse is by how much a lattice twice as dense must lower the objective to be
+// taken: the two units of AIC for each of five more moduli.
+const coarse = 10
+
+// densify refines the first fit, and takes a lattice twice as dense where three
+// relaxation times a decade are too few at the noise that was found: sharp
+// transitions, the terminal zone of a liquid, measurements without noise. A
+// lattice that is too coarse tilts shift factors by more than their
+// uncertainty.
+func (a *answer) densify(first *superpose.Solution) (*superpose.Solution, []superpose.GroupNoise, error) {
+	best, noise, err := first.Refine(6)
+	if err != nil {
+		return nil, nil, err
+	}
+	lo, hi := a.window(best.LogShift)
+	dense, err := best.OnLattice(lattice(lo, hi, 2))
+	if err != nil || best.Objective-dense.Objective < coarse {
+		return best, noise, nil
+	}
+	return dense.Refine(6)
+}
+
 // chooseAmplitude fits the filler term with both frequency laws and without,
 // and keeps the best by AICc.
 func (a *answer) chooseAmplitude(first *superpose.Solution) error {
-	best, noise, err := first.Refine(6)
+	best, noise, err := a.densify(first)
 	if err != nil {
 		return err
 	}
@@ -388,11 +410,30 @@ func (a *answer) chooseAmplitude(first *superpose.Solution) error {
 	return err
 }
 
+// indistinguishable is the difference of AICc within which two forms are no
+// different.
+const indistinguishable = 2
+
+// leastAICc chooses the rival with the least AICc, and of those that are no
+// different from it the one with the fewest constants.
 func leastAICc(r []rival) int {
-	at := 0
+	best := 0
+	value := make([]float64, len(r))
 	for i := range r {
-		if r[i].s.AICc() < r[at].s.AICc() {
+		value[i] = r[i].s.AICc()
+		if value[i] < value[best] {
+			best = i
+		}
+	}
+	at := best
+	for i := range r {
+		if value[i] <= value[best]+indistinguishable && r[i].s.Constants() < r[at].s.Constants() {
 			at = i
+		}
+	}
+	for i := range r {
+		if i != at && value[i] <= value[at]+indistinguishable && r[i].note == "" {
+			r[i].note = "no different from the one used"
 		}
 	}
 	r[at].chosen = true
@@ -504,7 +545,7 @@ func (a *answer) chooseVertical() error {
 		}
 		a.vertical = append(a.vertical, rival{name: "density", s: s, note: fmt.Sprintf("volume expansion %.3g /K", expansion)})
 		// Within 2 the simpler stays.
-		if wish == "density" || s.AICc() < base.AICc()-2 {
+		if wish == "density" || s.AICc() < base.AICc()-indistinguishable {
 			if a.campaign.Analysis.Expansion != expansion {
 				a.assume("volume expansion of the density law: %.3g /K, that of gum rubber (value from memory)", expansion)
 			}

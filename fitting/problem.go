@@ -396,20 +396,24 @@ func (t *task) window(logA func(T float64) float64) (lo, hi float64) {
 	return lo, hi
 }
 
-// The lattice of relaxation times, τ_k = 10^(k/3) s with integer k.
+// The lattice of relaxation times, τ_k = 10^(k/3) s with integer k, and twice as
+// dense where the measurements ask for it (10^(k/6) s has all times of the
+// other).
 const (
 	perDecade  = 3
 	beyondFast = 1.5 // decades beyond the fast end of the window
 	beyondSlow = 1.0 // decades beyond the slow end
 )
 
-// lattice covers a window of reduced frequencies.
-func lattice(lo, hi float64) []float64 {
-	first := int(math.Floor(perDecade * (math.Log10(1/(2*math.Pi*hi)) - beyondFast)))
-	last := int(math.Ceil(perDecade * (math.Log10(1/(2*math.Pi*lo)) + beyondSlow)))
+// lattice covers a window of reduced frequencies with density times perDecade
+// relaxation times a decade.
+func lattice(lo, hi float64, density int) []float64 {
+	n := float64(perDecade * density)
+	first := int(math.Floor(n * (math.Log10(1/(2*math.Pi*hi)) - beyondFast)))
+	last := int(math.Ceil(n * (math.Log10(1/(2*math.Pi*lo)) + beyondSlow)))
 	var out []float64
 	for k := first; k <= last; k++ {
-		out = append(out, math.Pow(10, float64(k)/perDecade))
+		out = append(out, math.Pow(10, float64(k)/n))
 	}
 	return out
 }

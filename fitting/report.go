@@ -184,7 +184,12 @@ func (a *answer) fill(r *Result) {
 		param("C2", "K", c2, math.Hypot(cov.Theta(idx.Law+1).Deviation(), common), math.Abs(c2)/2)
 	case superpose.Arrhenius:
 		e := s.Theta[idx.Law]
-		param("activation energy of the shift", "kJ/mol", e, cov.Theta(idx.Law).Deviation(), math.Abs(e)/2)
+		// A common error δ of all temperatures changes E_a by −2δ/T of itself.
+		common := a.campaign.Uncertainty.TemperatureCommon
+		if math.IsNaN(common) {
+			common = 0
+		}
+		param("activation energy of the shift", "kJ/mol", e, math.Hypot(cov.Theta(idx.Law).Deviation(), 2*e*common/a.reference), math.Abs(e)/2)
 	}
 	if s.Form.Filler {
 		critical, exponent := s.Kraus()

@@ -33,10 +33,13 @@ func scenarios() []scenario {
 	return []scenario{
 		{"filled, strain sweeps", demo.HM60(), demo.HM60Plan(), true},
 		{"gum, isotherms only", demo.Gum(), demo.IsothermPlan(), true},
+		{"narrow transition", demo.Narrow(), demo.NarrowPlan(), true},
+		{"liquid, Arrhenius", demo.Liquid(), demo.LiquidPlan(), true},
 	}
 }
 
-// service are the conditions at which G' and tan δ are judged.
+// service are the conditions at which G' and tan δ are judged; those outside a
+// scenario's domain are passed over.
 var service = []models.Condition{
 	{Frequency: 4, Temperature: 253.15, Strain: 0.002},
 	{Frequency: 30, Temperature: 263.15, Strain: 0.002},
@@ -113,6 +116,9 @@ func (sc scenario) judge(seed uint64) (score, error) {
 	if w, ok := wlfOf(sc.truth, Tref); ok {
 		truth["C1"], truth["C2"] = w[0], w[1]
 	}
+	if a, ok := sc.truth.Shift.(demo.Arrhenius); ok {
+		truth["activation energy of the shift"] = a.Energy / 1e3
+	}
 	if f := sc.truth.Filler; f.Storage > 0 {
 		truth["filler storage ΔG′"], truth["filler loss ΔG″"] = f.Storage/1e6, f.Loss/1e6
 		truth["critical strain"], truth["Kraus exponent m"], truth["filler activation energy"] = 100*f.Strain, f.Exponent, f.Energy/1e3
@@ -165,7 +171,7 @@ func wlfOf(t demo.Truth, Tref float64) ([2]float64, bool) {
 func TestCoverage(t *testing.T) {
 	n := *campaigns
 	if n == 0 {
-		n = 24
+		n = 16
 	}
 	for _, sc := range scenarios() {
 		total := score{}
@@ -197,28 +203,98 @@ func TestCoverage(t *testing.T) {
 	}
 }
 
+// bars are those of the long form: pooled over a class, and each number.
+// TestCoverage's short form has few campaigns and only looks for gross errors.
+var bars = map[bool]struct{ pooled, each [2]float64 }{
+	true:  {[2]float64{0.93, 0.97}, [2]float64{0.915, 0.98}},
+	false: {[2]float64{0.85, 1}, [2]float64{0.6, 1}},
+}
+
 func report(t *testing.T, name string, n int, total score) {
+	long := n >= 300
+	bar := bars[long]
 	var keys []string
 	for k := range total {
 		keys = append(keys, k)
 	}
 	sort.Strings(keys)
-	t.Logf("%s, %d campaigns", name, n)
 	class := map[string]*tally{}
+	lowest, highest := map[string]float64{}, map[string]float64{}
 	for _, k := range keys {
 		v := total[k]
-		t.Logf("  %-42s %6.3f of %5d   mean z %6.3f, rms z %.3f", k, float64(v.hit)/float64(v.n), v.n, v.z/float64(v.n), math.Sqrt(v.z2/float64(v.n)))
 		c, _, _ := strings.Cut(k, "/")
 		if class[c] == nil {
 			class[c] = &tally{}
+			lowest[c], highest[c] = 1, 0
 		}
+		share := float64(v.hit) / float64(v.n)
+		lowest[c], highest[c] = min(lowest[c], share), max(highest[c], share)
 		class[c].hit += v.hit
 		class[c].n += v.n
 		class[c].z2 += v.z2
+		t.Logf("  %-42s %6.3f of %5d   mean z %6.3f, rms z %.3f", k, share, v.n, v.z/float64(v.n), math.Sqrt(v.z2/float64(v.n)))
+		if c != "alarm" && v.n >= n/2 && (share < bar.each[0] || share > bar.each[1]) {
+			t.Errorf("%s: the intervals of %s hold the truth in %.3f of %d", name, k, share, v.n)
+		}
 	}
 	for _, c := range []string{"factor", "law", "constant", "G'", "tan δ", "alarm"} {
-		if v := class[c]; v != nil {
-			t.Logf("  pooled %-35s %6.3f of %5d   rms z %.3f", c, float64(v.hit)/float64(v.n), v.n, math.Sqrt(v.z2/float64(v.n)))
+		v := class[c]
+		if v == nil {
+			continue
+		}
+		share := float64(v.hit) / float64(v.n)
+		t.Logf("| %s | %s | %d | %.3f | %.3f to %.3f | %.2f |", name, c, n, share, lowest[c], highest[c], math.Sqrt(v.z2/float64(v.n)))
+		switch {
+		case c == "alarm" && share < 0.96 && n > 20:
+			t.Errorf("%s: superposition is denied in %.3f of %d sound campaigns", name, 1-share, v.n)
+		case c != "alarm" && v.n >= 100 && (share < bar.pooled[0] || share > bar.pooled[1]):
+			t.Errorf("%s: the intervals of class %s hold the truth in %.3f of %d", name, c, share, v.n)
+		}
+	}
+}
+
+// TestNoiseless: measurements without errors give the simulated shift factors
+// to 0.002 decade and the complex modulus to 0.5 % everywhere in the domain.
+func TestNoiseless(t *testing.T) {
+	for _, sc := range scenarios() {
+		campaign, err := data.OpenFS(demo.Campaign(sc.truth, sc.plan.Noiseless(), 1), "campaign.yaml")
+		if err != nil {
+			t.Fatal(err)
+		}
+		r, err := Characterize(campaign, nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		c := r.Compound
+		Tref := c.ReferenceTempC + 273.15
+		worst := 0.0
+		for _, s := range r.Shifts {
+			T := float64(s.TemperatureC) + 273.15
+			want := math.Log10(sc.truth.ShiftFactor(T)) - math.Log10(sc.truth.ShiftFactor(Tref))
+			worst = max(worst, math.Abs(c.LogShift(T)-want))
+		}
+		if worst > 0.002 {
+			t.Errorf("%s: log a_T is off by %.4f", sc.name, worst)
+		}
+		worstG := 0.0
+		own := float64(c.Domain.OwnStrain) / 100
+		for T := c.Domain.Temperature[0]; T <= c.Domain.Temperature[1]; T += 5 {
+			for f := 0.05; f < 200; f *= 1.3 {
+				q := models.Condition{Frequency: f, Temperature: T + 273.15, Strain: own}
+				if c.Inside(q) != nil {
+					continue
+				}
+				g := sc.truth.Modulus(f, q.Temperature, own)
+				worstG = max(worstG, cmplx.Abs(c.Value(q)-g)/cmplx.Abs(g))
+			}
+		}
+		t.Logf("%s: law %s, log a_T within %.1e, G* within %.1e", sc.name, c.Shift.Law, worst, worstG)
+		if worstG > 0.005 {
+			t.Errorf("%s: G* is off by %.2f %%", sc.name, 100*worstG)
+		}
+		// Without noise the lattice itself is detectable, without weight.
+		if c.Fit.Superposition.Holds == models.HoldsNo {
+			t.Errorf("%s: superposition %s", sc.name, c.Fit.Superposition.Holds)
 		}
 	}
 }

@@ -87,6 +87,15 @@ func (s *Solution) Rival(f Form, start Start) (*Solution, error) {
 	return e.run(s.Problem.theta(&f, &e.l, start))
 }
 
+// OnLattice fits the same form on another lattice, from where this solution is.
+func (s *Solution) OnLattice(lattice []float64) (*Solution, error) {
+	f := s.Form
+	f.Lattice = lattice
+	e := newEngine(s.Problem, &f)
+	copy(e.denom, s.e.denom)
+	return e.run(s.Theta)
+}
+
 // run minimises from theta.
 func (e *engine) run(theta []float64) (*Solution, error) {
 	s := &Solution{Problem: e.p, Form: *e.f, e: e}

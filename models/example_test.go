@@ -1,0 +1,34 @@
+package models_test
+
+import (
+	"fmt"
+	"math"
+
+	"phaselag/models"
+)
+
+// A compound file gives the modulus at any frequency, temperature and strain
+// amplitude of its domain, with the half-width of the 95 % interval.
+func Example() {
+	compound, err := models.Open("testdata/invented.yaml")
+	if err != nil {
+		panic(err)
+	}
+	modulus, err := compound.Modulus(models.Condition{Frequency: 15, Temperature: 273.15 + 40, Strain: 0.01})
+	if err != nil {
+		panic(err) // *models.OutsideError: not measured there
+	}
+	fmt.Printf("G' = %.3f ± %.3f MPa, tan δ = %.4f ± %.4f\n", modulus.Storage/1e6, modulus.StorageU95/1e6, modulus.LossFactor, modulus.LossFactorU95)
+	// Output: x
+}
+
+// Outside the domain there is a refusal with the nearest allowed values.
+func ExampleOutsideError() {
+	compound, err := models.Open("testdata/invented.yaml")
+	if err != nil {
+		panic(err)
+	}
+	_, err = compound.Modulus(models.Condition{Frequency: 15, Temperature: 273.15 + 95, Strain: math.NaN()})
+	fmt.Println(err)
+	// Output: x
+}
