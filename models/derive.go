@@ -25,6 +25,7 @@ type derived struct {
 	vertical  *thermal.Factors // ln b_T over T, where the factors are given
 	filler    *filler
 	params    []parameter
+	quantile  float64
 	factorIdx []int // index into Shift.Factors of the knots of the law "none"
 }
 
@@ -115,6 +116,7 @@ func (c *Compound) derive() error {
 	if err := c.deriveParameters(&d, bad); err != nil {
 		return err
 	}
+	d.quantile = Quantile(float64(c.Uncertainty.DegreesOfFreedom))
 	c.derived = d
 	return nil
 }

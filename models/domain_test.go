@@ -37,7 +37,7 @@ func TestDomainRules(t *testing.T) {
 		{0.0123, 23, nan, "frequency", "not within the measured 0.0123 to 1.23e+06 Hz"},
 		{0.01234559, 23, nan, "frequency", "measured"}, // the guard is that of this bound, not of the upper one
 		{1234568, 23, nan, "frequency", "measured"},
-		{1000, -40, nan, "frequency", "1000 Hz at -40 °C is 2.31e+07 Hz reduced to 23 °C"},
+		{1000, -40, nan, "frequency", "1000 Hz at -40 °C is 2.32e+07 Hz reduced to 23 °C"},
 		{0.1, 80, nan, "frequency", "reduced"},
 		{10, 23, 0.0999, "strain", "not within the measured 0.1 to 20 %"},
 		{10, 23, 20.1, "strain", "not within"},

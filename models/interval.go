@@ -36,20 +36,26 @@ func (c *Compound) interval(q Condition) Modulus {
 // Deviation is the standard uncertainty √(gᵀCg) = ‖Lᵀg‖ of an answer whose
 // gradient by Uncertainty.Parameters is g.
 func (c *Compound) Deviation(g []float64) float64 {
-	var s float64
-	for j := range g {
-		var v float64
-		for i := j; i < len(g); i++ {
-			v += c.Uncertainty.Cholesky[i][j] * g[i]
+	var room [64]float64
+	v := room[:] // Lᵀg, gathered row by row as L is stored
+	if len(g) > len(v) {
+		v = make([]float64, len(g))
+	}
+	for i, gi := range g {
+		for j, l := range c.Uncertainty.Cholesky[i] {
+			v[j] += l * gi
 		}
-		s += v * v
+	}
+	var s float64
+	for _, x := range v[:len(g)] {
+		s += x * x
 	}
 	return math.Sqrt(s)
 }
 
 // Quantile is t(0.975, ν), the factor between a standard uncertainty and the
 // half-width of a 95 % interval; 1.96 where the degrees of freedom are null.
-func (c *Compound) Quantile() float64 { return Quantile(float64(c.Uncertainty.DegreesOfFreedom)) }
+func (c *Compound) Quantile() float64 { return c.derived.quantile }
 
 // Quantile is t(0.975, dof); the normal quantile where dof is NaN or infinite.
 func Quantile(dof float64) float64 {
@@ -71,6 +77,9 @@ func (c *Compound) Ratio(q, ref Condition) (ratio complex128, magnitudeU95, angl
 	ratio = v / v0
 	re, im := make([]float64, n), make([]float64, n)
 	for i := range g {
+		if c.derived.params[i].kind == pSpecimen {
+			continue // the factor of both; rounding would leave 1e-22 of it
+		}
 		w := g[i]/v - g0[i]/v0
 		re[i], im[i] = real(w), imag(w)
 	}
