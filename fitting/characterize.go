@@ -41,7 +41,7 @@ var ErrNothing = errors.New("nothing to characterize: no usable point in any tes
 // Characterize fits a compound to everything in the campaign. Whatever the
 // measurements cannot support is left out with a finding that says why; the
 // Result then has no Compound, or a Compound with a smaller domain. The error
-// is ErrNothing, or says that the fit itself failed.
+// is ErrNothing.
 func Characterize(c *data.Campaign, settings *Settings) (*Result, error) {
 	set := settings.orDefault()
 	t := &task{campaign: c, reason: map[origin]string{}, scatter: c.Uncertainty.TemperatureScatter, stated: !math.IsNaN(c.Uncertainty.TemperatureScatter)}
@@ -53,7 +53,7 @@ func Characterize(c *data.Campaign, settings *Settings) (*Result, error) {
 	a := &answer{task: t, set: set}
 	if t.canFit() {
 		if err := a.fit(); err != nil {
-			return nil, err
+			a.giveUp(err)
 		}
 	}
 	return a.result()
@@ -139,10 +139,22 @@ func (t *task) canFit() bool {
 		return false
 	}
 	if n := len(t.knots); n == 1 || n == 0 {
-		t.find("one-temperature", data.Doubt, "", "frequency sweeps or relaxation at one temperature only",
+		t.find("one-temperature-only", data.Doubt, "", "frequency sweeps or relaxation at one temperature only",
 			"", "test isotherms at several temperatures; the compound answers at this temperature only, and no shift law is fitted")
 	}
 	return true
+}
+
+// giveUp drops what was fitted so far: measurements that no model of this kind
+// meets, such as exchanged columns, are reported as they are.
+func (a *answer) giveUp(err error) {
+	a.find("no-fit", data.Severe, "",
+		fmt.Sprintf("the joint fit failed: %v", err),
+		"moduli that no relaxation spectrum can give: exchanged or wrong columns, wrong units, rows of different materials",
+		"look at the other findings and at the isotherms; the moduli as measured are reported, and no compound model is made")
+	a.final, a.free, a.freeUp = nil, nil, nil
+	a.laws, a.vertical, a.amplitude = nil, nil, nil
+	a.separate = superpose.Separate{}
 }
 
 // answer gathers the fits.
@@ -216,6 +228,9 @@ func (a *answer) fit() error {
 	if err := a.chooseAmplitude(start); err != nil {
 		return err
 	}
+	if err := a.credible(); err != nil {
+		return err
+	}
 	if err := a.chooseLaw(); err != nil {
 		return err
 	}
@@ -226,6 +241,22 @@ func (a *answer) fit() error {
 		return err
 	}
 	return a.judge()
+}
+
+// A misfit beyond these is no noise: the model is not that of the measurements.
+const (
+	incredibleMagnitude = 0.25
+	incrediblePhase     = 10 * math.Pi / 180
+)
+
+// credible refuses a fit that misses the measurements by more than any noise.
+func (a *answer) credible() error {
+	for g, n := range a.noise {
+		if n.Magnitude > incredibleMagnitude || a.kinds[g] != data.Relaxation && n.Phase > incrediblePhase {
+			return fmt.Errorf("the best non-negative spectrum misses the %s by %.2g %% and %.2g° rms", a.kinds[g], 100*n.Magnitude, deg(n.Phase))
+		}
+	}
+	return nil
 }
 
 func (a *answer) leaveOtherRelaxations() {

@@ -52,7 +52,17 @@ func (a *answer) result() (*Result, error) {
 		a.fill(r)
 	}
 	r.Points = a.points()
-	r.Findings = append(append([]data.Finding{}, c.Findings...), a.found...)
+	r.Findings = append([]data.Finding{}, c.Findings...)
+	known := map[string]bool{}
+	for _, f := range c.Findings {
+		known[f.Code] = true
+	}
+	for _, f := range a.found {
+		// What the tables alone showed is not said twice.
+		if !known[f.Code] {
+			r.Findings = append(r.Findings, f)
+		}
+	}
 	sort.SliceStable(r.Findings, func(i, j int) bool { return rank(r.Findings[i].Severity) < rank(r.Findings[j].Severity) })
 	r.Assumptions = a.assumptions()
 	r.noNil()
