@@ -16,7 +16,7 @@ import (
 // only test, changed.
 func partial(t *testing.T, plan demo.Plan, change func(row []string) []string) *Result {
 	t.Helper()
-	files := demo.Campaign(demo.HM60(), plan, 5)
+	files := demo.Campaign(demo.Gum(), plan, 5)
 	if change != nil {
 		var out []string
 		for _, line := range strings.Split(string(files.Bytes("isotherms.csv")), "\n") {
@@ -157,7 +157,7 @@ func TestTwoAndThreeTemperatures(t *testing.T) {
 			t.Errorf("%d temperatures: %d factors", n, len(r.Shifts))
 			continue
 		}
-		want := math.Log10(demo.HM60().ShiftFactor(303.15)) - math.Log10(demo.HM60().ShiftFactor(293.15))
+		want := math.Log10(demo.Gum().ShiftFactor(303.15)) - math.Log10(demo.Gum().ShiftFactor(293.15))
 		got, half := r.Compound.LogShift(303.15), 0.0
 		for _, s := range r.Shifts {
 			if s.TemperatureC == 30 {
