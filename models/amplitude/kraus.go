@@ -9,10 +9,10 @@
 //
 // and the filler's part of the modulus is
 //
-//	F*(γ, f) = ΔG' K1 + ΔG'' K2 [i + κ (2/π) ln(f/f0)]
+//	F*(γ, f) = ΔG' K1 + ΔG″ K2 [i + κ (2/π) ln(f/f0)]
 //
 // A loss that does not depend on frequency has, in a linear causal material, a
-// storage that rises by (2/π)ΔG”K2 per unit of ln f (Booij and Thoone, Rheol.
+// storage that rises by (2/π)ΔG″K2 per unit of ln f (Booij and Thoone, Rheol.
 // Acta 21 (1982) 15, there exact for a constant loss); κ = 1 takes it along,
 // κ = 0 is rate-independent friction.
 package amplitude
@@ -60,7 +60,7 @@ func (k Kraus) Slopes(gamma float64) (k1, k2, k1c, k2c, k1m, k2m float64) {
 }
 
 // FrequencyPart is κ(2/π) ln(f/f0), the causal partner of the loss term per
-// unit of ΔG”K2.
+// unit of ΔG″K2.
 func FrequencyPart(kappa, f, f0 float64) float64 {
 	if kappa == 0 {
 		return 0
@@ -68,7 +68,7 @@ func FrequencyPart(kappa, f, f0 float64) float64 {
 	return kappa * 2 / math.Pi * math.Log(f/f0)
 }
 
-// RelaxationPart is what multiplies ΔG”K2 in the relaxation modulus of the
+// RelaxationPart is what multiplies ΔG″K2 in the relaxation modulus of the
 // filler part: −κ(2/π)[ln(2π f0 t) + C], C = 0.5772… Euler's constant. It is
 // the time-domain form of FrequencyPart: the relaxation modulus of
 // G*(ω) = A + B[ln(ω/ω0) + iπ/2] is A − B[ln(ω0 t) + C].
