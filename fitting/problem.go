@@ -168,7 +168,7 @@ func (t *task) connect(reference float64) {
 	for i, p := range t.pairs {
 		if math.IsNaN(p.LogA) {
 			t.find("isotherms-do-not-overlap", data.Severe, "",
-				fmt.Sprintf("the moduli at %s and %s have no common range: the nearest pair misses by %.2g decades", celsius(t.knots[i].T), celsius(t.knots[i+1].T), -p.Window),
+				noOverlapText(t.knots[i].T, t.knots[i+1].T, -p.Window),
 				"steps of temperature too wide for the range of frequencies",
 				"test a temperature between them, or a wider range of frequencies")
 		}
@@ -178,6 +178,14 @@ func (t *task) connect(reference float64) {
 			fmt.Sprintf("only %s to %s hang together by overlap with the reference temperature; the other isotherms are left out", celsius(t.knots[lo].T), celsius(t.knots[hi].T)),
 			"no overlap", "close the gap with a temperature between")
 	}
+}
+
+func noOverlapText(cold, warm, gap float64) string {
+	text := fmt.Sprintf("the moduli at %s and %s have no common range", celsius(cold), celsius(warm))
+	if !math.IsInf(gap, 0) {
+		text += fmt.Sprintf(": the nearest pair misses by %.2g decades", gap)
+	}
+	return text
 }
 
 // celsius prints a temperature for people.

@@ -61,15 +61,20 @@ func list(flag, text string, q unit.Quantity) ([]float64, error) {
 	return v, nil
 }
 
+// conditionLists parses the lists that every answering command has.
+func conditionLists(frequency, temperature string) (f, T []float64, err error) {
+	if f, err = list("frequency", frequency, unit.Frequency); err != nil {
+		return nil, nil, err
+	}
+	T, err = list("temperature", temperature, unit.Temperature)
+	return f, T, err
+}
+
 // maxConditions bounds the answers of one call.
 const maxConditions = 1_000_000
 
 func (a *app) modulus(o modulusOptions) error {
-	f, err := list("frequency", o.frequency, unit.Frequency)
-	if err != nil {
-		return err
-	}
-	T, err := list("temperature", o.temperature, unit.Temperature)
+	f, T, err := conditionLists(o.frequency, o.temperature)
 	if err != nil {
 		return err
 	}

@@ -55,11 +55,7 @@ func (a *app) stiffness(o stiffnessOptions) error {
 	if o.mount == "" {
 		return usagef("--mount is missing")
 	}
-	f, err := list("frequency", o.frequency, unit.Frequency)
-	if err != nil {
-		return err
-	}
-	T, err := list("temperature", o.temperature, unit.Temperature)
+	f, T, err := conditionLists(o.frequency, o.temperature)
 	if err != nil {
 		return err
 	}

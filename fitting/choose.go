@@ -1,0 +1,256 @@
+package fitting
+
+import (
+	"fmt"
+	"math"
+
+	"phaselag/data"
+	"phaselag/fitting/superpose"
+)
+
+type rival struct {
+	name   string
+	s      *superpose.Solution
+	chosen bool
+	note   string
+}
+
+// chooseAmplitude fits the filler term with both frequency laws and without,
+// and keeps the best by AICc.
+func (a *answer) chooseAmplitude(first *superpose.Solution) error {
+	best, noise, err := a.densify(first)
+	if err != nil {
+		return err
+	}
+	a.final, a.noise = best, noise
+	if !a.amp.sweeps {
+		return nil
+	}
+	name := map[float64]string{1: "Kraus, causal", 0: "Kraus, rate independent"}
+	rivals := []rival{{name: name[best.Form.Kappa], s: best}}
+	for _, k := range a.kappas() {
+		if k == best.Form.Kappa {
+			continue
+		}
+		f := best.Form
+		f.Kappa = k
+		if s, err := best.Rival(f, best.Start()); err == nil {
+			rivals = append(rivals, rival{name: name[k], s: s})
+		}
+	}
+	if a.campaign.Analysis.AmplitudeLaw != "kraus" {
+		f := best.Form
+		f.Filler, f.Activation = false, false
+		if s, err := best.Rival(f, best.Start()); err == nil {
+			rivals = append(rivals, rival{name: "none", s: s})
+		}
+	}
+	at := leastAICc(rivals)
+	a.amplitude = rivals
+	if rivals[at].name == "none" {
+		a.find("no-strain-dependence", data.Note, "", "the amplitude law does not improve the fit", "the compound is not filled, or the amplitudes are small", "")
+	}
+	if rivals[at].s == best {
+		return nil
+	}
+	a.final, a.noise, err = rivals[at].s.Refine(6)
+	return err
+}
+
+// indistinguishable is the difference of AICc within which two forms are no
+// different.
+const indistinguishable = 2
+
+// leastAICc chooses the rival with the least AICc, and of those that are no
+// different from it the one with the fewest constants.
+func leastAICc(r []rival) int {
+	best := 0
+	value := make([]float64, len(r))
+	for i := range r {
+		value[i] = r[i].s.AICc()
+		if value[i] < value[best] {
+			best = i
+		}
+	}
+	at := best
+	for i := range r {
+		if value[i] <= value[best]+indistinguishable && r[i].s.Constants() < r[at].s.Constants() {
+			at = i
+		}
+	}
+	for i := range r {
+		if i != at && value[i] <= value[at]+indistinguishable && r[i].note == "" {
+			r[i].note = "no different from the one used"
+		}
+	}
+	r[at].chosen = true
+	return at
+}
+
+// chooseLaw compares the shift laws by marginal likelihood.
+func (a *answer) chooseLaw() error {
+	if a.oneTemperature() {
+		return nil
+	}
+	base := a.final
+	f := base.Form
+	f.Law = superpose.Factors
+	free, err := base.Rival(f, base.Start())
+	if err != nil {
+		return err
+	}
+	a.free = free
+	a.laws = []rival{{name: "none", s: free, note: "the factors themselves, interpolated"}}
+	n := len(a.problem.Knots)
+	try := func(law superpose.Law, least int) {
+		if n < least {
+			return
+		}
+		f.Law = law
+		if s, err := base.Rival(f, free.Start()); err == nil {
+			a.laws = append(a.laws, rival{name: law.String(), s: s})
+		}
+	}
+	try(superpose.WLF, 4)
+	try(superpose.Arrhenius, 3)
+	at := leastAICc(a.laws)
+	if wish := a.campaign.Analysis.ShiftLaw; wish != "" && wish != "auto" {
+		found := false
+		for i := range a.laws {
+			a.laws[i].chosen = a.laws[i].name == wish
+			if a.laws[i].chosen {
+				at, found = i, true
+			}
+		}
+		if !found {
+			at = 0
+			a.laws[0].chosen = true
+			a.find("shift-law-not-supported", data.Doubt, "",
+				fmt.Sprintf("%s was wished for, with %d tested temperatures", wish, n),
+				"too few temperatures, or a law that this version does not fit", "the factors themselves are used")
+		}
+	}
+	a.final, a.noise, err = a.laws[at].s.Refine(6)
+	return err
+}
+
+// glassy is the modulus above which a density law has no meaning, Pa.
+const glassy = 100e6
+
+// defaultExpansion is the volume expansion of gum rubber, 1/K (6 to 7e-4 in
+// handbooks; value from memory).
+const defaultExpansion = 6.6e-4
+
+func (a *answer) chooseVertical() error {
+	wish := a.campaign.Analysis.VerticalShift
+	if a.oneTemperature() {
+		return nil
+	}
+	if wish == "" {
+		wish = "auto"
+	}
+	expansion := a.campaign.Analysis.Expansion
+	if math.IsNaN(expansion) || expansion == 0 {
+		expansion = defaultExpansion
+	}
+	top := 0.0
+	for _, r := range a.problem.Rows {
+		top = max(top, math.Hypot(real(r.G), imag(r.G)))
+	}
+	base := a.final
+	a.vertical = []rival{{name: "none", s: base, chosen: true}}
+	fitVertical := func(v superpose.Vertical) *superpose.Solution {
+		f := base.Form
+		f.Vertical, f.Expansion = v, expansion
+		s, err := base.Rival(f, base.Start())
+		if err != nil {
+			return nil
+		}
+		return s
+	}
+	choose := func(s *superpose.Solution, name string) error {
+		a.vertical[0].chosen = false
+		for i := range a.vertical {
+			a.vertical[i].chosen = a.vertical[i].name == name
+		}
+		var err error
+		a.final, a.noise, err = s.Refine(6)
+		return err
+	}
+	if wish == "auto" || wish == "density" {
+		if top > glassy {
+			if wish == "density" {
+				a.find("density-law-refused", data.Doubt, "",
+					fmt.Sprintf("|%s*| reaches %.3g MPa", a.symbol(), top/1e6),
+					"the density law belongs to rubber elasticity; above 100 MPa the material is near its glass", "no vertical shift is used")
+			}
+			return nil
+		}
+		s := fitVertical(superpose.Density)
+		if s == nil {
+			return nil
+		}
+		a.vertical = append(a.vertical, rival{name: "density", s: s, note: fmt.Sprintf("volume expansion %.3g /K", expansion)})
+		// Within 2 the simpler stays.
+		if wish == "density" || s.AICc() < base.AICc()-indistinguishable {
+			if a.campaign.Analysis.Expansion != expansion {
+				a.assume("volume expansion of the density law: %.3g /K, that of gum rubber (value from memory)", expansion)
+			}
+			return choose(s, "density")
+		}
+		return nil
+	}
+	v := map[string]superpose.Vertical{"bounded": superpose.Bounded, "free": superpose.Free}
+	if kind, ok := v[wish]; ok {
+		s := fitVertical(kind)
+		if s == nil {
+			return nil
+		}
+		a.vertical = append(a.vertical, rival{name: wish, s: s})
+		a.find("vertical-shift-not-physical", data.Doubt, "",
+			fmt.Sprintf("%s vertical shifts were asked for", wish),
+			"on a stretch where the modulus is a power of frequency, vertical and horizontal shifts cannot be told apart",
+			"do not read the vertical factors as a property; use none or density")
+		return choose(s, wish)
+	}
+	return nil
+}
+
+// scatterLimit bounds the estimate of an unstated temperature scatter, K.
+const scatterLimit = 3
+
+// settleScatter estimates an unstated temperature scatter by restricted
+// likelihood and fits again until it stays.
+func (a *answer) settleScatter() error {
+	if a.stated || a.oneTemperature() {
+		return nil
+	}
+	if a.final.Form.Law == superpose.Factors {
+		a.find("temperature-scatter-not-stated", data.Note, "",
+			fmt.Sprintf("temperature scatter from run to run: %.2g K assumed; without a shift law the isotherms do not show it", a.scatter),
+			"", "state `uncertainty: {temperature_scatter: …}`")
+		a.assume("temperature scatter from run to run: %.2g K, not stated (common practice, no source)", a.scatter)
+		return nil
+	}
+	for range 4 {
+		u := a.final.Scatter(a.shared, scatterLimit)
+		u = max(u, 0.01) // a hundredth of a kelvin holds the offsets as good as at zero
+		moved := math.Abs(math.Log(u / a.scatter))
+		a.setScatter(u)
+		f := a.final.Form
+		s, err := a.final.Rival(f, a.final.Start())
+		if err != nil {
+			return err
+		}
+		if a.final, a.noise, err = s.Refine(6); err != nil {
+			return err
+		}
+		if moved < 0.05 {
+			break
+		}
+	}
+	a.find("temperature-scatter-not-stated", data.Note, "",
+		fmt.Sprintf("temperature scatter from run to run: %.2g K, estimated from the misfit of the shift law by restricted likelihood", a.scatter),
+		"", "state `uncertainty: {temperature_scatter: …}` if it is known")
+	return nil
+}
