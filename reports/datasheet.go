@@ -98,9 +98,17 @@ func lead(r *fitting.Result) []figure.Block {
 // verdictText says how well one curve serves, in degrees and percent.
 func verdictText(r *fitting.Result) string {
 	m := r.Common
-	p := fmt.Sprintf("p = %.2g", float64(m.P))
+	p := "p " + probability(m)
 	return fmt.Sprintf("The common curve misses the phase by %.2g° and the magnitude by %.2g %% rms; curves of their own by %.2g° and %.2g %% (%s).",
 		float64(m.PhaseDeg), float64(m.Percent), float64(m.PhaseFloorDeg), float64(m.PercentFloor), p)
+}
+
+// probability prints p, or the bound where no draw reached the measurement.
+func probability(m fitting.Misfit) string {
+	if least := 1 / float64(m.Replicates+1); m.Replicates > 0 && float64(m.P) <= least*1.0001 {
+		return fmt.Sprintf("≤ %.2g", least)
+	}
+	return fmt.Sprintf("= %.2g", float64(m.P))
 }
 
 func stated(s string) string {
@@ -217,8 +225,8 @@ func properties(r *fitting.Result) figure.Section {
 	if !finite(r.Uncertainty.Phase) {
 		text += " The common uncertainty of the phase was not stated: the intervals of loss modulus and loss factor are those of repeatability."
 	}
-	text += " More frequencies stand in tables/properties.csv; `phaselag modulus` answers at any condition inside the domain."
-	blocks := []figure.Block{grid, figure.Paragraph{Text: strings.ReplaceAll(text, "`", ""), Small: true}}
+	text += " More frequencies stand in tables/properties.csv; phaselag modulus answers at any condition inside the domain."
+	blocks := []figure.Block{grid, figure.Paragraph{Text: text, Small: true}}
 	if len(r.Compound.Static) > 0 {
 		s := figure.Grid{Caption: "Static moduli, from static and relaxation tests only", Columns: []figure.GridColumn{{Heading: "Source"}, {Heading: "T", Unit: "°C"}, {Heading: "Strain", Unit: "%"}, {Heading: "Time", Unit: "s"}, {Heading: "Modulus", Unit: "MPa"}, {Heading: "± 95 %", Unit: "MPa"}}}
 		for _, v := range r.Compound.Static {
@@ -304,10 +312,10 @@ func findingBlocks(list []data.Finding) []figure.Block {
 	}
 	var out []figure.Block
 	for _, f := range list {
-		c := figure.Callout{Grade: figure.Grade(f.Severity), Title: strings.ReplaceAll(f.Code, "-", " "), Text: sentence(f.Evidence)}
+		c := figure.Callout{Grade: figure.Grade(f.Severity), Title: strings.ReplaceAll(f.Code, "-", " "), Text: sentence(plain(f.Evidence))}
 		add := func(name, value string) {
 			if value != "" {
-				c.Facts = append(c.Facts, figure.Fact{Name: name, Value: value})
+				c.Facts = append(c.Facts, figure.Fact{Name: name, Value: plain(value)})
 			}
 		}
 		add("Test", f.Test)
@@ -318,6 +326,9 @@ func findingBlocks(list []data.Finding) []figure.Block {
 	}
 	return out
 }
+
+// plain takes off the marks of code, which a sheet does not set.
+func plain(s string) string { return strings.ReplaceAll(s, "`", "") }
 
 // sentence begins with a capital and ends with a stop.
 func sentence(s string) string {

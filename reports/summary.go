@@ -27,7 +27,9 @@ func Summary(w io.Writer, r *fitting.Result) error {
 	}
 	line("%s: %d points of %d tests in %d runs", title, points, len(r.Tests), runs)
 	if r.Compound == nil {
-		line("no compound model: %s", firstReason(r))
+		for _, l := range wrap("no compound model: "+firstReason(r), 80) {
+			line("%s", l)
+		}
 	} else {
 		compoundLines(line, r)
 	}
@@ -69,10 +71,9 @@ func compoundLines(line func(string, ...any), r *fitting.Result) {
 	}
 	if n := len(r.Isotherms); n > 0 {
 		m := r.Common
-		line("one curve   superposition %s (p %.2g): it misses the phase by %.2g° and the",
-			map[string]string{models.HoldsYes: "holds", models.HoldsNo: "DOES NOT HOLD", models.HoldsUndecided: "is undecided"}[c.Fit.Superposition.Holds],
-			float64(m.P), float64(m.PhaseDeg))
-		line("            magnitude by %.2g %% rms, curves of their own by %.2g° and %.2g %%", float64(m.Percent), float64(m.PhaseFloorDeg), float64(m.PercentFloor))
+		line("one curve   superposition %s (p %s): rms misfit of the common curve",
+			map[string]string{models.HoldsYes: "holds", models.HoldsNo: "DOES NOT HOLD", models.HoldsUndecided: "is undecided"}[c.Fit.Superposition.Holds], probability(m))
+		line("            %.2g° and %.2g %%, of curves of their own %.2g° and %.2g %%", float64(m.PhaseDeg), float64(m.Percent), float64(m.PhaseFloorDeg), float64(m.PercentFloor))
 	}
 	if c.Vertical.Law != models.VerticalNone {
 		line("vertical    %s", c.Vertical.Law)
