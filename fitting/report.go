@@ -242,9 +242,9 @@ func (a *answer) fill(r *Result) {
 	}
 	for g, kind := range a.kinds {
 		n := a.noise[g]
-		out := Noise{Kind: string(kind), Magnitude: number(100 * n.Magnitude), MagnitudeDOF: number(n.MagnitudeDOF), Phase: number(deg(n.Phase)), PhaseDOF: number(n.PhaseDOF)}
+		out := Noise{Kind: string(kind), Magnitude: number(100 * n.Magnitude), MagnitudeDOF: number(n.MagnitudeDOF), Phase: number(deg(n.Phase)), PhaseDOF: number(n.PhaseDOF), PhaseShare: number(n.Share)}
 		if kind == data.Relaxation {
-			out.Phase, out.PhaseDOF = unit.NaN(), unit.NaN()
+			out.Phase, out.PhaseDOF, out.PhaseShare = unit.NaN(), unit.NaN(), unit.NaN()
 		}
 		r.Noise = append(r.Noise, out)
 	}

@@ -151,6 +151,10 @@ type Noise struct {
 	MagnitudeDOF unit.Number `json:"magnitude_dof"`
 	Phase        unit.Number `json:"sigma_phase_deg"`
 	PhaseDOF     unit.Number `json:"phase_dof"`
+	// PhaseShare is the part of the phase's variance that goes with the square
+	// of sin 2δ, as that of relative errors of storage and loss modulus does; 0:
+	// the error of the angle is constant.
+	PhaseShare unit.Number `json:"phase_share_of_sine_term"`
 }
 
 // Misfit compares a common curve with isotherms of their own, rms.

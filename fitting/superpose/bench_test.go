@@ -14,7 +14,7 @@ func BenchmarkJointFit(b *testing.B) {
 	truth := demo.Gum()
 	l := laboratory{truth: truth, sigmaM: 0.005, sigmaD: 0.3 * math.Pi / 180, scatter: 0.3, factor: 0.015}
 	p := l.problem(3)
-	f := Form{Law: WLF, Sigma: []Sigma{{0.005, 0.005}}}
+	f := Form{Law: WLF, Sigma: []Sigma{{Magnitude: 0.005, Phase: 0.005}}}
 	for k := -25; k <= 8; k++ {
 		f.Lattice = append(f.Lattice, math.Pow(10, float64(k)/3))
 	}

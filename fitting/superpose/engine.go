@@ -114,7 +114,7 @@ func newEngine(p *Problem, f *Form) *engine {
 func (e *engine) setSigma(s []Sigma) {
 	for i, r := range e.p.Rows {
 		e.wRe[i] = 1 / s[r.Group].Magnitude
-		e.wIm[i] = 1 / s[r.Group].Phase
+		e.wIm[i] = 1 / s[r.Group].PhaseAt(cmplx.Phase(e.denom[i]))
 	}
 	e.known = false
 }

@@ -95,7 +95,7 @@ func TestExact(t *testing.T) {
 func (l laboratory) form(p *Problem) Form {
 	f := Form{Law: WLF, Filler: l.sweeps, Activation: true, Kappa: 1}
 	for range p.Groups {
-		f.Sigma = append(f.Sigma, Sigma{0.005, 0.005})
+		f.Sigma = append(f.Sigma, Sigma{Magnitude: 0.005, Phase: 0.005})
 	}
 	for k := -25; k <= 8; k++ {
 		f.Lattice = append(f.Lattice, math.Pow(10, float64(k)/3))

@@ -2,6 +2,7 @@ package superpose
 
 import (
 	"math"
+	"math/cmplx"
 
 	"phaselag/fitting/qr"
 )
@@ -92,32 +93,77 @@ func (s *Solution) Noise() []GroupNoise {
 	e := s.e
 	h := s.linearise(e.passiveColumns()).leverage()
 	out := make([]GroupNoise, s.Problem.Groups)
-	sums := make([][2]float64, s.Problem.Groups)
+	squares := make([]float64, s.Problem.Groups)
 	n := len(e.osc)
+	phases := make([][]phaseRow, s.Problem.Groups)
 	for j, i := range e.osc {
 		g := s.Problem.Rows[i].Group
 		r := s.Misfit(i)
-		sums[g][0] += real(r) * real(r)
-		sums[g][1] += imag(r) * imag(r)
+		squares[g] += real(r) * real(r)
 		out[g].MagnitudeDOF += 1 - h[j]
 		out[g].PhaseDOF += 1 - h[n+j]
+		phases[g] = append(phases[g], phaseRow{imag(r) * imag(r), 1 - h[n+j], sineSquare(cmplx.Phase(e.model(i)))})
 	}
 	for j, i := range e.rel {
 		g := s.Problem.Rows[i].Group
 		r := real(s.Misfit(i))
-		sums[g][0] += r * r
+		squares[g] += r * r
 		out[g].MagnitudeDOF += 1 - h[2*n+j]
 	}
 	for g := range out {
 		out[g].Sigma = s.Form.Sigma[g]
 		if out[g].MagnitudeDOF > minDOF {
-			out[g].Magnitude = max(sigmaFloor, math.Sqrt(sums[g][0]/out[g].MagnitudeDOF))
+			out[g].Magnitude = max(sigmaFloor, math.Sqrt(squares[g]/out[g].MagnitudeDOF))
 		}
 		if out[g].PhaseDOF > minDOF {
-			out[g].Phase = max(sigmaFloor, math.Sqrt(sums[g][1]/out[g].PhaseDOF))
+			v, share, mean := phaseVariance(phases[g], out[g].PhaseDOF)
+			out[g].Phase, out[g].Share, out[g].Mean = max(sigmaFloor, math.Sqrt(v)), share, mean
 		}
 	}
 	return out
+}
+
+// phaseRow is a row's squared misfit of the phase, its degrees of freedom 1−h
+// and q = (½ sin 2δ)².
+type phaseRow struct{ square, dof, q float64 }
+
+// twoTerms is by how much −2 ln L must fall for the second term of the variance
+// of the phase: 2 for its constant and 4 more.
+const twoTerms = 6
+
+// phaseVariance estimates the variance of the phase by maximum likelihood over
+// its share of the term with q. For a share w, with u_i = 1 − w + w q_i/mean,
+//
+//	v = Σ r_i²/u_i / ν,  −2 ln L = ν ln v + Σ (1−h_i) ln u_i + const
+func phaseVariance(rows []phaseRow, dof float64) (v, share, mean float64) {
+	for _, r := range rows {
+		mean += r.q / float64(len(rows))
+	}
+	at := func(w float64) (v, l float64) {
+		for _, r := range rows {
+			u := max(0.0025, 1-w+w*r.q/mean)
+			v += r.square / u
+			l += r.dof * math.Log(u)
+		}
+		v /= dof
+		return v, l + dof*math.Log(v)
+	}
+	v, l0 := at(0)
+	if !(mean > 0) || dof < 20 || !(v > sigmaFloor*sigmaFloor) {
+		return v, 0, 0
+	}
+	best, least := 0.0, l0
+	const steps = 50
+	for i := 1; i <= steps; i++ {
+		if _, l := at(float64(i) / steps); l < least {
+			best, least = float64(i)/steps, l
+		}
+	}
+	if l0-least < twoTerms {
+		return v, 0, 0
+	}
+	v, _ = at(best)
+	return v, best, mean
 }
 
 func (e *engine) passiveColumns() []int { return append([]int(nil), e.idx...) }
@@ -133,6 +179,7 @@ func (s *Solution) Refine(rounds int) (*Solution, []GroupNoise, error) {
 		moved := 0.0
 		for g, v := range noise {
 			sigma[g] = v.Sigma
+			moved = max(moved, math.Abs(v.Share-e.f.Sigma[g].Share)/4)
 			moved = max(moved, math.Abs(math.Log(v.Magnitude/e.f.Sigma[g].Magnitude)), math.Abs(math.Log(v.Phase/e.f.Sigma[g].Phase)))
 		}
 		for i := range e.denom {

@@ -64,9 +64,32 @@ const (
 
 func (v Vertical) String() string { return [...]string{"none", "density", "bounded", "free"}[v] }
 
-// Sigma is the noise of a group: relative standard deviation of the magnitude
-// (of the modulus in a relaxation) and standard deviation of the phase, rad.
-type Sigma struct{ Magnitude, Phase float64 }
+// Sigma is the noise of a group: the relative standard deviation of the
+// magnitude (of the modulus in a relaxation), and the standard deviation of the
+// phase in rad, which may depend on the loss angle δ,
+//
+//	σ_δ(δ)² = Phase²·[(1−Share) + Share·q(δ)/Mean],  q = (½ sin 2δ)²
+//
+// Share 0 is an instrument with a constant error of the angle; Share 1 is one
+// with independent relative errors of storage and loss modulus.
+type Sigma struct {
+	Magnitude, Phase float64
+	Share, Mean      float64 // Mean of q over the group; both 0: constant
+}
+
+// PhaseAt is σ_δ at a loss angle, never below a twentieth of Phase.
+func (s Sigma) PhaseAt(delta float64) float64 {
+	if s.Share == 0 {
+		return s.Phase
+	}
+	return s.Phase * math.Sqrt(max(0.0025, 1-s.Share+s.Share*sineSquare(delta)/s.Mean))
+}
+
+// sineSquare is (½ sin 2δ)², the square of dδ/d ln(G”/G').
+func sineSquare(delta float64) float64 {
+	v := math.Sin(2*delta) / 2
+	return v * v
+}
 
 // Form is a model without its numbers.
 type Form struct {

@@ -132,14 +132,14 @@ func (z *separator) sums(s *Solution) (out separateSums, ok bool) {
 			}
 		}
 		for q, i := range rows {
-			r, w := s.Misfit(i), s.Form.Sigma[s.Problem.Rows[i].Group]
+			r, m, w := s.Misfit(i), 1/e.wRe[i], 1/e.wIm[i]
 			out.jointM[k] += real(r) * real(r)
 			out.jointD[k] += imag(r) * imag(r)
-			u, v := b[q]*w.Magnitude, b[len(rows)+q]*w.Phase
+			u, v := b[q]*m, b[len(rows)+q]*w
 			out.sepM[k] += u * u
 			out.sepD[k] += v * v
 			out.separate += b[q]*b[q] + b[len(rows)+q]*b[len(rows)+q]
-			out.joint += real(r)*real(r)/(w.Magnitude*w.Magnitude) + imag(r)*imag(r)/(w.Phase*w.Phase)
+			out.joint += real(r)*real(r)/(m*m) + imag(r)*imag(r)/(w*w)
 		}
 		out.total += m
 	}
@@ -201,6 +201,7 @@ func (s *Solution) about() {
 	for i := range e.denom {
 		e.denom[i] = e.model(i)
 	}
+	e.setSigma(e.f.Sigma)
 	e.residual(make([]float64, e.m+e.priors), s.Theta)
 	e.sums()
 }
@@ -249,11 +250,12 @@ func (s *Solution) replicate(z *separator, model []complex128, seed, r uint64) f
 		if p.Rows[i].Relaxation {
 			y = 0
 		}
-		p.Rows[i].G = model[i] * cmplx.Exp(complex(w.Magnitude*x, w.Phase*y))
+		p.Rows[i].G = model[i] * cmplx.Exp(complex(w.Magnitude*x, w.PhaseAt(cmplx.Phase(model[i]))*y))
 	}
 	form := s.Form
 	e := newEngine(&p, &form)
 	copy(e.denom, model)
+	e.setSigma(form.Sigma)
 	copy(e.passive, s.e.passive)
 	fit, err := e.run(s.Theta)
 	if err != nil {

@@ -84,6 +84,7 @@ func (s *Solution) Rival(f Form, start Start) (*Solution, error) {
 	f.Lattice, f.Sigma = s.Form.Lattice, s.Form.Sigma
 	e := newEngine(s.Problem, &f)
 	copy(e.denom, s.e.denom)
+	e.setSigma(f.Sigma)
 	return e.run(s.Problem.theta(&f, &e.l, start))
 }
 
@@ -93,6 +94,7 @@ func (s *Solution) OnLattice(lattice []float64) (*Solution, error) {
 	f.Lattice = lattice
 	e := newEngine(s.Problem, &f)
 	copy(e.denom, s.e.denom)
+	e.setSigma(f.Sigma)
 	return e.run(s.Theta)
 }
 
