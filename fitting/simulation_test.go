@@ -71,6 +71,7 @@ var service = []models.Condition{
 type tally struct {
 	hit, n int
 	z, z2  float64 // sums of error over standard uncertainty, and of its square
+	e2     float64 // sum of the squared error
 }
 
 type score map[string]*tally
@@ -88,6 +89,7 @@ func (s score) add(name string, err, half float64) {
 	z := 1.96 * err / half
 	t.z += z
 	t.z2 += z * z
+	t.e2 += err * err
 }
 
 func (s score) merge(o score) {
@@ -99,6 +101,7 @@ func (s score) merge(o score) {
 		s[k].n += v.n
 		s[k].z += v.z
 		s[k].z2 += v.z2
+		s[k].e2 += v.e2
 	}
 }
 
@@ -191,33 +194,52 @@ func TestCoverage(t *testing.T) {
 		n = 16
 	}
 	for _, sc := range scenarios() {
-		total := score{}
-		var mu sync.Mutex
-		var wg sync.WaitGroup
-		next := make(chan uint64, n)
-		for i := range n {
-			next <- uint64(1000 + i)
-		}
-		close(next)
-		for range *workers {
-			wg.Add(1)
-			go func() {
-				defer wg.Done()
-				for seed := range next {
-					s, err := sc.judge(seed)
-					mu.Lock()
-					if err != nil {
-						t.Errorf("%s, seed %d: %v", sc.name, seed, err)
-					} else {
-						total.merge(s)
-					}
-					mu.Unlock()
-				}
-			}()
-		}
-		wg.Wait()
-		report(t, sc.name, n, total)
+		report(t, sc.name, n, sc.simulate(t, n))
 	}
+}
+
+// simulate scores n campaigns; the seeds are 1000, 1001, ….
+func (sc scenario) simulate(t *testing.T, n int) score {
+	total := score{}
+	var mu sync.Mutex
+	var wg sync.WaitGroup
+	next := make(chan uint64, n)
+	for i := range n {
+		next <- uint64(1000 + i)
+	}
+	close(next)
+	for range *workers {
+		wg.Add(1)
+		go func() {
+			defer wg.Done()
+			for seed := range next {
+				s, err := sc.judge(seed)
+				mu.Lock()
+				if err != nil {
+					t.Errorf("%s, seed %d: %v", sc.name, seed, err)
+				} else {
+					total.merge(s)
+				}
+				mu.Unlock()
+			}
+		}()
+	}
+	wg.Wait()
+	return total
+}
+
+func className(name string) string {
+	c, _, _ := strings.Cut(name, "/")
+	return c
+}
+
+func sortedKeys[T any](m map[string]T) []string {
+	var keys []string
+	for k := range m {
+		keys = append(keys, k)
+	}
+	sort.Strings(keys)
+	return keys
 }
 
 // bars are those of the long form: pooled over a class, and each number.
@@ -234,16 +256,12 @@ func report(t *testing.T, name string, n int, total score) {
 	if name == otherNoise && long {
 		bar.pooled, bar.each = [2]float64{0.90, 0.98}, [2]float64{0.90, 0.985}
 	}
-	var keys []string
-	for k := range total {
-		keys = append(keys, k)
-	}
-	sort.Strings(keys)
+	keys := sortedKeys(total)
 	class := map[string]*tally{}
 	lowest, highest := map[string]float64{}, map[string]float64{}
 	for _, k := range keys {
 		v := total[k]
-		c, _, _ := strings.Cut(k, "/")
+		c := className(k)
 		if class[c] == nil {
 			class[c] = &tally{}
 			lowest[c], highest[c] = 1, 0
