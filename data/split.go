@@ -12,7 +12,7 @@ const (
 	temperatureJump = 1.0
 	// restartSteps parts runs: going back towards the first value by more than
 	// so many usual steps at once.
-	restartSteps = 3.0
+	restartSteps = 1.5
 )
 
 // split parts the points of a test into runs. Isotherms, strain sweeps and
