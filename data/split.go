@@ -3,6 +3,7 @@ package data
 import (
 	"fmt"
 	"math"
+	"sort"
 
 	"phaselag/data/unit"
 )
@@ -100,13 +101,18 @@ func (p *plan) restarts(start, i int, get func(raw) float64) bool {
 	if i-start < 2 {
 		return false
 	}
-	first, last, next := get(p.points[start]), get(p.points[i-1]), get(p.points[i])
-	usual := math.Abs(math.Log(last/first)) / float64(i-start-1)
+	last, next := get(p.points[i-1]), get(p.points[i])
+	var steps []float64
+	for k := start + 1; k < i; k++ {
+		steps = append(steps, math.Abs(math.Log(get(p.points[k])/get(p.points[k-1]))))
+	}
+	sort.Float64s(steps)
+	usual := steps[len(steps)/2]
 	jump := math.Log(next / last)
-	if usual < 1e-6 || math.IsNaN(jump) {
+	if !(usual > 1e-6) || math.IsNaN(jump) {
 		return false
 	}
-	back := math.Signbit(jump) != math.Signbit(math.Log(last/first))
+	back := math.Signbit(jump) != math.Signbit(math.Log(last/get(p.points[start])))
 	return back && math.Abs(jump) > restartSteps*usual
 }
 
