@@ -6,6 +6,7 @@ import (
 	"strings"
 	"testing"
 	"testing/fstest"
+	"time"
 
 	"phaselag/data/place"
 )
@@ -288,6 +289,20 @@ func TestRuns(t *testing.T) {
 	r := mustOpen(t, "tests: [{kind: frequency sweep, file: a.csv}]\n", "a.csv", sweep).Tests[0].Runs
 	if r[0].Temperature != 296.15 || !strings.Contains(r[0].Name, "23 °C") {
 		t.Errorf("%+v", r[0])
+	}
+}
+
+// TestLongTable: a hundred thousand rows of one run take linear time.
+func TestLongTable(t *testing.T) {
+	var b strings.Builder
+	b.WriteString("f / Hz,T / °C,G' / MPa,G'' / MPa\n")
+	for i := range 100_000 {
+		fmt.Fprintf(&b, "%.6f,20,1,.1\n", 1+0.001*float64(i))
+	}
+	start := time.Now()
+	c := mustOpen(t, "tests: [{kind: frequency sweep, file: a.csv}]\n", "a.csv", b.String())
+	if n := len(c.Tests[0].Runs); n != 1 || time.Since(start) > 20*time.Second {
+		t.Errorf("%d runs after %v", n, time.Since(start))
 	}
 }
 

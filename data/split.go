@@ -82,8 +82,13 @@ func (p *plan) breaks(start, i int, segments bool) bool {
 	return false
 }
 
-// mean is the mean temperature of the points [start, i).
+// remembered is how many of the last points of a run a new one is compared
+// with, so that a long table takes linear time.
+const remembered = 64
+
+// mean is the mean temperature of the last points of [start, i).
 func (p *plan) mean(start, i int) float64 {
+	start = max(start, i-remembered)
 	var sum float64
 	n := 0
 	for _, pt := range p.points[start:i] {
@@ -103,7 +108,7 @@ func (p *plan) restarts(start, i int, get func(raw) float64) bool {
 	}
 	last, next := get(p.points[i-1]), get(p.points[i])
 	var steps []float64
-	for k := start + 1; k < i; k++ {
+	for k := max(start, i-remembered) + 1; k < i; k++ {
 		steps = append(steps, math.Abs(math.Log(get(p.points[k])/get(p.points[k-1]))))
 	}
 	sort.Float64s(steps)
