@@ -160,3 +160,11 @@ func (t Table) Numeric() []bool {
 	}
 	return out
 }
+
+// Float gives a cell's number, NaN for a text.
+func (c Cell) Float() float64 {
+	if !c.numeric {
+		return math.NaN()
+	}
+	return c.number
+}
