@@ -42,11 +42,32 @@ func degreesC(T float64) float64 { return math.Round((T-zeroC)*1e6) / 1e6 }
 // reported as not determined, decades.
 const notDetermined = 0.1
 
+// draft is a compound on its way: its fields, and with every parameter the root
+// of its covariance in the units of the file.
+type draft struct {
+	*answer
+	models.Compound
+	cov   *superpose.Covariance
+	names []string
+	roots []superpose.Root
+}
+
+// keep notes a parameter whose root is r times scale; a nil root is none.
+func (d *draft) keep(name string, r superpose.Root, scale float64) {
+	if r == nil {
+		return
+	}
+	out := make(superpose.Root, len(r))
+	for i, v := range r {
+		out[i] = scale * v
+	}
+	d.names, d.roots = append(d.names, name), append(d.roots, out)
+}
+
 // compound makes the compound of the final fit.
 func (a *answer) compound() (*models.Compound, error) {
-	s := a.final
-	cov := s.Covariance()
-	c := models.Compound{
+	d := &draft{answer: a, cov: a.final.Covariance()}
+	d.Compound = models.Compound{
 		Format:         models.FormatVersion,
 		Compound:       a.identity(),
 		ModulusKind:    string(a.campaign.Modulus),
@@ -54,156 +75,147 @@ func (a *answer) compound() (*models.Compound, error) {
 		Strain:         models.StrainNote{Measure: a.strainMeasure(), Amplitude: "zero to peak"},
 		State:          a.stateOf(),
 		ReferenceTempC: degreesC(a.reference),
+		Static:         a.static(),
+		Domain:         a.domain(),
+		Fit:            a.fitNote(),
+		Provenance:     models.Provenance{Version: Version, Inputs: a.inputs(), Assumptions: a.assumptions()},
 	}
-	var names []string
-	var roots []superpose.Root
-	keep := func(name string, r superpose.Root) {
-		names, roots = append(names, name), append(roots, r)
-	}
-	scaled := func(r superpose.Root, w float64) superpose.Root {
-		out := make(superpose.Root, len(r))
-		for i, v := range r {
-			out[i] = w * v
-		}
-		return out
-	}
-
-	c.Linear.Equilibrium = round15(s.Equilibrium / 1e6)
-	if r := cov.Modulus(0); r != nil {
-		keep("linear.equilibrium_modulus_MPa", scaled(r, 1e-6))
-	}
-	c.Linear.Branches = []models.Branch{}
-	for k, g := range s.Branches {
-		r := cov.Modulus(1 + k)
-		if g <= 0 || r == nil {
-			continue
-		}
-		keep(fmt.Sprintf("linear.branches.%d.modulus_MPa", len(c.Linear.Branches)), scaled(r, 1e-6))
-		c.Linear.Branches = append(c.Linear.Branches, models.Branch{Time: round15(s.Form.Lattice[k]), Modulus: round15(g / 1e6)})
-	}
-
-	idx := s.Indices()
-	c.Shift = models.Shift{Law: models.LawNone, C1: unit.NaN(), C2: unit.NaN(), Activation: unit.NaN(), Factors: a.factors()}
-	switch s.Form.Law {
-	case superpose.WLF:
-		c.Shift.Law = models.LawWLF
-		c.Shift.C1, c.Shift.C2 = number(s.Theta[idx.Law]), number(s.Theta[idx.Law+1])
-		keep("shift.c1", cov.Theta(idx.Law))
-		keep("shift.c2_K", cov.Theta(idx.Law+1))
-	case superpose.Arrhenius:
-		c.Shift.Law = models.LawArrhenius
-		c.Shift.Activation = number(s.Theta[idx.Law])
-		keep("shift.activation_kJ_per_mol", cov.Theta(idx.Law))
-	case superpose.Factors:
-		for i := range c.Shift.Factors {
-			T := a.problem.Knots[i]
-			c.Shift.Factors[i].LogShift = number(s.LogShift(T))
-			r := cov.LogShift(T)
-			c.Shift.Factors[i].U = number(r.Deviation())
-			if r.Deviation() > 0 {
-				keep(fmt.Sprintf("shift.factors.%d.log10_aT", i), r)
-			}
-		}
-	}
-
-	c.Vertical = models.Vertical{Law: models.VerticalNone, Expansion: unit.NaN(), Factors: []models.VerticalFactor{}}
-	switch s.Form.Vertical {
-	case superpose.Density:
-		c.Vertical.Law, c.Vertical.Expansion = models.VerticalDensity, number(s.Form.Expansion)
-	case superpose.Bounded, superpose.Free:
-		c.Vertical.Law = models.VerticalFactors
-		for i, T := range a.problem.Knots {
-			b := s.Vertical(i)
-			c.Vertical.Factors = append(c.Vertical.Factors, models.VerticalFactor{TemperatureC: degreesC(T), B: number(b)})
-			if r := cov.Vertical(T); r.Deviation() > 0 {
-				keep(fmt.Sprintf("vertical.factors.%d.b_T", i), scaled(r, b))
-			}
-		}
-	}
-
-	nan := unit.NaN()
-	c.Amplitude = models.Amplitude{Law: models.AmplitudeNone, Coupling: models.Overlay, Storage: nan, Loss: nan, Critical: nan, Exponent: nan, Activation: nan, Frequency: models.RateIndependent, ReferenceFrequency: nan}
-	if s.Form.Filler {
-		critical, exponent := s.Kraus()
-		c.Amplitude.Law = models.AmplitudeKraus
-		c.Amplitude.Storage, c.Amplitude.Loss = number(s.FillerStorage/1e6), number(s.FillerLoss/1e6)
-		c.Amplitude.Critical, c.Amplitude.Exponent = number(100*critical), number(exponent)
-		c.Amplitude.Activation = number(s.Activation())
-		if s.Form.Kappa == 1 {
-			c.Amplitude.Frequency = models.Causal
-		}
-		c.Amplitude.ReferenceFrequency = number(a.problem.F0)
-		nl := len(s.Form.Lattice)
-		if r := cov.Modulus(1 + nl); r != nil {
-			keep("amplitude.storage_MPa", scaled(r, 1e-6))
-		}
-		if r := cov.Modulus(2 + nl); r != nil {
-			keep("amplitude.loss_MPa", scaled(r, 1e-6))
-		}
-		keep("amplitude.critical_strain_percent", scaled(cov.Theta(idx.Critical), 100*critical))
-		keep("amplitude.exponent", cov.Theta(idx.Exponent))
-		if idx.Activation >= 0 {
-			keep("amplitude.activation_kJ_per_mol", cov.Theta(idx.Activation))
-		}
-	}
-
-	if r := cov.PhaseRoot(); r != nil {
-		keep(models.ParamPhase, scaled(r, 180/math.Pi))
-	}
-	// Errors that all measurements share, independent of the fit.
-	n := 0
-	if len(roots) > 0 {
-		n = len(roots[0])
-	}
-	common := []struct {
-		name string
-		u    float64
-	}{
-		{models.ParamSpecimen, a.problem.UGeometry / math.Sqrt(float64(a.problem.Factors))},
-		{models.ParamTemperature, a.campaign.Uncertainty.TemperatureCommon},
-	}
-	var extra []int
-	for k, u := range common {
-		if u.u > 0 {
-			extra = append(extra, k)
-		}
-	}
-	for i := range roots {
-		roots[i] = append(roots[i], make(superpose.Root, len(extra))...)
-	}
-	for j, k := range extra {
-		r := make(superpose.Root, n+len(extra))
-		r[n+j] = common[k].u
-		keep(common[k].name, r)
-	}
-
-	c.Static = a.static()
-	c.Domain = a.domain()
-	c.Fit = models.Fit{
-		Points:         len(a.problem.Rows),
-		SigmaMagnitude: unit.NaN(), SigmaPhase: unit.NaN(),
-		Superposition: a.superposition(),
-	}
-	for g, kind := range a.kinds {
-		if kind == data.FrequencySweep || (len(a.kinds) == 1 && g == 0) {
-			c.Fit.SigmaMagnitude = number(100 * a.noise[g].Magnitude)
-			if kind != data.Relaxation {
-				c.Fit.SigmaPhase = number(deg(a.noise[g].Phase))
-			}
-		}
-	}
-	c.Uncertainty = models.Uncertainty{Coverage: 0.95, DegreesOfFreedom: number(a.dof()), Parameters: names, Cholesky: []models.Row{}}
-	if names == nil {
-		c.Uncertainty.Parameters = []string{}
-	}
-	for _, row := range superpose.Cholesky(roots) {
+	d.linear()
+	d.shift()
+	d.vertical()
+	d.filler()
+	d.common()
+	d.Uncertainty = models.Uncertainty{Coverage: 0.95, DegreesOfFreedom: number(a.dof()), Parameters: append([]string{}, d.names...), Cholesky: []models.Row{}}
+	for _, row := range superpose.Cholesky(d.roots) {
 		for i := range row {
 			row[i] = round15(row[i])
 		}
-		c.Uncertainty.Cholesky = append(c.Uncertainty.Cholesky, row)
+		d.Uncertainty.Cholesky = append(d.Uncertainty.Cholesky, row)
 	}
-	c.Provenance = models.Provenance{Version: Version, Inputs: a.inputs(), Assumptions: a.assumptions()}
-	return models.New(c)
+	return models.New(d.Compound)
+}
+
+func (d *draft) linear() {
+	s := d.final
+	d.Linear.Equilibrium = round15(s.Equilibrium / 1e6)
+	d.keep("linear.equilibrium_modulus_MPa", d.cov.Modulus(0), 1e-6)
+	d.Linear.Branches = []models.Branch{}
+	for k, g := range s.Branches {
+		r := d.cov.Modulus(1 + k)
+		if g <= 0 || r == nil {
+			continue
+		}
+		d.keep(fmt.Sprintf("linear.branches.%d.modulus_MPa", len(d.Linear.Branches)), r, 1e-6)
+		d.Linear.Branches = append(d.Linear.Branches, models.Branch{Time: round15(s.Form.Lattice[k]), Modulus: round15(g / 1e6)})
+	}
+}
+
+func (d *draft) shift() {
+	s, law := d.final, d.final.Indices().Law
+	d.Shift = models.Shift{Law: models.LawNone, C1: unit.NaN(), C2: unit.NaN(), Activation: unit.NaN(), Factors: d.factors()}
+	switch s.Form.Law {
+	case superpose.WLF:
+		d.Shift.Law = models.LawWLF
+		d.Shift.C1, d.Shift.C2 = number(s.Theta[law]), number(s.Theta[law+1])
+		d.keep("shift.c1", d.cov.Theta(law), 1)
+		d.keep("shift.c2_K", d.cov.Theta(law+1), 1)
+	case superpose.Arrhenius:
+		d.Shift.Law = models.LawArrhenius
+		d.Shift.Activation = number(s.Theta[law])
+		d.keep("shift.activation_kJ_per_mol", d.cov.Theta(law), 1)
+	case superpose.Factors:
+		for i, T := range d.problem.Knots {
+			r := d.cov.LogShift(T)
+			d.Shift.Factors[i].LogShift, d.Shift.Factors[i].U = number(s.LogShift(T)), number(r.Deviation())
+			if r.Deviation() > 0 {
+				d.keep(fmt.Sprintf("shift.factors.%d.log10_aT", i), r, 1)
+			}
+		}
+	}
+}
+
+func (d *draft) vertical() {
+	s := d.final
+	d.Vertical = models.Vertical{Law: models.VerticalNone, Expansion: unit.NaN(), Factors: []models.VerticalFactor{}}
+	switch s.Form.Vertical {
+	case superpose.Density:
+		d.Vertical.Law, d.Vertical.Expansion = models.VerticalDensity, number(s.Form.Expansion)
+	case superpose.Bounded, superpose.Free:
+		d.Vertical.Law = models.VerticalFactors
+		for i, T := range d.problem.Knots {
+			b := s.Vertical(i)
+			d.Vertical.Factors = append(d.Vertical.Factors, models.VerticalFactor{TemperatureC: degreesC(T), B: number(b)})
+			if r := d.cov.Vertical(T); r.Deviation() > 0 {
+				d.keep(fmt.Sprintf("vertical.factors.%d.b_T", i), r, b)
+			}
+		}
+	}
+}
+
+func (d *draft) filler() {
+	s, nan := d.final, unit.NaN()
+	d.Amplitude = models.Amplitude{Law: models.AmplitudeNone, Coupling: models.Overlay, Storage: nan, Loss: nan, Critical: nan, Exponent: nan, Activation: nan, Frequency: models.RateIndependent, ReferenceFrequency: nan}
+	if !s.Form.Filler {
+		return
+	}
+	critical, exponent := s.Kraus()
+	frequency := models.RateIndependent
+	if s.Form.Kappa == 1 {
+		frequency = models.Causal
+	}
+	d.Amplitude = models.Amplitude{
+		Law: models.AmplitudeKraus, Coupling: models.Overlay,
+		Storage: number(s.FillerStorage / 1e6), Loss: number(s.FillerLoss / 1e6),
+		Critical: number(100 * critical), Exponent: number(exponent), Activation: number(s.Activation()),
+		Frequency: frequency, ReferenceFrequency: number(d.problem.F0),
+	}
+	idx, nl := s.Indices(), len(s.Form.Lattice)
+	d.keep("amplitude.storage_MPa", d.cov.Modulus(1+nl), 1e-6)
+	d.keep("amplitude.loss_MPa", d.cov.Modulus(2+nl), 1e-6)
+	d.keep("amplitude.critical_strain_percent", d.cov.Theta(idx.Critical), 100*critical)
+	d.keep("amplitude.exponent", d.cov.Theta(idx.Exponent), 1)
+	if idx.Activation >= 0 {
+		d.keep("amplitude.activation_kJ_per_mol", d.cov.Theta(idx.Activation), 1)
+	}
+}
+
+// common adds the errors that all measurements share: that of the phase, which
+// was fitted, and those of geometry and temperature, independent of the fit.
+func (d *draft) common() {
+	d.keep(models.ParamPhase, d.cov.PhaseRoot(), 180/math.Pi)
+	for _, v := range []struct {
+		name string
+		u    float64
+	}{
+		{models.ParamSpecimen, d.problem.UGeometry / math.Sqrt(float64(d.problem.Factors))},
+		{models.ParamTemperature, d.campaign.Uncertainty.TemperatureCommon},
+	} {
+		if !(v.u > 0) {
+			continue
+		}
+		n := 0
+		for i := range d.roots {
+			d.roots[i] = append(d.roots[i], 0)
+			n = len(d.roots[i])
+		}
+		own := make(superpose.Root, max(n, 1))
+		own[len(own)-1] = 1
+		d.keep(v.name, own, v.u)
+	}
+}
+
+// fitNote says how well the fit meets the sweeps.
+func (a *answer) fitNote() models.Fit {
+	f := models.Fit{Points: len(a.problem.Rows), SigmaMagnitude: unit.NaN(), SigmaPhase: unit.NaN(), Superposition: a.superposition()}
+	for g, kind := range a.kinds {
+		if kind == data.FrequencySweep || len(a.kinds) == 1 {
+			f.SigmaMagnitude = number(100 * a.noise[g].Magnitude)
+			if kind != data.Relaxation {
+				f.SigmaPhase = number(deg(a.noise[g].Phase))
+			}
+		}
+	}
+	return f
 }
 
 // dof is the number of degrees of freedom behind the noise of the sweeps.
