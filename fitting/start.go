@@ -142,8 +142,12 @@ func (a *answer) kappas() []float64 {
 }
 
 // coarse is by how much a lattice twice as dense must lower the objective to be
-// taken: the two units of AIC for each of five more moduli.
-const coarse = 10
+// taken. It is small on purpose: what a coarse lattice tilts shift factors by
+// grows with the square root of it, in standard errors, and a dense one costs
+// nothing but time, since non-negativity keeps the spectrum sparse. (At 10 the
+// intervals of a simulated liquid's shift law held the truth in 92.4 % of 1000
+// campaigns, at 2 in 95 %.)
+const coarse = 2
 
 // densify refines the first fit, and takes a lattice twice as dense where three
 // relaxation times a decade are too few at the noise that was found: sharp
