@@ -89,6 +89,11 @@ type separateSums struct {
 	jointPassive, total int
 }
 
+// statistic is F; rounding may not make it negative.
+func (s separateSums) statistic() float64 {
+	return max(0, (s.joint-s.separate)/s.separate)
+}
+
 // sums compares one solution; the engine must be settled at it.
 func (z *separator) sums(s *Solution) (out separateSums, ok bool) {
 	e := s.e
@@ -160,7 +165,7 @@ func (s *Solution) Superposition(isotherm []bool, draws int, seed uint64, worker
 	if !ok || len(z.knots) < 2 {
 		return out
 	}
-	out.F = (sums.joint - sums.separate) / sums.separate
+	out.F = sums.statistic()
 	free := float64(sums.total - sums.parameters)
 	var pts, jm, jd, sm, sd float64
 	for k, rows := range z.knots {
@@ -265,5 +270,5 @@ func (s *Solution) replicate(z *separator, model []complex128, seed, r uint64) f
 	if !ok {
 		return math.Inf(-1)
 	}
-	return (sums.joint - sums.separate) / sums.separate
+	return sums.statistic()
 }
