@@ -105,6 +105,8 @@ func (p *plan) kindOf(t *table.Table) Kind {
 	}
 	f, s, T := changes(table.Frequency, 0.01), changes(table.Strain, 0.05), changes(table.Temperature, 0.002)
 	switch {
+	case f == 0 && p.ranges(t, table.Temperature) > 5:
+		return TemperatureSweep
 	case f >= max(s, T) && f > 0:
 		return FrequencySweep
 	case s > T && s > 0.5:
@@ -113,6 +115,21 @@ func (p *plan) kindOf(t *table.Table) Kind {
 		return TemperatureSweep
 	}
 	return FrequencySweep
+}
+
+// ranges is how far a column reaches, in SI; 0 where it cannot be told.
+func (p *plan) ranges(t *table.Table, c table.Concept) float64 {
+	i, err := t.Find(c)
+	if err != nil || i < 0 {
+		return 0
+	}
+	lo, hi := math.Inf(1), math.Inf(-1)
+	for _, row := range t.Rows {
+		if v, err := t.Value(row, i); err == nil && !math.IsNaN(v) {
+			lo, hi = min(lo, v), max(hi, v)
+		}
+	}
+	return max(0, hi-lo)
 }
 
 func (p *plan) lack(t *table.Table, what string, concepts ...table.Concept) error {

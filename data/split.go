@@ -50,16 +50,56 @@ func split(c *Campaign, p *plan) []Run {
 	return runs
 }
 
-// usefulSegments reports whether segment columns part the points: a column that
-// changes with nearly every row numbers the points.
+// usefulSegments reports whether segment columns part the points, and orders
+// points of interleaved segments (repeat 1, 2, 3 at the first frequency, then at
+// the second) by segment. A column that changes with nearly every row and
+// under whose values nothing is swept numbers the points and parts nothing.
 func (p *plan) usefulSegments() bool {
 	changes := 0
-	for i := 1; i < len(p.points); i++ {
-		if p.points[i].segment != p.points[i-1].segment {
+	var order []string
+	groups := map[string][]raw{}
+	for i, pt := range p.points {
+		if i > 0 && pt.segment != p.points[i-1].segment {
 			changes++
 		}
+		key := fmt.Sprintf("%s\x00%d\x00%s", pt.File, pt.block, pt.segment)
+		if groups[key] == nil {
+			order = append(order, key)
+		}
+		groups[key] = append(groups[key], pt)
 	}
-	return changes > 0 && 2*changes < len(p.points)
+	switch {
+	case changes == 0:
+		return false
+	case 2*changes < len(p.points):
+		return true
+	case 3*len(order) > len(p.points):
+		return false
+	}
+	sorted := make([]raw, 0, len(p.points))
+	for _, key := range order {
+		if !p.swept(groups[key]) {
+			return false
+		}
+		sorted = append(sorted, groups[key]...)
+	}
+	p.points = sorted
+	return true
+}
+
+// swept reports whether the quantity that the kind of test sweeps takes several
+// values among points next to each other at one temperature.
+func (p *plan) swept(points []raw) bool {
+	for i := 1; i < len(points); i++ {
+		a, b := points[i-1], points[i]
+		if math.Abs(a.Temperature-b.Temperature) > temperatureJump {
+			continue
+		}
+		if p.Kind == StrainSweep && a.Strain != b.Strain || p.Kind != StrainSweep && (a.Frequency != b.Frequency || a.Time != b.Time && p.Kind == Relaxation) {
+			return true
+		}
+	}
+	return false
 }
 
 // breaks reports whether a new run begins at point i.

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"slices"
 	"strings"
 
 	"phaselag/data"
@@ -38,10 +39,13 @@ func Summary(w io.Writer, r *fitting.Result) error {
 	return err
 }
 
-// firstReason is the evidence of the first severe finding.
+// reasons are the findings that leave a result without a compound.
+var reasons = []string{"superposition-impossible", "no-isotherm", "no-dynamic-test", "too-few-points", "no-fit"}
+
+// firstReason says why there is no compound.
 func firstReason(r *fitting.Result) string {
 	for _, f := range r.Findings {
-		if f.Severity == data.Severe {
+		if slices.Contains(reasons, f.Code) {
 			return f.Evidence
 		}
 	}

@@ -38,7 +38,8 @@ func falling(c *data.Campaign) (list []data.Finding) {
 				}
 				return 0
 			})
-			if len(points) < 5 {
+			// At one frequency nothing falls with it.
+			if len(points) < 5 || points[len(points)-1].Frequency < 1.2*points[0].Frequency {
 				continue
 			}
 			y, turn := make([]float64, len(points)), make([]float64, len(points))
