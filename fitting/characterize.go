@@ -162,6 +162,7 @@ type answer struct {
 	set       Settings
 	amp       amplitudeData
 	reference float64
+	poisson   float64 // of the compound file; NaN: not known
 
 	final       *superpose.Solution
 	noise       []superpose.GroupNoise
@@ -176,6 +177,11 @@ type answer struct {
 
 func (a *answer) fit() error {
 	a.pickReference()
+	a.poisson = a.campaign.PoissonRatio
+	if math.IsNaN(a.poisson) && a.campaign.Modulus == data.Shear {
+		a.poisson = 0.5
+		a.assume("Poisson ratio 0.5, not stated; no number here depends on it")
+	}
 	if len(a.knots) > 0 {
 		a.connect(a.reference)
 	} else {

@@ -71,7 +71,7 @@ func (a *answer) compound() (*models.Compound, error) {
 		Format:         models.FormatVersion,
 		Compound:       a.identity(),
 		ModulusKind:    string(a.campaign.Modulus),
-		PoissonRatio:   unit.Number(a.campaign.PoissonRatio),
+		PoissonRatio:   unit.Number(a.poisson),
 		Strain:         models.StrainNote{Measure: a.strainMeasure(), Amplitude: "zero to peak"},
 		State:          a.stateOf(),
 		ReferenceTempC: degreesC(a.reference),
