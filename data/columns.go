@@ -15,13 +15,14 @@ type columnSet struct {
 	a, b                                 int // of the pair of moduli, or the modulus
 	pair                                 *pair
 	lossFactor, phase                    int // stated beside the pair
+	set                                  int // temperature as it was set
 	segments                             []int
 	filters                              []int
 }
 
 // columnsOf finds the columns that the kind of test needs.
 func (p *plan) columnsOf(t *table.Table) (cols columnSet, err error) {
-	cols = columnSet{-1, -1, -1, -1, -1, -1, nil, -1, -1, nil, nil}
+	cols = columnSet{-1, -1, -1, -1, -1, -1, nil, -1, -1, -1, nil, nil}
 	for _, f := range p.rows {
 		i := headingColumn(t, f.heading)
 		if i < 0 {
@@ -47,6 +48,9 @@ func (p *plan) columnsOf(t *table.Table) (cols columnSet, err error) {
 		}
 	}
 	cols.segments = t.FindAll(table.Segment)
+	if i, err := t.Find(table.SetTemperature); err == nil && cols.temperature >= 0 {
+		cols.set = i
+	}
 	if p.Kind == "" {
 		p.Kind = p.kindOf(t)
 	}
@@ -233,7 +237,7 @@ func (p *plan) modulusOf(t *table.Table, i int) error {
 func (p *plan) describeColumns(t *table.Table, written string, cols columnSet) {
 	for i, col := range t.Columns {
 		usedHere := false
-		for _, j := range []int{cols.frequency, cols.temperature, cols.strain, cols.time, cols.a, cols.b, cols.lossFactor, cols.phase} {
+		for _, j := range []int{cols.frequency, cols.temperature, cols.strain, cols.time, cols.a, cols.b, cols.lossFactor, cols.phase, cols.set} {
 			usedHere = usedHere || i == j
 		}
 		if usedHere {

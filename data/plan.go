@@ -39,6 +39,7 @@ type raw struct {
 	Point
 	block   int // of its file, counted through all files of the test
 	segment string
+	set     float64 // temperature as it was set, K; NaN: not stated
 }
 
 func newPlan() *plan {

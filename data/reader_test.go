@@ -288,7 +288,11 @@ func TestRuns(t *testing.T) {
 			t.Errorf("%s: runs of %v points, want %v", c.name, got, c.want)
 		}
 	}
-	r := mustOpen(t, "tests: [{kind: frequency sweep, file: a.csv}]\n", "a.csv", sweep).Tests[0].Runs
+	r := mustOpen(t, "tests: [{kind: frequency sweep, file: a.csv}]\n", "a.csv", join("set temperature / °C,"+head, "20,1,21.6,1,.1", "20,2,21.7,1,.1", "40,1,40.0,1,.1")).Tests[0].Runs
+	if len(r) != 2 || r[0].Temperature != 293.15 || r[0].Points[0].Temperature != 294.75 {
+		t.Errorf("set and measured temperature: %+v", r)
+	}
+	r = mustOpen(t, "tests: [{kind: frequency sweep, file: a.csv}]\n", "a.csv", sweep).Tests[0].Runs
 	if r[0].Temperature != 296.15 || !strings.Contains(r[0].Name, "23 °C") {
 		t.Errorf("%+v", r[0])
 	}

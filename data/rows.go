@@ -109,6 +109,7 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 		return v
 	}
 	pt.Temperature = get(cols.temperature, p.temperature)
+	pt.set = get(cols.set, math.NaN())
 	pt.Strain = p.amplitude * get(cols.strain, p.strain)
 	if p.Kind == Relaxation {
 		pt.Strain = get(cols.strain, p.strain)

@@ -190,15 +190,18 @@ func (p *plan) splitByFrequency(segments bool) []Run {
 // run makes a run of points.
 func (p *plan) run(points []raw) Run {
 	r := Run{Temperature: math.NaN(), Frequency: math.NaN(), Strain: math.NaN()}
-	var T, f, s []float64
+	var T, f, s, set []float64
 	for _, pt := range points {
 		r.Points = append(r.Points, pt.Point)
 		if pt.Used {
-			T, f, s = append(T, pt.Temperature), append(f, pt.Frequency), append(s, pt.Strain)
+			T, f, s, set = append(T, pt.Temperature), append(f, pt.Frequency), append(s, pt.Strain), append(set, pt.set)
 		}
 	}
 	if p.Kind != TemperatureSweep {
 		r.Temperature = nominal(T)
+		if v := constant(set, 1e-9); !math.IsNaN(v) {
+			r.Temperature = v
+		}
 		if !math.IsNaN(p.temperature) {
 			r.Temperature = p.temperature
 		}
