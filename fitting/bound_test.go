@@ -253,6 +253,9 @@ func (sc scenario) bound(t *testing.T) map[string]float64 {
 // and at the warm edge; there it scatters up to twice, at the edge itself five
 // times as much as the bound.
 func TestEfficiency(t *testing.T) {
+	if testing.Short() {
+		t.Skip("a simulation of its own, left out with -short")
+	}
 	n := *campaigns
 	list := scenarios()[:4]
 	meanBar, eachBar := 1.15, 1.25

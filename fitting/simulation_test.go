@@ -189,6 +189,9 @@ func wlfOf(t demo.Truth, Tref float64) ([2]float64, bool) {
 //
 //	go test ./fitting -run TestCoverage -v -campaigns 1000 -timeout 0
 func TestCoverage(t *testing.T) {
+	if testing.Short() {
+		t.Skip("a simulation of its own, left out with -short")
+	}
 	n := *campaigns
 	if n == 0 {
 		n = 16
