@@ -8,9 +8,9 @@
 // # What is tested
 //
 // A response that never precedes its cause ties storage to loss modulus (Kramers
-// and Kronig). A sum of relaxation modes with signs free obeys that tie and is otherwise
-// flexible: what it cannot describe is not causal. A sum of modes with g ≥ 0 is
-// what a passive rubber without inertia allows, which is narrower. Each fit is
+// and Kronig). A sum of relaxation modes with signs free obeys that tie and is
+// otherwise flexible: what it cannot describe is not causal. A sum of modes with
+// g ≥ 0 is what a passive rubber without inertia allows, which is narrower. Each fit is
 // judged by its weighted sum of squares against the noise and by the runs in
 // sign of its residuals along frequency. Then four mistakes of instruments are
 // tried one at a time together with the non-negative fit, and that which
@@ -28,15 +28,32 @@
 //     opposite signs of the same error one may be found always and the other
 //     never. Inertia and delay often explain a misfit equally well; then one is
 //     Likely, the other stands in Others.
+//
 //   - A phase offset and a gain of the loss modulus are the same thing where the
 //     loss factor is flat, and then likewise named together.
+//
 //   - A phase offset shows because the slope of G' tells how much loss there must
-//     be. Over few points the slope is uncertain and the offset is lost in it.
+//     be. In simulations of 21 points over 0.5 to 50 Hz with 0.5 % and 0.3° of
+//     noise 1° was always found, but called a loss gain half of the time; a loss
+//     gain of 5 % was always found at tan δ near 0.7 and hardly ever near 0.1,
+//     where it is a quarter of a degree. Over one decade with six points 1° was
+//     found in under half of the cases, or never at tan δ near 0.7.
+//
+//   - Without a given noise the misfit of the free fit is taken for noise. With 21
+//     points its runs in sign still show 1°; with 10 points nothing shows, not even
+//     2°. Then look at NoiseMagnitude and NoisePhase: more than repeats scatter is
+//     the only sign.
+//
 //   - A factor common to both moduli (specimen size, force calibration) is never
 //     seen, and neither is a wrong temperature or strain.
+//
 //   - A loss that does not depend on frequency, as of filler at a strain beyond
 //     the linear range, comes with a slope of G' if it is causal; a friction
 //     without that slope is a misfit here though the instrument is right.
+//
+//   - A spectrum narrower than the step of the relaxation times, as of a single
+//     Maxwell element, is not described by them and looks like a misfit. Rubbers
+//     are broader, also in their transition.
 //
 // Silence is therefore weak evidence; a misfit is strong evidence. The estimate
 // of a hypothesis holds only if that hypothesis is the truth.

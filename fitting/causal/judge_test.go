@@ -200,6 +200,28 @@ func TestPower(t *testing.T) {
 	}
 }
 
+// The interval of two standard uncertainties covers the phase offset made as
+// often as it should, 95 %, within what 200 draws can tell.
+func TestCoverage(t *testing.T) {
+	f := spread(0.5, 50, 21)
+	for _, truth := range []func(float64) complex128{rubber, steep} {
+		g := spoil(f, measure(f, truth), PhaseOffset, degree)
+		inside := 0
+		for seed := range uint64(200) {
+			v, err := Judge(Isotherm{Frequency: f, Modulus: noisy(g, 0.005, 0.3*degree, 3000+seed), Magnitude: 0.005, Phase: 0.3 * degree})
+			if err != nil {
+				t.Fatal(err)
+			}
+			s := v.Suspicions[0]
+			inside += count(math.Abs(s.Estimate-degree) < 1.96*s.Uncertainty)
+		}
+		t.Logf("covered %.1f %%", float64(inside)/2)
+		if inside < 180 || inside > 199 {
+			t.Errorf("covered %d of 200", inside)
+		}
+	}
+}
+
 func TestRepeatable(t *testing.T) {
 	f := spread(0.5, 50, 21)
 	s := Isotherm{Frequency: f, Modulus: noisy(measure(f, rubber), 0.005, 0.3*degree, 4), Magnitude: 0.005, Phase: 0.3 * degree}
