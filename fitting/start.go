@@ -162,7 +162,29 @@ func (a *answer) densify(first *superpose.Solution) (*superpose.Solution, []supe
 	lo, hi := a.window(best.LogShift)
 	dense, err := best.OnLattice(lattice(lo, hi, 2))
 	if err != nil || best.Objective-dense.Objective < coarse {
-		return best, noise, nil
+		return a.smooth(best, noise)
 	}
-	return dense.Refine(6)
+	if dense, noise, err = dense.Refine(6); err != nil {
+		return nil, nil, err
+	}
+	return a.smooth(dense, noise)
+}
+
+// smooth gives the spectrum its smoothness prior, twice, since the level of the
+// first time comes from a spectrum of few lines. Where it does not work, the
+// spectrum stays as it is.
+func (a *answer) smooth(s *superpose.Solution, noise []superpose.GroupNoise) (*superpose.Solution, []superpose.GroupNoise, error) {
+	for range 2 {
+		lo, hi := a.window(s.LogShift)
+		smooth, err := s.Smooth(lo, hi)
+		if err != nil {
+			break
+		}
+		smooth, own, err := smooth.Refine(6)
+		if err != nil {
+			break
+		}
+		s, noise = smooth, own
+	}
+	return s, noise, nil
 }

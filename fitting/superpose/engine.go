@@ -21,7 +21,7 @@ type engine struct {
 	l layout
 
 	osc, rel []int // indices into p.Rows
-	m        int   // data rows, 2·len(osc)+len(rel)
+	m        int   // rows of the linear problem, 2·len(osc)+len(rel) and those of the spectrum's prior
 	priors   int
 	nc       int // columns: equilibrium, lattice, filler storage, filler loss
 
@@ -75,7 +75,7 @@ func newEngine(p *Problem, f *Form) *engine {
 			e.osc = append(e.osc, i)
 		}
 	}
-	e.m = 2*len(e.osc) + len(e.rel)
+	e.m = 2*len(e.osc) + len(e.rel) + f.Prior.rows(len(f.Lattice))
 	for _, o := range e.l.offset {
 		if o >= 0 {
 			e.priors++
@@ -235,6 +235,7 @@ func (e *engine) fill() {
 			}
 		}
 	}
+	e.fillPrior()
 	if !e.f.Filler {
 		return
 	}

@@ -101,6 +101,7 @@ type Form struct {
 	Kappa      float64   // 1 causal, 0 rate-independent
 	Lattice    []float64 // τ_k, s, rising
 	Sigma      []Sigma   // per noise group
+	Prior      Prior     // of the spectrum; zero: none
 }
 
 // layout tells where a parameter stands in θ; -1: not there.

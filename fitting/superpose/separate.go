@@ -82,11 +82,11 @@ func newSeparator(p *Problem, isotherm []bool) *separator {
 }
 
 type separateSums struct {
-	joint, separate     float64 // weighted
-	jointM, jointD      []float64
-	sepM, sepD          []float64
-	parameters          int // passive columns of all knots
-	jointPassive, total int
+	joint, separate float64 // weighted
+	jointM, jointD  []float64
+	sepM, sepD      []float64
+	parameters      int // passive columns of all knots
+	total           int
 }
 
 // statistic is F; rounding may not make it negative.
@@ -106,7 +106,6 @@ func (z *separator) sums(s *Solution) (out separateSums, ok bool) {
 	nk := len(z.knots)
 	out.jointM, out.jointD = make([]float64, nk), make([]float64, nk)
 	out.sepM, out.sepD = make([]float64, nk), make([]float64, nk)
-	out.jointPassive = len(e.idx)
 	for k, rows := range z.knots {
 		m := 2 * len(rows)
 		if m == 0 {
@@ -186,7 +185,11 @@ func (s *Solution) Superposition(isotherm []bool, draws int, seed uint64, worker
 		km.BeyondRelative = Misfits{km.Relative, out.Relative.Floor}.Beyond()
 		out.Knots = append(out.Knots, km)
 	}
-	extra := float64(sums.parameters - sums.jointPassive - (len(z.knots) - 1))
+	var joint float64 // effective parameters of the joint fit
+	for _, h := range s.linearise(s.e.passiveColumns()).leverage()[:2*len(s.e.osc)] {
+		joint += h
+	}
+	extra := float64(sums.parameters) - joint
 	if extra < 1 || free < 1 {
 		out.P = 1
 		return out

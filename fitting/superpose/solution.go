@@ -91,7 +91,7 @@ func (s *Solution) Rival(f Form, start Start) (*Solution, error) {
 // OnLattice fits the same form on another lattice, from where this solution is.
 func (s *Solution) OnLattice(lattice []float64) (*Solution, error) {
 	f := s.Form
-	f.Lattice = lattice
+	f.Lattice, f.Prior = lattice, Prior{}
 	e := newEngine(s.Problem, &f)
 	copy(e.denom, s.e.denom)
 	e.setSigma(f.Sigma)
