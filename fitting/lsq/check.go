@@ -28,6 +28,9 @@ func CheckJacobian(p Problem, x []float64) (Deviation, error) {
 	if err := p.check(x); err != nil {
 		return Deviation{}, err
 	}
+	if p.Jacobian == nil {
+		panic("lsq: CheckJacobian needs a Jacobian")
+	}
 	m, n := p.M, p.N
 	r := make([]float64, m)
 	if err := p.Residual(r, x); err != nil {

@@ -26,24 +26,31 @@ const memory = 0.7
 func (s *Solver) linearise(p *Problem, res *Result) error {
 	m, n := p.M, p.N
 	res.JacobianEvaluations++
-	if err := p.Jacobian(s.j, s.x); err != nil {
-		return err
+	g := &s.g
+	clear(g.q)
+	if p.Triangle != nil {
+		if err := p.Triangle(s.j, g.q, s.x); err != nil {
+			return err
+		}
+		m = n
+	} else {
+		if err := p.Jacobian(s.j, s.x); err != nil {
+			return err
+		}
+		qr.Factor(s.j, m, n, m, s.tau)
+		k := min(m, n)
+		copy(s.rh, s.r)
+		qr.MulQT(s.j, m, k, m, s.tau, s.rh)
+		copy(g.q, s.rh[:k])
 	}
 	for j := range n {
-		c := qr.Norm(s.j[j*m : (j+1)*m])
+		c := qr.Norm(s.j[j*m : j*m+min(j+1, m)])
 		if math.IsNaN(c) || math.IsInf(c, 0) {
 			return ErrNotFinite
 		}
 		s.scale[j] = c
 		s.d[j] = math.Max(memory*s.d[j], c)
 	}
-	g := &s.g
-	qr.Factor(s.j, m, n, m, s.tau)
-	copy(s.rh, s.r)
-	k := min(m, n)
-	qr.MulQT(s.j, m, k, m, s.tau, s.rh)
-	clear(g.q)
-	copy(g.q, s.rh[:k])
 	res.Gradient = 0
 	for j := range n {
 		c := g.r[j*n : (j+1)*n]
@@ -104,7 +111,7 @@ func (s *Solver) move(p *Problem, res *Result) error {
 // correction is too large for the step to be tried.
 func (s *Solver) bend(p *Problem, res *Result, length float64) (bool, error) {
 	limit := res.Used.Acceleration
-	if limit < 0 || s.g.bound {
+	if limit < 0 || s.g.bound || p.Triangle != nil {
 		return true, nil
 	}
 	s.place(p, bendStep)

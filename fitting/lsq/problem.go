@@ -24,6 +24,14 @@ type Problem struct {
 	// can be kept. j arrives with undefined content.
 	Jacobian func(j, x []float64) error
 
+	// Triangle is for callers who know the structure of their Jacobian; it takes
+	// the place of Jacobian. It writes a triangle of the Jacobian at x to r, an N×N
+	// column-major matrix of which only the upper triangle is read, and the first N
+	// elements of Qᵀ times the residual to q: JᵀJ = RᵀR, Jᵀ·residual = Rᵀq. It is
+	// called as Jacobian is. The second-order correction of the step, which needs
+	// all of J, is then not made.
+	Triangle func(r, q, x []float64) error
+
 	// Lower and Upper are bounds, nil for none or of length N with infinities
 	// where there is none. Equal bounds hold a parameter. The functions above are
 	// never called outside.
@@ -62,8 +70,8 @@ func (p *Problem) check(x0 []float64) error {
 	switch {
 	case p.M < 1 || p.N < 1:
 		panic("lsq: problem without residuals or without parameters")
-	case p.Residual == nil || p.Jacobian == nil:
-		panic("lsq: problem without Residual or Jacobian")
+	case p.Residual == nil || (p.Jacobian == nil) == (p.Triangle == nil):
+		panic("lsq: problem without Residual, or not with one of Jacobian and Triangle")
 	case p.Lower != nil && len(p.Lower) != p.N || p.Upper != nil && len(p.Upper) != p.N:
 		panic("lsq: length of bounds is not N")
 	case len(x0) != p.N:

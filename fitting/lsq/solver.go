@@ -74,7 +74,7 @@ func (s *Solver) Solve(p Problem, x0 []float64, settings *Settings) (Result, err
 	if err := p.check(x0); err != nil {
 		return Result{}, err
 	}
-	s.resize(p.M, p.N)
+	s.resize(p.M, p.N, p.Triangle != nil)
 	res := Result{
 		X: s.x, Residual: s.r, Held: s.held, Start: s.start,
 		Gradient: math.NaN(), Condition: math.NaN(),
@@ -102,7 +102,7 @@ func (s *Solver) Solve(p Problem, x0 []float64, settings *Settings) (Result, err
 	return res, nil
 }
 
-func (s *Solver) resize(m, n int) {
+func (s *Solver) resize(m, n int, triangle bool) {
 	s.g.resize(n)
 	for _, p := range []*[]float64{&s.x, &s.trial, &s.d, &s.scale, &s.lo, &s.up, &s.start, &s.tau, &s.work} {
 		*p = grow(*p, n)
@@ -110,7 +110,11 @@ func (s *Solver) resize(m, n int) {
 	for _, p := range []*[]float64{&s.r, &s.rt, &s.rh} {
 		*p = grow(*p, m)
 	}
-	s.j = grow(s.j, m*n)
+	if triangle {
+		s.j = grow(s.j, n*n)
+	} else {
+		s.j = grow(s.j, m*n)
+	}
 	s.tri = grow(s.tri, n*n)
 	s.held = grow(s.held, n)
 	s.fixed = grow(s.fixed, n)

@@ -31,6 +31,10 @@ type Front struct {
 	buf     []float64
 	ld, top int
 	tau     []float64
+	// Storage of the rows.
+	indices  []int
+	elements []float64
+	rowStart int
 }
 
 // FrontRow is a row of R: the column that it eliminated and all columns with
@@ -44,14 +48,38 @@ type FrontRow struct {
 // column n. last holds for every column the number, from 0, of the last block
 // that touches it; columns that stay to the end have a number that no block has.
 func NewFront(n int, last []int) *Front {
+	f := new(Front)
+	f.Reset(n, last)
+	return f
+}
+
+// Reset prepares for another matrix and keeps the workspace; the rows of the
+// last one are overwritten.
+func (f *Front) Reset(n int, last []int) {
 	if len(last) != n {
 		panic("qr: length of last is not n")
 	}
-	f := &Front{n: n, last: last, slot: make([]int, n+1)}
+	f.n, f.last, f.block, f.Rest = n, last, 0, 0
+	f.Rows, f.columns, f.end = f.Rows[:0], f.columns[:0], f.end[:0]
+	f.indices, f.elements = f.indices[:0], f.elements[:0]
+	f.slot = append(f.slot[:0], make([]int, n+1)...)
 	for c := range f.slot {
 		f.slot[c] = -1
 	}
-	return f
+	f.buf, f.top = f.buf[:0], f.ld
+}
+
+// row starts a row of R; its elements are put behind it.
+func (f *Front) row(c int, v float64) {
+	f.Rows = append(f.Rows, FrontRow{})
+	f.rowStart = len(f.indices)
+	f.put(c, v)
+}
+
+func (f *Front) put(c int, v float64) {
+	f.indices, f.elements = append(f.indices, c), append(f.elements, v)
+	r := &f.Rows[len(f.Rows)-1]
+	r.Columns, r.Elements = f.indices[f.rowStart:], f.elements[f.rowStart:]
 }
 
 // gather is how many rows for each active column are gathered before they are
@@ -95,6 +123,7 @@ func (f *Front) room(m, columns int) {
 	}
 	old, oldLd, oldTop := f.buf, f.ld, f.top
 	rows := oldLd - oldTop
+	// A new array: the old one is still read.
 	f.ld = rows + m + gather*(len(f.columns)+columns)
 	f.top = f.ld - rows
 	f.buf = make([]float64, f.ld*len(f.columns))
@@ -126,7 +155,7 @@ func (f *Front) eliminate(c int) {
 	v := f.column(s)[f.top:end]
 	if Norm(v) != 0 {
 		tau := Reflector(v)
-		row := FrontRow{Columns: []int{c}, Elements: []float64{v[0]}}
+		f.row(c, v[0])
 		for t, d := range f.columns {
 			if t == s {
 				continue
@@ -135,12 +164,10 @@ func (f *Front) eliminate(c int) {
 			Apply(v, tau, w[f.top:end])
 			f.end[t] = max(f.end[t], end)
 			if w[f.top] != 0 {
-				row.Columns = append(row.Columns, d)
-				row.Elements = append(row.Elements, w[f.top])
+				f.put(d, w[f.top])
 				w[f.top] = 0
 			}
 		}
-		f.Rows = append(f.Rows, row)
 		f.top++
 	}
 	last := len(f.columns) - 1
@@ -197,11 +224,9 @@ func (f *Front) Finish() {
 			f.Rest = max(f.column(i)[f.top+i], -f.column(i)[f.top+i])
 			break
 		}
-		row := FrontRow{}
-		for t := i; t < n; t++ {
-			row.Columns = append(row.Columns, f.columns[t])
-			row.Elements = append(row.Elements, f.column(t)[f.top+i])
+		f.row(c, f.column(i)[f.top+i])
+		for t := i + 1; t < n; t++ {
+			f.put(f.columns[t], f.column(t)[f.top+i])
 		}
-		f.Rows = append(f.Rows, row)
 	}
 }

@@ -10,24 +10,47 @@ import (
 // are not zero and of all nonlinear parameters. It comes from the triangle of
 // the Jacobian, never from the normal matrix.
 type Covariance struct {
-	z    *linearised
-	rinv []float64 // n×n upper triangle, column-major, scaled back
+	z    *arrow
+	rinv []float64 // n×n, column-major: row i has the root of parameter i
 	n    int
 }
 
 // Covariance linearises at the solution.
 func (s *Solution) Covariance() *Covariance {
-	return s.covariance(s.e.passiveColumns())
-}
-
-func (s *Solution) covariance(columns []int) *Covariance {
-	z := s.linearise(columns)
-	c := &Covariance{z: z, n: z.n, rinv: make([]float64, z.n*z.n)}
-	qr.InvertR(c.rinv, z.n, z.a, z.n, z.rows)
-	// Undo the column scaling: R⁻¹ of the unscaled problem has rows over scale.
-	for i := range z.n {
-		for j := range z.n {
-			c.rinv[i+j*z.n] /= z.scale[i]
+	z := s.linearise(s.e.passiveColumns())
+	n := z.n
+	c := &Covariance{z: z, n: n, rinv: make([]float64, n*n)}
+	order := make([]int, 0, n)
+	seen := make([]bool, n)
+	for _, row := range z.front.Rows {
+		order = append(order, row.Columns[0])
+		seen[row.Columns[0]] = true
+	}
+	for k := range n {
+		if !seen[k] {
+			order = append(order, k)
+		}
+	}
+	a, rows := z.dense(order)
+	r := make([]float64, n*n)
+	for j := range n {
+		col := r[j*n : (j+1)*n]
+		copy(col, a[j*rows:j*rows+min(rows, j+1)])
+		// A column that the earlier ones explain to rounding carries nothing, and
+		// its parameter has a very large uncertainty.
+		scale := qr.Norm(col)
+		if scale == 0 {
+			scale = 1
+		}
+		if math.Abs(col[j]) < noInformation*scale {
+			col[j] = noInformation * scale
+		}
+	}
+	inverse := make([]float64, n*n)
+	qr.InvertR(inverse, n, r, n, n)
+	for k, i := range order {
+		for j := range n {
+			c.rinv[i+j*n] = inverse[k+j*n]
 		}
 	}
 	return c

@@ -20,8 +20,11 @@ type engine struct {
 	f *Form
 	l layout
 
-	osc, rel []int // indices into p.Rows
-	m        int   // rows of the linear problem, 2·len(osc)+len(rel) and those of the spectrum's prior
+	osc, rel []int   // indices into p.Rows
+	place    []int   // per row of p.Rows: its place in osc, or that of its row of the matrices
+	rowsOf   [][]int // per run: its rows
+	priorOf  []int   // per run: its prior row
+	m        int     // rows of the linear problem, 2·len(osc)+len(rel) and those of the spectrum's prior
 	priors   int
 	nc       int // columns: equilibrium, lattice, filler storage, filler loss
 
@@ -41,11 +44,9 @@ type engine struct {
 	known   bool
 
 	solver nnls.Solver
-	// Passive columns, factored; their reflectors.
-	ap  []float64
-	tau []float64
-	idx []int
-	dir []float64 // m
+	idx    []int // passive columns
+	slope  slopes
+	front  qr.Front
 }
 
 // rowState is what a row needs at θ.
@@ -68,16 +69,24 @@ type rowState struct {
 
 func newEngine(p *Problem, f *Form) *engine {
 	e := &engine{p: p, f: f, l: p.layout(f)}
+	e.place, e.rowsOf = make([]int, len(p.Rows)), make([][]int, len(p.Runs))
 	for i, r := range p.Rows {
 		if r.Relaxation {
 			e.rel = append(e.rel, i)
 		} else {
+			e.place[i] = len(e.osc)
 			e.osc = append(e.osc, i)
 		}
+		e.rowsOf[r.Run] = append(e.rowsOf[r.Run], i)
+	}
+	for j, i := range e.rel {
+		e.place[i] = 2*len(e.osc) + j
 	}
 	e.m = 2*len(e.osc) + len(e.rel) + f.Prior.rows(len(f.Lattice))
-	for _, o := range e.l.offset {
+	e.priorOf = make([]int, len(p.Runs))
+	for j, o := range e.l.offset {
 		if o >= 0 {
+			e.priorOf[j] = e.priors
 			e.priors++
 		}
 	}
@@ -106,8 +115,6 @@ func newEngine(p *Problem, f *Form) *engine {
 	e.factors = make([]float64, p.Factors)
 	e.a, e.y = make([]float64, e.m*e.nc), make([]float64, e.m)
 	e.c, e.passive = make([]float64, e.nc), make([]bool, e.nc)
-	e.ap, e.tau = make([]float64, e.m*e.nc), make([]float64, e.nc)
-	e.dir = make([]float64, e.m)
 	return e
 }
 
@@ -274,28 +281,11 @@ func (e *engine) residual(r, theta []float64) bool {
 			axpy(r[:e.m], -ck, e.a[k*e.m:(k+1)*e.m])
 		}
 	}
-	e.priorRows(r[e.m:], theta)
+	for k, p := range e.priorRows(theta) {
+		r[e.m+k] = p.residual
+	}
 	e.known = true
 	return true
-}
-
-func (e *engine) priorRows(r, theta []float64) {
-	k := 0
-	for j, o := range e.l.offset {
-		if o >= 0 {
-			r[k] = theta[o] / e.p.Runs[j].U
-			k++
-		}
-	}
-	if e.l.nFactor > 0 {
-		for i := range e.factors {
-			r[k] = math.Log(e.factors[i]) / e.p.UGeometry
-			k++
-		}
-	}
-	if e.l.phase >= 0 {
-		r[k] = theta[e.l.phase] / e.p.UPhase
-	}
 }
 
 // solve finds the moduli; the passive set of the last θ is its warm start.
@@ -307,11 +297,9 @@ func (e *engine) solve() bool {
 	e.idx = e.idx[:0]
 	for k := range e.c {
 		if e.passive[k] && e.c[k] > 0 {
-			copy(e.ap[len(e.idx)*e.m:], e.a[k*e.m:(k+1)*e.m])
 			e.idx = append(e.idx, k)
 		}
 	}
-	qr.Factor(e.ap, e.m, len(e.idx), e.m, e.tau)
 	return true
 }
 

@@ -1,43 +1,49 @@
 package superpose
 
 import (
-	"phaselag/fitting/qr"
 	"phaselag/models/thermal"
 )
 
-// derivatives writes ∂(A c)/∂θ, weighted, m×n column-major with leading
-// dimension ld, at the latest θ, after sums.
-func (e *engine) derivatives(d []float64, ld int) {
-	l, n := &e.l, len(e.osc)
-	for j := range l.n {
-		clear(d[j*ld : j*ld+e.m])
-	}
-	var lawG, verG []float64
-	if l.nLaw > 0 {
-		lawG = make([]float64, l.nLaw)
-	}
+// slopes holds ∂(A c)/∂θ of all rows at the latest θ, weighted: row i has the
+// entries start[i] to start[i+1] of column and value. A row knows its own
+// temperature offset and specimen and what all share, so most of the matrix is
+// empty.
+type slopes struct {
+	start  []int
+	column []int
+	value  []complex128
+	lawG   []float64
+	verG   []float64
+}
+
+// derivatives fills e.slope, after sums. The value of an entry has the derivative
+// of the real row in its real and that of the imaginary row in its imaginary
+// part; relaxation rows have the real part alone.
+func (e *engine) derivatives() {
+	l, d := &e.l, &e.slope
+	d.start, d.column, d.value = d.start[:0], d.column[:0], d.value[:0]
+	d.lawG, d.verG = resized(d.lawG, l.nLaw), resized(d.verG, l.nVer)
 	var vertical *anchored
 	if l.nVer > 0 {
-		verG = make([]float64, l.nVer)
 		vertical = e.p.anchored(e.theta[l.vertical : l.vertical+l.nVer])
 	}
-	row := func(i, at int, relaxation bool) {
+	for i := range e.p.Rows {
 		s, r := &e.state[i], &e.p.Rows[i]
-		q := s.q * complex(e.scale, 0)
+		d.start = append(d.start, len(d.column))
+		q, wRe, wIm := s.q*complex(e.scale, 0), e.wRe[i], e.wIm[i]
+		if r.Relaxation {
+			wIm = 0
+		}
 		add := func(col int, v complex128) {
 			v *= q
-			if relaxation {
-				d[col*ld+at] += e.wRe[i] * real(v)
-				return
-			}
-			d[col*ld+at] += e.wRe[i] * real(v)
-			d[col*ld+n+at] += e.wIm[i] * imag(v)
+			d.column = append(d.column, col)
+			d.value = append(d.value, complex(wRe*real(v), wIm*imag(v)))
 		}
 		poly, slope := complex(s.polyRe, s.polyIm), complex(s.polySlRe, s.polySlIm)
 		byLog := complex(thermal.Ln10*s.b, 0) * slope
 		if l.nLaw > 0 {
-			e.law.Gradient(s.T, lawG)
-			for k, g := range lawG {
+			e.law.Gradient(s.T, d.lawG)
+			for k, g := range d.lawG {
 				if e.f.Law == Arrhenius {
 					g *= 1e3
 				}
@@ -47,8 +53,8 @@ func (e *engine) derivatives(d []float64, ld int) {
 			}
 		}
 		if vertical != nil {
-			vertical.Gradient(s.T, verG)
-			for k, g := range verG {
+			vertical.Gradient(s.T, d.verG)
+			for k, g := range d.verG {
 				if g != 0 {
 					add(l.vertical+k, complex(s.b*g, 0)*poly)
 				}
@@ -59,7 +65,7 @@ func (e *engine) derivatives(d []float64, ld int) {
 			add(o, byLog*complex(s.slope, 0)+complex(s.bSlope, 0)*poly+complex(s.phiByT, 0)*fill)
 		}
 		whole := complex(s.b, 0)*poly + complex(s.phi, 0)*fill
-		if l.phase >= 0 && !relaxation {
+		if l.phase >= 0 && !r.Relaxation {
 			add(l.phase, whole*1i)
 		}
 		if l.nFactor > 0 {
@@ -79,65 +85,42 @@ func (e *engine) derivatives(d []float64, ld int) {
 			add(l.exponent, complex(s.phi*s.fillExpRe, s.phi*s.fillExpIm))
 		}
 	}
-	for j, i := range e.osc {
-		row(i, j, false)
-	}
-	for j, i := range e.rel {
-		row(i, 2*n+j, true)
-	}
+	d.start = append(d.start, len(d.column))
 }
 
-// priorJacobian writes the derivatives of the prior rows below row e.m.
-func (e *engine) priorJacobian(d []float64, ld int) {
-	l := &e.l
-	for j := range l.n {
-		clear(d[j*ld+e.m : j*ld+e.m+e.priors])
-	}
-	k := e.m
+// prior is a prior row: its residual at θ and its derivatives.
+type prior struct {
+	run      int // whose offset it holds; −1: of all
+	residual float64
+	column   []int
+	value    []float64
+}
+
+// priorRows lists the prior rows at θ.
+func (e *engine) priorRows(theta []float64) []prior {
+	l, out := &e.l, make([]prior, 0, e.priors)
 	for j, o := range l.offset {
 		if o >= 0 {
-			d[o*ld+k] = 1 / e.p.Runs[j].U
-			k++
+			u := e.p.Runs[j].U
+			out = append(out, prior{j, theta[o] / u, []int{o}, []float64{1 / u}})
 		}
 	}
 	if l.nFactor > 0 {
-		for i := range e.factors {
-			for j := range l.nFactor {
-				switch {
-				case i == j:
-					d[(l.factor+j)*ld+k] = 1 / e.p.UGeometry
-				case i == l.nFactor:
-					d[(l.factor+j)*ld+k] = -1 / e.p.UGeometry
-				}
-			}
-			k++
+		w := 1 / e.p.UGeometry
+		last := prior{run: -1}
+		for i := range l.nFactor {
+			c := l.factor + i
+			out = append(out, prior{-1, theta[c] * w, []int{c}, []float64{w}})
+			last.residual -= theta[c] * w
+			last.column, last.value = append(last.column, c), append(last.value, -w)
 		}
+		out = append(out, last)
 	}
 	if l.phase >= 0 {
-		d[l.phase*ld+k] = 1 / e.p.UPhase
+		w := 1 / e.p.UPhase
+		out = append(out, prior{-1, theta[l.phase] * w, []int{l.phase}, []float64{w}})
 	}
-}
-
-// jacobian writes Kaufman's Jacobian of residual at θ, (m+priors)×n.
-func (e *engine) jacobian(j, theta []float64) bool {
-	if !e.known || !same(theta, e.theta) {
-		r := make([]float64, e.m+e.priors)
-		if !e.residual(r, theta) {
-			return false
-		}
-	}
-	ld := e.m + e.priors
-	e.sums()
-	e.derivatives(j, ld)
-	for k := range e.l.n {
-		col := j[k*ld : k*ld+e.m]
-		for i := range col {
-			col[i] = -col[i]
-		}
-		qr.Project(e.ap, e.m, len(e.idx), e.m, e.tau, col, true)
-	}
-	e.priorJacobian(j, ld)
-	return true
+	return out
 }
 
 func same(a, b []float64) bool {
@@ -153,4 +136,21 @@ func axpy(y []float64, alpha float64, x []float64) {
 	for i, v := range x {
 		y[i] += alpha * v
 	}
+}
+
+// resized returns a slice of length n with undefined elements.
+func resized(x []float64, n int) []float64 {
+	if cap(x) < n {
+		return make([]float64, n)
+	}
+	return x[:n]
+}
+
+// dot is the scalar product.
+func dot(a, b []float64) float64 {
+	var s float64
+	for i, v := range a {
+		s += v * b[i]
+	}
+	return s
 }

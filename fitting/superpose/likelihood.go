@@ -1,10 +1,6 @@
 package superpose
 
-import (
-	"math"
-
-	"phaselag/fitting/qr"
-)
+import "math"
 
 // Marginal is −2 ln of the marginal likelihood of the measurements, without
 // the constant that forms with the same rows and noise share. The temperature
@@ -15,37 +11,18 @@ import (
 // and S_min includes the prior rows.
 func (s *Solution) Marginal() float64 {
 	e := s.e
-	var offsets []int
-	var u []float64
-	for j, o := range e.l.offset {
-		if o >= 0 {
-			offsets = append(offsets, o)
-			u = append(u, s.Problem.Runs[j].U)
-		}
-	}
-	n := len(offsets)
-	if n == 0 {
-		return s.Objective
-	}
-	ld := e.m + e.priors
-	d := make([]float64, ld*e.l.n)
-	e.derivatives(d, ld)
-	// det(I + ΛJᵀJΛ) is the squared determinant of the triangle of [JΛ; I].
-	rows := e.m + n
-	a := make([]float64, rows*n)
-	for k, o := range offsets {
-		col := a[k*rows : (k+1)*rows]
-		copy(col, d[o*ld:o*ld+e.m])
-		for i := range e.m {
-			col[i] *= u[k]
-		}
-		col[e.m+k] = 1
-	}
-	tau := make([]float64, n)
-	qr.Factor(a, rows, n, rows, tau)
 	out := s.Objective
-	for k := range n {
-		out += 2 * math.Log(math.Abs(a[k*rows+k]))
+	e.derivatives()
+	// A row belongs to one run, so JᵀJ is diagonal.
+	squares := make([]float64, e.l.n)
+	for k, c := range e.slope.column {
+		v := e.slope.value[k]
+		squares[c] += real(v)*real(v) + imag(v)*imag(v)
+	}
+	for j, o := range e.l.offset {
+		if u := s.Problem.Runs[j].U; o >= 0 {
+			out += math.Log1p(u * u * squares[o])
+		}
 	}
 	return out
 }

@@ -36,7 +36,7 @@ func (e *engine) minimise(x0 []float64) (found, error) {
 	res, err := lsq.Solve(lsq.Problem{
 		M: e.m + e.priors, N: e.l.n, Lower: lower, Upper: upper,
 		Residual: func(r, x []float64) error { return call(e.residual(r, x)) },
-		Jacobian: func(j, x []float64) error { return call(e.jacobian(j, x)) },
+		Triangle: func(r, q, x []float64) error { return call(e.triangle(r, q, x)) },
 	}, x0, &s)
 	if err != nil {
 		return found{}, err

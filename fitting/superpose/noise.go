@@ -3,74 +3,79 @@ package superpose
 import (
 	"math"
 	"math/cmplx"
-
-	"phaselag/fitting/qr"
 )
 
-// linearised is the Jacobian of all rows by all parameters at a solution,
-// factored: passive moduli first (in units of the engine's scale), then θ.
-type linearised struct {
-	e       *engine
-	columns []int // passive columns of the engine, in order
-	rows, n int
-	a       []float64 // factored, rows×n
-	raw     []float64 // unfactored copy
-	tau     []float64
-	scale   []float64 // norms of the columns, taken out before factoring
-	dead    []bool    // columns without information
-}
-
-// linearise factors the Jacobian. With allColumns the moduli that are zero are
-// parameters too.
-func (s *Solution) linearise(columns []int) *linearised {
-	e := s.e
-	ld := e.m + e.priors
-	n := len(columns) + e.l.n
-	z := &linearised{e: e, columns: columns, rows: ld, n: n}
-	z.a = make([]float64, ld*n)
-	for j, k := range columns {
-		copy(z.a[j*ld:j*ld+e.m], e.a[k*e.m:(k+1)*e.m])
+// leverage is the diagonal of the hat matrix of the linearised problem, per data
+// row of the engine: ‖R⁻ᵀJ_i‖² for row i. R is passed through in the order of its
+// elimination, where a row meets its own run's columns and the shared ones.
+func (z *arrow) leverage() []float64 {
+	e, np := z.e, len(z.columns)
+	h := make([]float64, 2*len(e.osc)+len(e.rel))
+	place := make([]int, z.n) // of a parameter among the rows of R
+	for c := range place {
+		place[c] = -1
 	}
-	d := z.a[len(columns)*ld:]
-	e.derivatives(d, ld)
-	e.priorJacobian(d, ld)
-	z.scale, z.dead = make([]float64, n), make([]bool, n)
-	for j := range n {
-		col := z.a[j*ld : (j+1)*ld]
-		v := qr.Norm(col)
-		if v == 0 {
-			z.dead[j] = true
-			v = 1
-		}
-		z.scale[j] = v
-		for i := range col {
-			col[i] /= v
+	norm := make([]float64, z.n)
+	for i, row := range z.front.Rows {
+		place[row.Columns[0]] = i
+		for k, c := range row.Columns {
+			if c < z.n {
+				norm[c] += row.Elements[k] * row.Elements[k]
+			}
 		}
 	}
-	z.raw = append([]float64(nil), z.a...)
-	z.tau = make([]float64, n)
-	qr.Factor(z.a, ld, n, ld, z.tau)
-	for j := range n {
-		// A column that the earlier ones explain to rounding carries nothing.
-		if math.Abs(z.a[j*ld+j]) < 1e-13 {
-			z.dead[j] = true
-			z.a[j*ld+j] = 1e-13
+	v := make([]float64, z.n)
+	one := func(at, i int, imaginary bool) {
+		first := len(z.front.Rows)
+		set := func(c int, x float64) {
+			v[c] += x
+			if place[c] >= 0 {
+				first = min(first, place[c])
+			}
 		}
+		for k, c := range z.columns {
+			set(k, e.a[c*e.m+at])
+		}
+		for k := e.slope.start[i]; k < e.slope.start[i+1]; k++ {
+			x := real(e.slope.value[k])
+			if imaginary {
+				x = imag(e.slope.value[k])
+			}
+			set(np+e.slope.column[k], x)
+		}
+		for _, row := range z.front.Rows[first:] {
+			c := row.Columns[0]
+			d := row.Elements[0]
+			if v[c] == 0 || math.Abs(d) < noInformation*math.Sqrt(norm[c]) {
+				continue
+			}
+			x := v[c] / d
+			h[at] += x * x
+			for k, c := range row.Columns[1:] {
+				if c < z.n {
+					v[c] -= x * row.Elements[k+1]
+				}
+			}
+		}
+		clear(v)
 	}
-	return z
-}
-
-// leverage is the diagonal of the hat matrix, per data row of the engine.
-func (z *linearised) leverage() []float64 {
-	q := make([]float64, z.rows*z.n)
-	qr.ThinQ(q, z.rows, z.a, z.rows, z.n, z.rows, z.tau)
-	h := make([]float64, z.e.m)
-	for j := range z.n {
-		for i := range h {
-			h[i] += q[j*z.rows+i] * q[j*z.rows+i]
+	for i, r := range e.p.Rows {
+		one(e.place[i], i, false)
+		if !r.Relaxation {
+			one(len(e.osc)+e.place[i], i, true)
 		}
 	}
 	return h
+}
+
+// noInformation is the share of a column's norm below which what the earlier
+// columns do not explain is rounding.
+const noInformation = 1e-13
+
+// linearise factors the Jacobian at the solution.
+func (s *Solution) linearise(columns []int) *arrow {
+	s.e.derivatives()
+	return s.e.arrow(columns, true, false)
 }
 
 // GroupNoise is the estimated noise of a group with its degrees of freedom.

@@ -19,59 +19,50 @@ func (s *Solution) restricted(shared []bool) (lambda, g []float64) {
 	if len(offsets) == 0 {
 		return nil, nil
 	}
-	ld := e.m + e.priors
-	d := make([]float64, ld*e.l.n)
-	e.derivatives(d, ld)
-	// Everything but the offsets, on the data rows, scaled by column.
+	// Everything but the offsets first: below its rows the triangle has the
+	// offsets and the residual projected off it.
+	e.derivatives()
+	columns := e.passiveColumns()
+	z := e.arrow(columns, false, true)
 	isOffset := make([]bool, e.l.n)
 	for _, o := range offsets {
 		isOffset[o] = true
 	}
-	var others []float64
-	n := 0
-	take := func(col []float64) {
-		if v := qr.Norm(col); v > 0 {
-			for _, x := range col {
-				others = append(others, x/v)
-			}
-			n++
+	var order []int
+	for c := range z.n {
+		if c < len(columns) || !isOffset[c-len(columns)] {
+			order = append(order, c)
 		}
 	}
-	for _, k := range e.idx {
-		take(e.a[k*e.m : (k+1)*e.m])
+	n, q := len(order), len(offsets)
+	for _, o := range offsets {
+		order = append(order, len(columns)+o)
 	}
-	for j := range e.l.n {
-		if !isOffset[j] {
-			take(d[j*ld : j*ld+e.m])
-		}
-	}
-	tau := make([]float64, n)
-	qr.Factor(others, e.m, n, e.m, tau)
-	// Residual with the offsets taken out: y − A c + J d.
-	r := make([]float64, e.m)
-	copy(r, e.y)
-	for k, ck := range e.c {
-		if ck != 0 {
-			axpy(r, -ck, e.a[k*e.m:(k+1)*e.m])
-		}
-	}
-	q := len(offsets)
-	z := make([]float64, e.m*q)
+	a, rows := z.dense(order)
+	// The residual with the offsets taken out.
+	rhs := a[len(order)*rows:]
 	for k, o := range offsets {
-		col := z[k*e.m : (k+1)*e.m]
-		copy(col, d[o*ld:o*ld+e.m])
-		axpy(r, s.Theta[o], col)
-		qr.Project(others, e.m, n, e.m, tau, col, true)
+		axpy(rhs, -s.Theta[o], a[(n+k)*rows:(n+k+1)*rows])
 	}
-	qr.Project(others, e.m, n, e.m, tau, r, true)
+	tau := make([]float64, min(rows, n))
+	qr.Factor(a, rows, n, rows, tau)
+	for k := range q + 1 {
+		qr.MulQT(a, rows, min(rows, n), rows, tau, a[(n+k)*rows:(n+k+1)*rows])
+	}
+	below := func(k int) []float64 {
+		if n >= rows {
+			return nil
+		}
+		// The Jacobian of the residual has the opposite sign of that of the model.
+		return a[(n+k)*rows+n : (n+k+1)*rows]
+	}
 	zz := mat.NewSymDense(q, nil)
 	zr := make([]float64, q)
 	for i := range q {
-		zi := z[i*e.m : (i+1)*e.m]
 		for j := i; j < q; j++ {
-			zz.SetSym(i, j, dot(zi, z[j*e.m:(j+1)*e.m]))
+			zz.SetSym(i, j, dot(below(i), below(j)))
 		}
-		zr[i] = dot(zi, r)
+		zr[i] = -dot(below(i), below(q))
 	}
 	var eig mat.EigenSym
 	if !eig.Factorize(zz, true) {
@@ -88,12 +79,4 @@ func (s *Solution) restricted(shared []bool) (lambda, g []float64) {
 		}
 	}
 	return lambda, g
-}
-
-func dot(a, b []float64) float64 {
-	var s float64
-	for i, v := range a {
-		s += v * b[i]
-	}
-	return s
 }
