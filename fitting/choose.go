@@ -103,11 +103,9 @@ func (a *answer) chooseLaw() error {
 		return nil
 	}
 	base := a.final
-	f := base.Form
-	f.Law = superpose.Factors
-	free, err := base.Rival(f, base.Start())
-	if err != nil {
-		return err
+	free := a.freely(base)
+	if free == nil {
+		return superpose.ErrNoFit
 	}
 	a.free = free
 	a.laws = []rival{{name: "none", s: free, note: "the factors themselves, interpolated"}}
@@ -116,6 +114,7 @@ func (a *answer) chooseLaw() error {
 		if n < least {
 			return
 		}
+		f := base.Form
 		f.Law = law
 		if s, err := base.Rival(f, free.Start()); err == nil {
 			a.laws = append(a.laws, rival{name: law.String(), s: s})
@@ -140,6 +139,7 @@ func (a *answer) chooseLaw() error {
 				"too few temperatures, or a law that this version does not fit", "the factors themselves are used")
 		}
 	}
+	var err error
 	a.final, a.noise, err = a.laws[at].s.Refine(6)
 	return err
 }

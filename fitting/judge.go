@@ -27,16 +27,16 @@ const smallFactor = 3
 // what the fit had to assume.
 func (a *answer) judge() error {
 	a.judgeSpecimens()
+	a.nameOutliers()
 	if a.oneTemperature() {
 		return nil
 	}
 	// The factors free of a law, at the final noise and scatter.
-	f := a.final.Form
-	f.Law = superpose.Factors
-	free, err := a.final.Rival(f, a.final.Start())
-	if err != nil {
-		return err
+	free := a.freely(a.final)
+	if free == nil {
+		return superpose.ErrNoFit
 	}
+	var err error
 	if a.free, _, err = free.Refine(6); err != nil {
 		return err
 	}

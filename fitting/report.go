@@ -309,6 +309,9 @@ func (a *answer) fitted(row *Point, n int) {
 	row.FittedStorage = number(real(m) / 1e6)
 	row.ResidualPercent = number(100 * real(d))
 	row.Weight = 1
+	if w := s.Form.Weights; w != nil {
+		row.Weight = number(w[n])
+	}
 	if r.Relaxation {
 		row.ReducedFrequency = number(al / (2 * math.Pi * r.Time))
 		return

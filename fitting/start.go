@@ -141,6 +141,46 @@ func (a *answer) kappas() []float64 {
 	return []float64{1, 0}
 }
 
+// lawless gives up the law of a first fit where the shift factors of the
+// closed-form overlap, left free, fit so much better that no law can be meant:
+// a wrong temperature or frequency of one isotherm spoils every law, and the
+// search from there ends anywhere.
+func (a *answer) lawless(first *superpose.Solution) *superpose.Solution {
+	if a.oneTemperature() || first.Form.Law == superpose.Factors {
+		return first
+	}
+	free := a.freely(first)
+	if free == nil || first.Objective-free.Objective < max(lawlessFall, lawlessShare*first.Objective) {
+		return first
+	}
+	return free
+}
+
+// lawlessFall and lawlessShare are the least fall of the objective, absolute and
+// relative, with which a first fit goes on without a law. Free factors of sound
+// isotherms lower it by one or two a factor, a few percent.
+const (
+	lawlessFall  = 30
+	lawlessShare = 0.2
+)
+
+// freely fits the factors free of any law, from a solution and from the closed-form
+// overlap; the better of both, nil where none works.
+func (a *answer) freely(s *superpose.Solution) *superpose.Solution {
+	f := s.Form
+	f.Law = superpose.Factors
+	from := s.Start()
+	overlap := from
+	overlap.LogShift = a.overlapShifts().Log
+	var best *superpose.Solution
+	for _, start := range []superpose.Start{from, overlap} {
+		if free, err := s.Rival(f, start); err == nil && (best == nil || free.Objective < best.Objective-1e-6) {
+			best = free
+		}
+	}
+	return best
+}
+
 // coarse is by how much a lattice twice as dense must lower the objective to be
 // taken. It is small on purpose: what a coarse lattice tilts shift factors by
 // grows with the square root of it, in standard errors, and a dense one costs
@@ -155,9 +195,16 @@ const coarse = 2
 // lattice that is too coarse tilts shift factors by more than their
 // uncertainty.
 func (a *answer) densify(first *superpose.Solution) (*superpose.Solution, []superpose.GroupNoise, error) {
+	first = a.lawless(first)
 	best, noise, err := first.Refine(6)
 	if err != nil {
 		return nil, nil, err
+	}
+	// A wrong isotherm makes far points everywhere else; they are no outliers.
+	if !a.doubtIsotherms(best) {
+		if best, noise, err = a.distrust(best, noise); err != nil {
+			return nil, nil, err
+		}
 	}
 	lo, hi := a.window(best.LogShift)
 	dense, err := best.OnLattice(lattice(lo, hi, 2))

@@ -66,7 +66,7 @@ func softerWhenColder(c *data.Campaign) (list []data.Finding) {
 			}
 		}
 		f := data.Finding{
-			Code: "softer-when-colder", Severity: data.Doubt, Test: t.Name, Rows: rows(points),
+			Code: "softer-when-colder", Severity: data.Doubt, Test: t.Name, Rows: data.Places(points),
 			Evidence: fmt.Sprintf("at %s the material is softer than at a warmer temperature; worst %s against %s at %s, %s less, %.3g Hz",
 				listed(temperatures), celsius(worst.cold.temperature), modulus(median(worst.cold.magnitudes())),
 				celsius(worst.warm.temperature), percent(worst.deficit), worst.cold.frequency),

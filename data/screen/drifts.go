@@ -46,7 +46,7 @@ func drifts(c *data.Campaign) (list []data.Finding) {
 			continue
 		}
 		f := data.Finding{
-			Code: "modulus-drifts", Severity: data.Doubt, Test: t.Name, Rows: rows(points),
+			Code: "modulus-drifts", Severity: data.Doubt, Test: t.Name, Rows: data.Places(points),
 			Evidence: fmt.Sprintf("the modulus creeps while nothing is changed: %s", listed(found)),
 			Cause:    "the specimen had not reached the temperature, or settles, slips or ages",
 			Remedy:   "dwell until the modulus stands; leave the first points of such a step out",

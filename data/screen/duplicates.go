@@ -27,8 +27,8 @@ func duplicates(c *data.Campaign) (list []data.Finding) {
 			continue
 		}
 		f := data.Finding{
-			Code: "duplicate-rows", Severity: data.Note, Test: t.Name, Rows: rows(again),
-			Evidence: fmt.Sprintf("%d rows repeat every number of earlier rows (%s)", len(again), rows(first)),
+			Code: "duplicate-rows", Severity: data.Note, Test: t.Name, Rows: data.Places(again),
+			Evidence: fmt.Sprintf("%d rows repeat every number of earlier rows (%s)", len(again), data.Places(first)),
 			Cause:    "chance, where numbers have few digits; or a row copied",
 			Remedy:   "leave the copy out",
 		}

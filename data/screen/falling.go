@@ -62,7 +62,7 @@ func falling(c *data.Campaign) (list []data.Finding) {
 				continue
 			}
 			f := data.Finding{
-				Code: "storage-modulus-falls", Severity: data.Doubt, Test: t.Name, Rows: rows(points[from:]),
+				Code: "storage-modulus-falls", Severity: data.Doubt, Test: t.Name, Rows: data.Places(points[from:]),
 				Evidence: fmt.Sprintf("%s: %s' falls by %s from %.3g to %.3g Hz, its scatter is %s",
 					r.Name, symbol(c), percent(1-math.Exp(-worst)), points[from].Frequency, points[to].Frequency, percent(noise(y))),
 				Cause:  "inertia or resonance of the apparatus near its upper end; slip or damage elsewhere",

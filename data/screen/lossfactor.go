@@ -37,7 +37,7 @@ func statedLossFactor(c *data.Campaign) (list []data.Finding) {
 			continue
 		}
 		f := data.Finding{
-			Code: "stated-loss-factor-differs", Severity: data.Doubt, Test: t.Name, Rows: rows(wrong),
+			Code: "stated-loss-factor-differs", Severity: data.Doubt, Test: t.Name, Rows: data.Places(wrong),
 			Evidence: fmt.Sprintf("tan δ of the file and loss by storage modulus differ by up to %s in %d of %d rows", percent(worst), len(wrong), len(points)),
 			Cause:    "columns that do not belong together, or one of them changed after the test",
 			Remedy:   "compare the file with the apparatus's own record",

@@ -44,7 +44,7 @@ func overlap(c *data.Campaign) (list []data.Finding) {
 			gap = math.Min(gap, math.Max(0, -common))
 		}
 		f := data.Finding{
-			Rows:   rows(append(slices.Clone(a.points), b.points...)),
+			Rows:   data.Places(append(slices.Clone(a.points), b.points...)),
 			Cause:  "temperatures too far apart for the range of frequencies",
 			Remedy: "measure an isotherm between them, or over a wider range of frequencies",
 		}

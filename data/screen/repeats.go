@@ -83,7 +83,7 @@ func repeats(c *data.Campaign) (list []data.Finding) {
 			}
 		}
 		f := data.Finding{
-			Code: "repeats-disagree", Severity: data.Doubt, Test: test, Rows: rows(points[test]),
+			Code: "repeats-disagree", Severity: data.Doubt, Test: test, Rows: data.Places(points[test]),
 			Evidence: fmt.Sprintf("%d of %d pairs of repeated runs disagree; worst: %s", len(found[test]), pairs[test], worst.text),
 			Cause:    "conditioning, mounting or geometry of the specimens, the temperature, or another batch",
 			Remedy:   "say which specimen and mounting each run belongs to; measure once more",

@@ -342,7 +342,7 @@ func TestRows(t *testing.T) {
 		list = append(list, data.Point{File: "b.csv", Row: r})
 	}
 	list = append(list, data.Point{File: "a.csv", Row: 3})
-	if got, want := rows(list), "b.csv:12-14, 40; a.csv:3"; got != want {
+	if got, want := data.Places(list), "b.csv:12-14, 40; a.csv:3"; got != want {
 		t.Errorf("got %q, want %q", got, want)
 	}
 }

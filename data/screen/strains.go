@@ -34,7 +34,7 @@ func strains(c *data.Campaign) (list []data.Finding) {
 			continue
 		}
 		f := data.Finding{
-			Code: "strain-not-constant", Severity: data.Doubt, Test: t.Name, Rows: rows(points),
+			Code: "strain-not-constant", Severity: data.Doubt, Test: t.Name, Rows: data.Places(points),
 			Evidence: fmt.Sprintf("within %d of %d runs the strain amplitude varies, up to a factor %.3g", runs, len(t.Runs), worst),
 			Cause:    "the apparatus held the force, or reached the limit of its force",
 			Remedy:   "hold the displacement; a filled rubber's modulus depends on it",

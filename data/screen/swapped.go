@@ -50,7 +50,7 @@ func swapped(c *data.Campaign) (list []data.Finding) {
 			exchanged = append(exchanged, math.Abs(90-middle-due))
 		}
 		f := data.Finding{
-			Code: "storage-and-loss-swapped", Severity: data.Severe, Test: t.Name, Rows: rows(all),
+			Code: "storage-and-loss-swapped", Severity: data.Severe, Test: t.Name, Rows: data.Places(all),
 			Cause:  "storage and loss modulus stand in each other's columns",
 			Remedy: "name the columns in columns the other way round, if the apparatus's record agrees",
 		}

@@ -37,7 +37,7 @@ func temperatures(c *data.Campaign) (list []data.Finding) {
 			}
 			if len(off) > 0 {
 				f := data.Finding{
-					Code: "temperature-off-nominal", Severity: data.Doubt, Test: t.Name, Rows: rows(off),
+					Code: "temperature-off-nominal", Severity: data.Doubt, Test: t.Name, Rows: data.Places(off),
 					Evidence: fmt.Sprintf("%s: measured up to %.2g K off the nominal temperature", r.Name, worst),
 					Cause:    "the chamber had not settled, or the nominal temperature is a wish",
 					Remedy:   "dwell longer (±1 K; ±2 K at the most), or leave the run out",
@@ -52,7 +52,7 @@ func temperatures(c *data.Campaign) (list []data.Finding) {
 				drift := median(measured[len(measured)-n:]) - median(measured[:n])
 				if math.Abs(drift) > closeTolerance+rounding {
 					list = append(list, data.Finding{
-						Code: "temperature-drifts", Severity: data.Doubt, Test: t.Name, Rows: rows(points),
+						Code: "temperature-drifts", Severity: data.Doubt, Test: t.Name, Rows: data.Places(points),
 						Evidence: fmt.Sprintf("%s: the temperature moves by %+.2g K from the first to the last third", r.Name, drift),
 						Cause:    "the specimen warmed up by its own loss, or had not reached the temperature",
 						Remedy:   "dwell longer, or strain less",

@@ -36,7 +36,7 @@ func units(c *data.Campaign) (list []data.Finding) {
 		}
 		if len(high) > 0 {
 			list = append(list, data.Finding{
-				Code: "modulus-too-high", Severity: data.Severe, Test: t.Name, Rows: rows(high),
+				Code: "modulus-too-high", Severity: data.Severe, Test: t.Name, Rows: data.Places(high),
 				Evidence: fmt.Sprintf("moduli up to %s; no polymer's glass is stiffer than a few GPa", modulus(top)),
 				Cause:    "a wrong unit, Pa read as kPa or MPa for example",
 				Remedy:   "look at the column's unit; state it in columns",
@@ -52,7 +52,7 @@ func units(c *data.Campaign) (list []data.Finding) {
 		}
 		if len(large) > 0 {
 			list = append(list, data.Finding{
-				Code: "strain-too-high", Severity: data.Doubt, Test: t.Name, Rows: rows(large),
+				Code: "strain-too-high", Severity: data.Doubt, Test: t.Name, Rows: data.Places(large),
 				Evidence: fmt.Sprintf("strain amplitudes above 100 %% in %d rows", len(large)),
 				Cause:    "percent read as m/m, or a static strain in the column of the amplitude",
 				Remedy:   "look at the column's unit; state it in columns",

@@ -120,8 +120,9 @@ func newEngine(p *Problem, f *Form) *engine {
 
 func (e *engine) setSigma(s []Sigma) {
 	for i, r := range e.p.Rows {
-		e.wRe[i] = 1 / s[r.Group].Magnitude
-		e.wIm[i] = 1 / s[r.Group].PhaseAt(cmplx.Phase(e.denom[i]))
+		w := math.Sqrt(e.f.weight(i))
+		e.wRe[i] = w / s[r.Group].Magnitude
+		e.wIm[i] = w / s[r.Group].PhaseAt(cmplx.Phase(e.denom[i]))
 	}
 	e.known = false
 }
@@ -163,12 +164,17 @@ func (e *engine) prepare(theta []float64) {
 	for i := range p.Rows {
 		r, s := &p.Rows[i], &e.state[i]
 		s.T = r.T
+		decades := 0.0
 		if o := l.offset[r.Run]; o >= 0 {
-			s.T += theta[o]
+			if p.Runs[r.Run].Decades {
+				decades = theta[o]
+			} else {
+				s.T += theta[o]
+			}
 		}
 		s.a, s.slope = 1, 0
 		if e.law != nil {
-			s.a = math.Exp(thermal.Ln10 * e.law.LogShift(s.T))
+			s.a = math.Exp(thermal.Ln10 * (e.law.LogShift(s.T) + decades))
 			s.slope = e.law.Slope(s.T)
 		}
 		s.b, s.bSlope = 1, 0

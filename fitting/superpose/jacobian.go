@@ -61,7 +61,9 @@ func (e *engine) derivatives() {
 			}
 		}
 		fill := complex(s.fillRe, s.fillIm)
-		if o := l.offset[r.Run]; o >= 0 {
+		if o := l.offset[r.Run]; o >= 0 && e.p.Runs[r.Run].Decades {
+			add(o, byLog)
+		} else if o >= 0 {
 			add(o, byLog*complex(s.slope, 0)+complex(s.bSlope, 0)*poly+complex(s.phiByT, 0)*fill)
 		}
 		whole := complex(s.b, 0)*poly + complex(s.phi, 0)*fill

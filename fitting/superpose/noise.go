@@ -102,18 +102,18 @@ func (s *Solution) Noise() []GroupNoise {
 	n := len(e.osc)
 	phases := make([][]phaseRow, s.Problem.Groups)
 	for j, i := range e.osc {
-		g := s.Problem.Rows[i].Group
+		g, w := s.Problem.Rows[i].Group, s.Form.weight(i)
 		r := s.Misfit(i)
-		squares[g] += real(r) * real(r)
-		out[g].MagnitudeDOF += 1 - h[j]
-		out[g].PhaseDOF += 1 - h[n+j]
-		phases[g] = append(phases[g], phaseRow{imag(r) * imag(r), 1 - h[n+j], sineSquare(cmplx.Phase(e.model(i)))})
+		squares[g] += w * real(r) * real(r)
+		out[g].MagnitudeDOF += w * (1 - h[j])
+		out[g].PhaseDOF += w * (1 - h[n+j])
+		phases[g] = append(phases[g], phaseRow{w * imag(r) * imag(r), w * (1 - h[n+j]), sineSquare(cmplx.Phase(e.model(i)))})
 	}
 	for j, i := range e.rel {
-		g := s.Problem.Rows[i].Group
+		g, w := s.Problem.Rows[i].Group, s.Form.weight(i)
 		r := real(s.Misfit(i))
-		squares[g] += r * r
-		out[g].MagnitudeDOF += 1 - h[2*n+j]
+		squares[g] += w * r * r
+		out[g].MagnitudeDOF += w * (1 - h[2*n+j])
 	}
 	for g := range out {
 		out[g].Sigma = s.Form.Sigma[g]

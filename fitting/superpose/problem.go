@@ -22,6 +22,9 @@ type Row struct {
 // Run is a pass whose temperature error is common to its rows.
 type Run struct {
 	U float64 // standard deviation of its temperature offset, K; 0 holds the offset at zero
+	// Decades makes the offset one of log10 a_T instead, in decades, as that of a
+	// wrong temperature or a wrong frequency: see Loose.
+	Decades bool
 }
 
 // Problem is everything measured, as numbers.
@@ -102,6 +105,7 @@ type Form struct {
 	Lattice    []float64 // τ_k, s, rising
 	Sigma      []Sigma   // per noise group
 	Prior      Prior     // of the spectrum; zero: none
+	Weights    []float64 // per row, by which its squared residual counts; nil: all one
 }
 
 // layout tells where a parameter stands in θ; -1: not there.

@@ -5,6 +5,7 @@ import (
 	"math/cmplx"
 	"math/rand/v2"
 	"sync"
+	"sync/atomic"
 
 	"gonum.org/v1/gonum/stat/distuv"
 
@@ -53,6 +54,7 @@ type KnotMisfit struct {
 	Phase, Relative float64 // rms, rad and relative
 	BeyondPhase     float64 // beyond the floor of all isotherms
 	BeyondRelative  float64
+	F, P            float64 // as those of Separate, for this isotherm alone; P is NaN without draws
 }
 
 // separator fits isotherms one by one; knots[j] lists the rows of a knot.
@@ -82,16 +84,25 @@ func newSeparator(p *Problem, isotherm []bool) *separator {
 }
 
 type separateSums struct {
-	joint, separate float64 // weighted
-	jointM, jointD  []float64
-	sepM, sepD      []float64
-	parameters      int // passive columns of all knots
-	total           int
+	joint, separate   float64   // weighted
+	jointK, separateK []float64 // the same per knot
+	jointM, jointD    []float64
+	sepM, sepD        []float64
+	parameters        int // passive columns of all knots
+	total             int
 }
 
-// statistic is F; rounding may not make it negative.
-func (s separateSums) statistic() float64 {
-	return max(0, (s.joint-s.separate)/s.separate)
+// statistics are F and that of every knot; rounding may not make them negative.
+func (s separateSums) statistics() []float64 {
+	out := []float64{max(0, (s.joint-s.separate)/s.separate)}
+	for k, v := range s.separateK {
+		f := 0.0
+		if v > 0 {
+			f = max(0, (s.jointK[k]-v)/v)
+		}
+		out = append(out, f)
+	}
+	return out
 }
 
 // sums compares one solution; the engine must be settled at it.
@@ -106,6 +117,7 @@ func (z *separator) sums(s *Solution) (out separateSums, ok bool) {
 	nk := len(z.knots)
 	out.jointM, out.jointD = make([]float64, nk), make([]float64, nk)
 	out.sepM, out.sepD = make([]float64, nk), make([]float64, nk)
+	out.jointK, out.separateK = make([]float64, nk), make([]float64, nk)
 	for k, rows := range z.knots {
 		m := 2 * len(rows)
 		if m == 0 {
@@ -142,9 +154,11 @@ func (z *separator) sums(s *Solution) (out separateSums, ok bool) {
 			u, v := b[q]*m, b[len(rows)+q]*w
 			out.sepM[k] += u * u
 			out.sepD[k] += v * v
-			out.separate += b[q]*b[q] + b[len(rows)+q]*b[len(rows)+q]
-			out.joint += real(r)*real(r)/(m*m) + imag(r)*imag(r)/(w*w)
+			out.separateK[k] += b[q]*b[q] + b[len(rows)+q]*b[len(rows)+q]
+			out.jointK[k] += real(r)*real(r)/(m*m) + imag(r)*imag(r)/(w*w)
 		}
+		out.separate += out.separateK[k]
+		out.joint += out.jointK[k]
 		out.total += m
 	}
 	return out, out.separate > 0
@@ -164,7 +178,8 @@ func (s *Solution) Superposition(isotherm []bool, draws int, seed uint64, worker
 	if !ok || len(z.knots) < 2 {
 		return out
 	}
-	out.F = sums.statistic()
+	statistics := sums.statistics()
+	out.F = statistics[0]
 	free := float64(sums.total - sums.parameters)
 	var pts, jm, jd, sm, sd float64
 	for k, rows := range z.knots {
@@ -181,6 +196,7 @@ func (s *Solution) Superposition(isotherm []bool, draws int, seed uint64, worker
 			continue
 		}
 		km := KnotMisfit{T: s.Problem.Knots[k], Points: len(rows), Phase: math.Sqrt(sums.jointD[k] / n), Relative: math.Sqrt(sums.jointM[k] / n)}
+		km.F, km.P = statistics[1+k], math.NaN()
 		km.BeyondPhase = Misfits{km.Phase, out.Phase.Floor}.Beyond()
 		km.BeyondRelative = Misfits{km.Relative, out.Relative.Floor}.Beyond()
 		out.Knots = append(out.Knots, km)
@@ -199,7 +215,15 @@ func (s *Solution) Superposition(isotherm []bool, draws int, seed uint64, worker
 		return out
 	}
 	out.Draws = draws
-	out.P = s.bootstrap(z, out.F, draws, seed, workers)
+	p := s.bootstrap(z, statistics, draws, seed, workers)
+	out.P = p[0]
+	for i := range out.Knots {
+		for k, T := range s.Problem.Knots {
+			if T == out.Knots[i].T {
+				out.Knots[i].P = p[1+k]
+			}
+		}
+	}
 	return out
 }
 
@@ -214,41 +238,51 @@ func (s *Solution) about() {
 	e.sums()
 }
 
-func (s *Solution) bootstrap(z *separator, F float64, draws int, seed uint64, workers int) float64 {
+// bootstrap gives p of every statistic: the share of draws in which it is at least
+// as large, the measurement itself counted.
+func (s *Solution) bootstrap(z *separator, statistics []float64, draws int, seed uint64, workers int) []float64 {
 	model := make([]complex128, len(s.Problem.Rows))
 	for i := range model {
 		model[i] = s.Model(i)
 	}
-	above := make([]bool, draws)
-	var wg sync.WaitGroup
-	next := make(chan int, draws)
-	for r := range draws {
-		next <- r
+	drawn := make([][]float64, draws)
+	parallel(draws, workers, func() func(r int) {
+		own := separator{knots: z.knots, rows: z.rows}
+		return func(r int) { drawn[r] = s.replicate(&own, model, seed, uint64(r)) }
+	})
+	p := make([]float64, len(statistics))
+	for k, f := range statistics {
+		count := 1
+		for _, d := range drawn {
+			if d != nil && d[k] >= f {
+				count++
+			}
+		}
+		p[k] = float64(count) / float64(draws+1)
 	}
-	close(next)
-	for range max(1, workers) {
+	return p
+}
+
+// parallel calls a function of each worker's own for 0, 1, …, n−1.
+func parallel(n, workers int, worker func() func(i int)) {
+	var wg sync.WaitGroup
+	var next atomic.Int64
+	for range max(1, min(workers, n)) {
 		wg.Add(1)
 		go func() {
 			defer wg.Done()
-			own := separator{knots: z.knots, rows: z.rows}
-			for r := range next {
-				above[r] = s.replicate(&own, model, seed, uint64(r)) >= F
+			do := worker()
+			for i := int(next.Add(1)) - 1; i < n; i = int(next.Add(1)) - 1 {
+				do(i)
 			}
 		}()
 	}
 	wg.Wait()
-	count := 1
-	for _, a := range above {
-		if a {
-			count++
-		}
-	}
-	return float64(count) / float64(draws+1)
 }
 
 // replicate draws measurements from the model, fits them both ways and returns
-// F; −Inf where the fit failed.
-func (s *Solution) replicate(z *separator, model []complex128, seed, r uint64) float64 {
+// the statistics; nil where the fit failed.
+func (s *Solution) replicate(z *separator, model []complex128, seed, r uint64) []float64 {
 	rnd := rand.New(rand.NewPCG(seed, r))
 	p := *s.Problem
 	p.Rows = append([]Row(nil), s.Problem.Rows...)
@@ -267,11 +301,11 @@ func (s *Solution) replicate(z *separator, model []complex128, seed, r uint64) f
 	copy(e.passive, s.e.passive)
 	fit, err := e.run(s.Theta)
 	if err != nil {
-		return math.Inf(-1)
+		return nil
 	}
 	sums, ok := z.sums(fit)
 	if !ok {
-		return math.Inf(-1)
+		return nil
 	}
-	return sums.statistic()
+	return sums.statistics()
 }

@@ -81,7 +81,7 @@ func Fit(p *Problem, f Form, s Start) (*Solution, error) {
 // Rival fits another form to the same problem on the lattice, the noise and
 // the denominators of this solution, so that their likelihoods compare.
 func (s *Solution) Rival(f Form, start Start) (*Solution, error) {
-	f.Lattice, f.Sigma = s.Form.Lattice, s.Form.Sigma
+	f.Lattice, f.Sigma, f.Weights = s.Form.Lattice, s.Form.Sigma, s.Form.Weights
 	e := newEngine(s.Problem, &f)
 	copy(e.denom, s.e.denom)
 	e.setSigma(f.Sigma)

@@ -1,17 +1,15 @@
-package screen
+package data
 
 import (
 	"fmt"
 	"slices"
 	"strings"
-
-	"phaselag/data"
 )
 
-// rows names the rows of points for people, file by file in the order of first
+// Places names the rows of points for people, file by file in the order of first
 // appearance: "isotherms.csv:12-18, 40; other.csv:3". Neighbouring lines of the
 // file are drawn together.
-func rows(points []data.Point) string {
+func Places(points []Point) string {
 	var files []string
 	lines := map[string][]int{}
 	for _, p := range points {
