@@ -109,13 +109,18 @@ func faults() []fault {
 			var names []string
 			for _, r := range isothermsOf(c) {
 				for k := range r.Points {
-					if rnd.Float64() >= 0.02 {
+					if rnd.Float64() >= 0.02 || !r.Points[k].Used {
 						continue
 					}
 					p := &r.Points[k]
 					g := complex(p.Storage, p.Loss)
 					if rnd.IntN(2) == 0 {
-						g *= cmplx.Rect(1, 5*math.Pi/180)
+						// Away from 90°, beyond which no reader would take it.
+						turn := 5 * math.Pi / 180
+						if cmplx.Phase(g) > math.Pi/4 {
+							turn = -turn
+						}
+						g *= cmplx.Rect(1, turn)
 					} else {
 						g *= 1.15
 					}
