@@ -71,3 +71,34 @@ func BenchmarkSize(b *testing.B) {
 		}
 	}
 }
+
+// BenchmarkReplicates is a bootstrap of 1000 drawn campaigns of 13 × 21 points on
+// two workers; it fails where their scatter is not that of the covariance.
+func BenchmarkReplicates(b *testing.B) {
+	p, f, start, _ := joint(0, 0, WLF)
+	s, err := Fit(p, f, start)
+	if err != nil {
+		b.Fatal(err)
+	}
+	if s, _, err = s.Refine(4); err != nil {
+		b.Fatal(err)
+	}
+	if s, err = s.Smooth(1e-3, 1e6); err != nil {
+		b.Fatal(err)
+	}
+	u := s.Covariance().Theta(s.e.l.law).Deviation()
+	for b.Loop() {
+		var sum, squares, n float64
+		for _, v := range s.Replicates(1000, Common{}, 1, 2, func(s *Solution) []float64 { return s.Theta[:1] }, nil) {
+			if v != nil {
+				n++
+				sum += v[0]
+				squares += v[0] * v[0]
+			}
+		}
+		sd := math.Sqrt(squares/n - sum*sum/(n*n))
+		if n < 990 || sd < 0.9*u || sd > 1.1*u {
+			b.Fatalf("%g of 1000 fitted; C1 scatters by %g, the covariance says %g", n, sd, u)
+		}
+	}
+}

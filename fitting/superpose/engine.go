@@ -46,6 +46,8 @@ type engine struct {
 	solver nnls.Solver
 	idx    []int // passive columns
 	slope  slopes
+	held   int     // a nonlinear parameter that does not move; −1: none
+	heldAt float64 // where it is
 	front  qr.Front
 }
 
@@ -68,7 +70,7 @@ type rowState struct {
 }
 
 func newEngine(p *Problem, f *Form) *engine {
-	e := &engine{p: p, f: f, l: p.layout(f)}
+	e := &engine{p: p, f: f, l: p.layout(f), held: -1}
 	e.place, e.rowsOf = make([]int, len(p.Rows)), make([][]int, len(p.Runs))
 	for i, r := range p.Rows {
 		if r.Relaxation {

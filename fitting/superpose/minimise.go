@@ -26,6 +26,9 @@ var settings = lsq.Settings{FunctionTol: 1e-10, StepTol: 1e-9, MaxEvaluations: 4
 // minimise runs the trust-region solver over θ from x0.
 func (e *engine) minimise(x0 []float64) (found, error) {
 	lower, upper := e.p.bounds(e.f, &e.l)
+	if e.held >= 0 {
+		lower[e.held], upper[e.held] = e.heldAt, e.heldAt
+	}
 	call := func(ok bool) error {
 		if !ok {
 			return errOutside
