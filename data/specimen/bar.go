@@ -1,8 +1,6 @@
 package specimen
 
-import (
-	"math"
-)
+import "math"
 
 // Bar is a bar of rectangular section a × b, a ≥ b, twisted about its axis with
 // its ends free to warp (Saint-Venant).
@@ -18,7 +16,7 @@ import (
 //
 //	φ = b²/4 − y² − Σ (±)(8b²/n³π³)·cosh(nπx/b)/cosh(nπa/2b)·cos(nπy/b)
 //
-// and γ_eq = (θ/L)·J/∫|∇φ|dA, since ∫|∇φ|²dA = J; from a quarter of the section.
+// and γ_eq follows from a quarter of the section.
 type Bar struct {
 	Length    float64 // m, free length between the clamps
 	Width     float64 // m
@@ -95,19 +93,21 @@ func (b Bar) strain() float64 {
 			sin[i][k], cos[i][k] = a*s, a*c
 		}
 	}
-	mean := 0.0 // of |∇φ|/b
+	var mean, energy float64
 	for i := range x {
 		for j, v := range x {
-			dx, dy := 0.0, -v
+			dx, dy := 0.0, -v // ∇φ/b
 			for k := range terms {
 				dx -= sinh[i][k] * cos[j][k]
 				dy += cosh[i][k] * sin[j][k]
 			}
-			mean += math.Hypot(dx, dy) * w[i] * w[j]
+			square := dx*dx + dy*dy
+			e := square * w[i] * w[j]
+			energy += e
+			mean += e * math.Log(square) / 2
 		}
 	}
-	beta, _ := bar(rho)
-	return beta * thin / mean / b.Length
+	return math.Exp(mean/energy) * thin / b.Length
 }
 
 // Rotates returns true.

@@ -36,7 +36,7 @@ func CowperShear(nu float64) float64 { return 10 * (1 + nu) / (12 + 11*nu) }
 //	γ² = [P·z·y/(√(2(1+ν))·GI)]² + [3P/(2GA)·(1 − 4y²/h²)]²
 //
 // of which γ_eq is taken over arm and section. A slender beam has γ_eq =
-// (4/9)·√(2(1+ν))·ε_max, ε_max = 3hx/L², 3hx/L² and 6hx/L².
+// e^(−2/3)·√(2(1+ν))·ε_max, ε_max = 3hx/L², 3hx/L² and 6hx/L².
 //
 // Clamps are taken as perfect, and the width as free to contract.
 type Beam struct {

@@ -5,10 +5,10 @@ import "math"
 // Cylinder is a solid or hollow cylinder twisted about its axis between ends
 // that turn as rigid plates.
 //
-//	K* = πG*(R⁴−r⁴)/(2L),      γ_eq = (θ/L)·¾(R⁴−r⁴)/(R³−r³)
+//	K* = πG*(R⁴−r⁴)/(2L),      γ_eq = (θ/L)·R·e^(−1/4)·q^(−q⁴/(1−q⁴)),   q = r/R
 //
 // in N·m/rad; exact for any length, since a circular section does not warp. The
-// strain is that at ¾ of the radius of a solid cylinder.
+// strain is that at 0.779 of the radius of a solid cylinder.
 type Cylinder struct {
 	Length        float64 // m, between the ends
 	Diameter      float64 // m
@@ -32,13 +32,17 @@ func (c Cylinder) Validate() error {
 	return f.scale(l.c, l.strain)
 }
 
-// linear divides by the radius first, so that thin walls lose no digits:
-// (1−q⁴) = (1−q)(1+q)(1+q²) and (1−q³) = (1−q)(1+q+q²) with q = r/R.
+// linear writes 1−q⁴ as (1−q)(1+q)(1+q²), so that thin walls lose no digits.
 func (c Cylinder) linear() linear {
 	radius, q := c.Diameter/2, c.InnerDiameter/c.Diameter
+	rest := (1 - q) * (1 + q) * (1 + q*q)
+	mean := -0.25 // of ln(r/R), weighted by r³
+	if q > 0 {
+		mean -= q * q * q * q * math.Log(q) / rest
+	}
 	return linear{
-		math.Pi / 2 * radius * radius * radius * radius * (1 - q) * (1 + q) * (1 + q*q) / c.Length,
-		0.75 * radius * (1 + q) * (1 + q*q) / (1 + q + q*q) / c.Length,
+		math.Pi / 2 * radius * radius * radius * radius * rest / c.Length,
+		radius * math.Exp(mean) / c.Length,
 	}
 }
 

@@ -27,16 +27,22 @@
 //	                                    tension, lubricated     γ_eq = √(2(1+ν))·ε   (√3·ε)
 //	                                    bonded compression      γ_eq = √(E_c/G)·ε    (no bulk part)
 //
-// Where it is not uniform (torsion, bending), the local strain γ with
-// ½Gγ² = local energy density is averaged over the volume,
+// Where it is not uniform (torsion, bending), the logarithm of the local strain
+// γ, ½Gγ² = local energy density, is averaged over the volume with the energy as
+// weight,
 //
-//	γ_eq = ∫γ² dV / ∫γ dV,
+//	ln γ_eq = ∫γ² ln γ dV / ∫γ² dV.
 //
-// which is 1/γ_eq = the mean of 1/γ weighted by energy. With it the stiffness is
-// exact for a modulus that falls like 1/γ (and for one that is constant). It is
-// exactly ¾ of the strain at the rim of a twisted solid cylinder, 2/3·2/3 of the
-// greatest strain of a slender bent bar. Derived, this program's own rule: to be
-// printed as an assumption wherever the deformation is not shear.
+// The piece shows the energy-weighted mean of the local modulus; a modulus that
+// is a straight line over ln γ has exactly that mean at γ_eq. This is
+// e^(−1/4) = 0.779 of the strain at the rim of a twisted solid cylinder (the
+// trade's ¾ is the mean of 1/γ in place of ln γ) and e^(−2/3) = 0.513 of the
+// greatest strain of a slender bent bar. For Kraus' law with exponents m of 0.4
+// to 0.7 and a ΔG up to the rest of the modulus, the worst error over all
+// amplitudes is 0.5 % of G' and 1.1 % of G” in torsion, 1.5 % and 3.4 % in
+// bending; the mean of 1/γ would give 1.0, 1.8, 3.8 and 6.5 %. Derived, this
+// program's own rule: to be printed as an assumption wherever the deformation is
+// not shear.
 //
 // # Standards
 //

@@ -5,10 +5,10 @@ import "math"
 // Plates is a disc that sticks to two parallel plates, one of which oscillates
 // about the axis.
 //
-//	K* = πG*R⁴/(2h),      γ_eq = ¾·θR/h
+//	K* = πG*R⁴/(2h),      γ_eq = e^(−1/4)·θR/h
 //
-// in N·m/rad. Rotational instruments mostly state the strain at the rim, θR/h: a
-// third more than this one.
+// in N·m/rad. Rotational instruments mostly state the strain at the rim, θR/h: 28 %
+// more than this one.
 type Plates struct {
 	Diameter float64 // m, of the disc
 	Gap      float64 // m, h
@@ -30,7 +30,7 @@ func (p Plates) Validate() error {
 
 func (p Plates) linear() linear {
 	radius := p.Diameter / 2
-	return linear{math.Pi / 2 * radius * radius * radius * radius / p.Gap, 0.75 * radius / p.Gap}
+	return linear{math.Pi / 2 * radius * radius * radius * radius / p.Gap, math.Exp(-0.25) * radius / p.Gap}
 }
 
 // Rotates returns true.
