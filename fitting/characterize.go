@@ -15,6 +15,12 @@ type Settings struct {
 	// Replicates of the bootstrap test of superposition. Default 0: 199.
 	// Negative: none, the F test alone.
 	Replicates int
+	// Bootstrap is the number of campaigns that are drawn from the fitted compound
+	// to check the intervals. Default 0: none.
+	Bootstrap int
+	// Progress is called after each draw of Bootstrap, from several goroutines at
+	// once; nil for nobody.
+	Progress func()
 	// Workers that share the replicates. Default 0: one a processor. The
 	// answer does not depend on it.
 	Workers int
@@ -153,7 +159,7 @@ func (a *answer) giveUp(err error) {
 		"look at the other findings and at the isotherms; the moduli as measured are reported, and no compound model is made")
 	a.final, a.free, a.freeUp = nil, nil, nil
 	a.laws, a.vertical, a.amplitude = nil, nil, nil
-	a.separate = superpose.Separate{}
+	a.separate, a.causality = superpose.Separate{}, nil
 }
 
 // answer gathers the fits.
@@ -173,6 +179,7 @@ type answer struct {
 	separate    superpose.Separate
 	freeUp      *superpose.Solution // with free vertical shifts, where superposition fails
 	freeUpPhase float64
+	causality   []Causality
 }
 
 func (a *answer) fit() error {
@@ -213,6 +220,7 @@ func (a *answer) fit() error {
 	if err := a.settleScatter(); err != nil {
 		return err
 	}
+	a.judgeCausality()
 	return a.judge()
 }
 

@@ -219,7 +219,7 @@ func (a *answer) chooseVertical() error {
 		a.vertical = append(a.vertical, rival{name: wish, s: s})
 		a.find("vertical-shift-not-physical", data.Doubt, "",
 			fmt.Sprintf("%s vertical shifts were asked for", wish),
-			"on a stretch where the modulus is a power of frequency, vertical and horizontal shifts cannot be told apart",
+			a.degenerate(),
 			"do not read the vertical factors as a property; use none or density")
 		return choose(s, wish)
 	}

@@ -55,7 +55,7 @@ func (a *answer) judge() error {
 			span, u := a.freeSpan()
 			a.find("vertical-shift-not-physical", data.Note, "",
 				fmt.Sprintf("free vertical shifts would lower the phase misfit from %.2g° to %.2g° rms with factors that span %.2g decades (largest standard uncertainty %.2g decades)", deg(a.separate.Phase.Joint), deg(a.freeUpPhase), span, u),
-				"along a stretch where the modulus is a power of frequency, vertical and horizontal shifts cannot be told apart; no density or entropy effect is that large",
+				a.degenerate()+"; no density or entropy effect is that large",
 				"not used; asked for with `analysis: {vertical_shift: free}`")
 		}
 	case models.HoldsUndecided:
@@ -136,6 +136,15 @@ func (a *answer) tryFreeVertical() {
 		}
 	}
 	a.freeUpPhase = math.Sqrt(sum / float64(max(n, 1)))
+}
+
+// degenerate says why free vertical shifts are no property.
+func (a *answer) degenerate() string {
+	text := "along a stretch where the modulus is a power of frequency, vertical and horizontal shifts cannot be told apart"
+	if lo, hi, n := a.powerStretch(); hi > lo {
+		text += fmt.Sprintf(": here from %.2g to %.2g Hz reduced, where |%s*| rises nearly as f^%.2f over %.1f decades", lo, hi, a.symbol(), n, math.Log10(hi/lo))
+	}
+	return text
 }
 
 // freeSpan is the span of log10 b_T of the free vertical shifts and the largest

@@ -110,6 +110,8 @@ func (r *Result) noNil() {
 	empty(&r.Runs)
 	empty(&r.Noise)
 	empty(&r.Isotherms)
+	empty(&r.Causality)
+	empty(&r.Bootstrap.Rows)
 	empty(&r.Fixed)
 	empty(&r.Points)
 	empty(&r.Findings)
@@ -177,7 +179,7 @@ func (a *answer) fill(r *Result) {
 	r.Amplitude = candidates(a.amplitude)
 
 	param := func(name, u string, value, dev, limit float64) {
-		p := Parameter{Name: name, Unit: u, Value: number(value), U: number(dev), U95: number(t95 * dev), Determined: dev <= limit}
+		p := Parameter{Name: name, Unit: u, Value: number(value), U: number(dev), U95: number(t95 * dev), Low: unit.NaN(), High: unit.NaN(), Determined: dev <= limit}
 		r.Parameters = append(r.Parameters, p)
 	}
 	idx := s.Indices()
@@ -189,7 +191,9 @@ func (a *answer) fill(r *Result) {
 			common = 0
 		}
 		param("C1", "", c1, math.Hypot(cov.Theta(idx.Law).Deviation(), c1/c2*common), math.Abs(c1)/2)
+		a.profile(r, idx.Law, cov.Theta(idx.Law).Deviation(), c1/c2*common, t95)
 		param("C2", "K", c2, math.Hypot(cov.Theta(idx.Law+1).Deviation(), common), math.Abs(c2)/2)
+		a.profile(r, idx.Law+1, cov.Theta(idx.Law+1).Deviation(), common, t95)
 	case superpose.Arrhenius:
 		e := s.Theta[idx.Law]
 		// A common error δ of all temperatures changes E_a by −2δ/T of itself.
@@ -255,14 +259,31 @@ func (a *answer) fill(r *Result) {
 		for _, k := range sep.Knots {
 			r.Isotherms = append(r.Isotherms, IsothermMisfit{
 				TemperatureC: number(degreesC(k.T)), Points: k.Points, PhaseDeg: number(deg(k.Phase)), Percent: number(100 * k.Relative),
-				BeyondDeg: number(deg(k.BeyondPhase)), BeyondPercent: number(100 * k.BeyondRelative),
+				BeyondDeg: number(deg(k.BeyondPhase)), BeyondPercent: number(100 * k.BeyondRelative), P: number(k.P),
 			})
 		}
 	}
+	r.Causality = a.causality
+	a.bootstrap(r)
 	if a.freeUp != nil {
 		span, u := a.freeSpan()
 		r.Common.FreeVertical, r.Common.FreeVerticalU = number(span), number(u)
 		r.Common.FreeVerticalFit = number(deg(a.freeUpPhase))
+	}
+}
+
+// profile gives the last parameter of the result, θ_i, its interval by profile
+// likelihood. common is what the calibration of temperature adds to it, a
+// standard uncertainty; it widens both halves in quadrature.
+func (a *answer) profile(r *Result, i int, u, common, t95 float64) {
+	p := &r.Parameters[len(r.Parameters)-1]
+	low, high := a.final.Profile(i, u, t95*t95)
+	value := a.final.Theta[i]
+	if !math.IsInf(low, 0) {
+		p.Low = number(value - math.Hypot(value-low, t95*common))
+	}
+	if !math.IsInf(high, 0) {
+		p.High = number(value + math.Hypot(high-value, t95*common))
 	}
 }
 

@@ -30,6 +30,8 @@ type Result struct {
 	Noise       []Noise            `json:"noise"`
 	Isotherms   []IsothermMisfit   `json:"superposition_misfit"`
 	Common      Misfit             `json:"common_curve_misfit"`
+	Causality   []Causality        `json:"causality"`
+	Bootstrap   Bootstrap          `json:"bootstrap"`
 	Fixed       []FixedFrequency   `json:"fixed_frequency"`
 	Points      []Point            `json:"points"`
 	Findings    []data.Finding     `json:"findings"`
@@ -121,6 +123,10 @@ type Parameter struct {
 	Value unit.Number `json:"value"`
 	U     unit.Number `json:"u"`
 	U95   unit.Number `json:"U95"`
+	// Low and High bound the 95 % interval by profile likelihood, with the common
+	// error of temperature; null where it was not made or is open.
+	Low  unit.Number `json:"profile_low"`
+	High unit.Number `json:"profile_high"`
 	// Determined is false where the data cannot tell the constant.
 	Determined bool `json:"determined"`
 }
@@ -178,6 +184,9 @@ type IsothermMisfit struct {
 	Percent       unit.Number `json:"magnitude_percent"`
 	BeyondDeg     unit.Number `json:"beyond_noise_deg"`
 	BeyondPercent unit.Number `json:"beyond_noise_percent"`
+	// P is the probability of such a misfit at this temperature by chance, from the
+	// draws; null where none were needed.
+	P unit.Number `json:"p"`
 }
 
 // FixedFrequency is what was measured at one temperature and one frequency:

@@ -59,7 +59,7 @@ func Datasheet(r *fitting.Result, date time.Time) figure.Document {
 		d.Sections = append(d.Sections, figure.Section{Heading: "Temperature dependence", Blocks: blocks})
 	}
 	var pictures []figure.Block
-	for _, n := range []string{"isotherms", "master-curve", "shift-factors", "wicket", "strain-dependence", "relaxation"} {
+	for _, n := range []string{"isotherms", "master-curve", "shift-factors", "wicket", "phase-against-modulus", "strain-dependence", "relaxation"} {
 		pictures = append(pictures, picture(n)...)
 	}
 	if len(pictures) > 0 {
@@ -67,6 +67,9 @@ func Datasheet(r *fitting.Result, date time.Time) figure.Document {
 	}
 	if len(r.Shifts) > 0 {
 		d.Sections = append(d.Sections, figure.Section{Heading: "Shift factors", Blocks: shiftBlocks(r)})
+	}
+	if list := NotDetermined(r); len(list) > 0 {
+		d.Sections = append(d.Sections, figure.Section{Heading: "What the measurements do not tell", Blocks: []figure.Block{figure.List{Items: list}}})
 	}
 	d.Sections = append(d.Sections,
 		figure.Section{Heading: "Findings", Blocks: findingBlocks(r.Findings)},
@@ -91,6 +94,9 @@ func lead(r *fitting.Result) []figure.Block {
 		if len(r.Isotherms) > 0 {
 			blocks = append(blocks, figure.Paragraph{Lead: "Superposition.", Text: verdictText(r)})
 		}
+	}
+	if lead, text := causalityText(r); lead != "" {
+		blocks = append(blocks, figure.Paragraph{Lead: lead, Text: text})
 	}
 	return blocks
 }
@@ -252,10 +258,10 @@ func typographic(s string) string {
 func constants(r *fitting.Result) figure.Section {
 	var blocks []figure.Block
 	if len(r.Parameters) > 0 {
-		g := figure.Grid{Caption: "Constants of the compound model at the reference temperature", Columns: []figure.GridColumn{{Heading: "Constant"}, {Heading: "Value"}, {Heading: "± 95 %"}, {Heading: "Unit"}}}
+		g := figure.Grid{Caption: "Constants of the compound model at the reference temperature", Columns: []figure.GridColumn{{Heading: "Constant"}, {Heading: "Value"}, {Heading: "± 95 %"}, {Heading: "95 % by profile likelihood", Number: true}, {Heading: "Unit"}}}
 		values := Parameters(r).Strings()
 		for i, p := range r.Parameters {
-			row := []string{p.Name, figure.Readable(values[i][1]), figure.Readable(values[i][2]), p.Unit}
+			row := []string{p.Name, figure.Readable(values[i][1]), figure.Readable(values[i][2]), intervalText(p), p.Unit}
 			if !p.Determined {
 				row[2] = "not determined"
 			}
@@ -263,6 +269,7 @@ func constants(r *fitting.Result) figure.Section {
 		}
 		blocks = append(blocks, g)
 	}
+	blocks = append(blocks, intervalBlocks(r)...)
 	if len(r.Constants) > 0 {
 		g := figure.Grid{Caption: "Constants of WLF re-expressed at other reference temperatures", Columns: []figure.GridColumn{{Heading: "Reference", Unit: "°C", Number: true}, {Heading: "C_{1}"}, {Heading: "C_{2}", Unit: "K"}, {Heading: "Correlation", Number: true}}}
 		for _, c := range r.Constants {

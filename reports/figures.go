@@ -71,7 +71,7 @@ func figures(r *fitting.Result) []namedFigure {
 	s := r.Campaign.Symbol()
 	sets := isotherms(r)
 	if len(sets) > 0 && len(r.Shifts)+len(sets) > 0 && manyFrequencies(sets) {
-		out = append(out, isothermFigure(s, sets), wicketFigure(s, sets))
+		out = append(out, isothermFigure(s, sets), wicketFigure(s, sets), phaseFigure(s, sets))
 	}
 	if r.Compound != nil && len(sets) > 0 {
 		out = append(out, masterFigure(r, sets))
@@ -127,6 +127,19 @@ func wicketFigure(s string, sets []isothermSet) namedFigure {
 		p.Series = append(p.Series, figure.Series{Name: degreesLabel(v.T), X: xs, Y: ys, Glyph: figure.PickGlyph(i), Colour: figure.Ramp(i, len(sets))})
 	}
 	return namedFigure{"wicket", "Wicket plot: with neither frequency nor temperature on the axes, the isotherms of a thermorheologically simple material fall on one curve without any shift.", figure.Figure{Width: 160, Height: 80, Panels: []figure.Panel{p}}}
+}
+
+// phaseFigure is the plot of van Gurp and Palmen (Rheol. Bull. 67 (1998) 5; from
+// memory): a need for vertical shifts shows as a shift sideways.
+func phaseFigure(s string, sets []isothermSet) namedFigure {
+	p := figure.Panel{X: figure.Auto("magnitude |"+s+"*| (MPa)", true), Y: figure.Auto("loss angle δ (°)", false), Legend: figure.Outside}
+	for i, v := range sets {
+		xs, ys := xy(v.points, pMagnitude, func(p fitting.Point) float64 {
+			return math.Atan2(float64(p.Loss), float64(p.Storage)) * 180 / math.Pi
+		})
+		p.Series = append(p.Series, figure.Series{Name: degreesLabel(v.T), X: xs, Y: ys, Glyph: figure.PickGlyph(i), Colour: figure.Ramp(i, len(sets))})
+	}
+	return namedFigure{"phase-against-modulus", "Loss angle against magnitude (van Gurp and Palmen): as in the wicket plot no shift is needed; isotherms that part sideways would need a vertical shift.", figure.Figure{Width: 160, Height: 80, Panels: []figure.Panel{p}}}
 }
 
 // curveDecade is how many points a decade a curve has.

@@ -91,10 +91,10 @@ func FixedFrequency(r *fitting.Result) table.Table {
 // Parameters lists the constants of the compound.
 func Parameters(r *fitting.Result) table.Table {
 	t := table.Table{Name: "constants 1", Columns: []table.Column{
-		{Key: "constant"}, {Key: "value", Interval: "U95"}, {Key: "U95"}, {Key: "u"}, {Key: "unit"}, {Key: "determined"},
+		{Key: "constant"}, {Key: "value", Interval: "U95"}, {Key: "U95"}, {Key: "u"}, {Key: "profile_low"}, {Key: "profile_high"}, {Key: "unit"}, {Key: "determined"},
 	}}
 	for _, p := range r.Parameters {
-		t.Rows = append(t.Rows, []table.Cell{table.Text(p.Name), num(p.Value), num(p.U95), num(p.U), table.Text(p.Unit), yesNo(p.Determined)})
+		t.Rows = append(t.Rows, []table.Cell{table.Text(p.Name), num(p.Value), num(p.U95), num(p.U), num(p.Low), num(p.High), table.Text(p.Unit), yesNo(p.Determined)})
 	}
 	return t
 }
@@ -118,10 +118,10 @@ func Candidates(r *fitting.Result) table.Table {
 // Misfits lists the misfit of the common curve per isotherm.
 func Misfits(r *fitting.Result) table.Table {
 	t := table.Table{Name: "superposition-misfit 1", Columns: []table.Column{
-		{Key: "temperature_C"}, {Key: "points"}, {Key: "phase_deg"}, {Key: "magnitude_percent"}, {Key: "beyond_noise_deg"}, {Key: "beyond_noise_percent"},
+		{Key: "temperature_C"}, {Key: "points"}, {Key: "phase_deg"}, {Key: "magnitude_percent"}, {Key: "beyond_noise_deg"}, {Key: "beyond_noise_percent"}, {Key: "p"},
 	}}
 	for _, v := range r.Isotherms {
-		t.Rows = append(t.Rows, []table.Cell{num(v.TemperatureC), table.Number(float64(v.Points)), num(v.PhaseDeg), num(v.Percent), num(v.BeyondDeg), num(v.BeyondPercent)})
+		t.Rows = append(t.Rows, []table.Cell{num(v.TemperatureC), table.Number(float64(v.Points)), num(v.PhaseDeg), num(v.Percent), num(v.BeyondDeg), num(v.BeyondPercent), num(v.P)})
 	}
 	return t
 }
@@ -164,6 +164,12 @@ func csvFiles(r *fitting.Result) ([]file, error) {
 	}
 	if len(r.Isotherms) > 0 {
 		list = append(list, named{"superposition-misfit", Misfits(r)})
+	}
+	if len(r.Causality) > 0 {
+		list = append(list, named{"causality", CausalityTable(r)})
+	}
+	if len(r.Bootstrap.Rows) > 0 {
+		list = append(list, named{"bootstrap", BootstrapTable(r)})
 	}
 	for _, v := range list {
 		if err := add(v.name, v.t); err != nil {

@@ -110,9 +110,7 @@ func (s *Solution) draw(common Common, seed, r uint64) *Solution {
 // temperature in K and a strain amplitude (m/m), without the errors of specimens,
 // runs and phase. Vertical factors other than those of density are left out.
 func (s *Solution) Value(f, T, strain float64) complex128 {
-	a := math.Pow(10, s.LogShift(T))
-	spectrum := linear.Spectrum{Equilibrium: s.Equilibrium, Times: s.Form.Lattice, Moduli: s.Branches}
-	g := spectrum.Modulus(2 * math.Pi * f * a)
+	g := s.Polymer(f * math.Pow(10, s.LogShift(T)))
 	if s.Form.Vertical == Density {
 		g *= complex(thermal.Density{Expansion: s.Form.Expansion, Reference: s.Problem.Reference}.Factor(T), 0)
 	}
@@ -124,4 +122,10 @@ func (s *Solution) Value(f, T, strain float64) complex128 {
 	phi := math.Exp(s.Activation() * 1e3 / thermal.GasConstant * (1/T - 1/s.Problem.Reference))
 	part := amplitude.FrequencyPart(s.Form.Kappa, f, s.Problem.F0)
 	return g + complex(phi*(s.FillerStorage*k1+s.FillerLoss*k2*part), phi*s.FillerLoss*k2)
+}
+
+// Polymer is the fitted polymer term at the reference temperature, Pa, at a
+// reduced frequency in Hz.
+func (s *Solution) Polymer(f float64) complex128 {
+	return linear.Spectrum{Equilibrium: s.Equilibrium, Times: s.Form.Lattice, Moduli: s.Branches}.Modulus(2 * math.Pi * f)
 }

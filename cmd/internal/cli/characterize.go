@@ -17,6 +17,7 @@ type characterizeOptions struct {
 	inputs     []string
 	out        string
 	replicates int
+	bootstrap  int
 }
 
 func (a *app) characterizeCmd() *cobra.Command {
@@ -34,6 +35,7 @@ func (a *app) characterizeCmd() *cobra.Command {
 	}
 	cmd.Flags().StringVar(&o.out, "out", "", "directory of the result (default: the campaign's stem with -result)")
 	cmd.Flags().IntVar(&o.replicates, "replicates", 199, "draws of the bootstrap test of superposition; 0 for the F test alone")
+	cmd.Flags().IntVar(&o.bootstrap, "bootstrap", 0, "campaigns to draw from the fitted compound to check the intervals, for example 1000")
 	return cmd
 }
 
@@ -53,6 +55,11 @@ func (a *app) characterize(o characterizeOptions) error {
 	settings := &fitting.Settings{Replicates: o.replicates}
 	if o.replicates <= 0 {
 		settings.Replicates = -1
+	}
+	if o.bootstrap > 0 {
+		bar := a.progress("drawing campaigns", o.bootstrap)
+		defer bar.end()
+		settings.Bootstrap, settings.Progress = o.bootstrap, bar.step
 	}
 	result, err := fitting.Characterize(campaign, settings)
 	if err != nil {
