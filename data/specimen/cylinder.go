@@ -72,7 +72,7 @@ func (c Cylinder) Sensitivity(complex128) []Dimension {
 	return list
 }
 
-// Checks doubts thin walls and slender pieces.
+// Checks doubts thin walls.
 func (c Cylinder) Checks() []Check {
 	list := metres(c.Sensitivity(0))
 	if q := c.InnerDiameter / c.Diameter; q > 0.9 {

@@ -10,8 +10,8 @@ import "math"
 // in N·m/rad. Rotational instruments mostly state the strain at the rim, θR/h: 28 %
 // more than this one.
 type Plates struct {
-	Diameter float64 // m, of the disc
-	Gap      float64 // m, h
+	Diameter  float64 // m, of the disc
+	Thickness float64 // m, h: the gap between the plates
 }
 
 var _ Shape = Plates{}
@@ -23,14 +23,14 @@ func (p Plates) Name() string { return "parallel plates" }
 func (p Plates) Validate() error {
 	f := faults{shape: p.Name()}
 	f.length(diameter, p.Diameter)
-	f.length(gap, p.Gap)
+	f.length(thickness, p.Thickness)
 	l := p.linear()
 	return f.scale(l.c, l.strain)
 }
 
 func (p Plates) linear() linear {
 	radius := p.Diameter / 2
-	return linear{math.Pi / 2 * radius * radius * radius * radius / p.Gap, math.Exp(-0.25) * radius / p.Gap}
+	return linear{math.Pi / 2 * radius * radius * radius * radius / p.Thickness, math.Exp(-0.25) * radius / p.Thickness}
 }
 
 // Rotates returns true.
@@ -50,14 +50,14 @@ func (p Plates) Displacement(strain float64) float64 { return strain / p.linear(
 
 // Sensitivity lists diameter and gap.
 func (p Plates) Sensitivity(complex128) []Dimension {
-	return []Dimension{{diameter, p.Diameter, "m", -4}, {gap, p.Gap, "m", 1}}
+	return []Dimension{{diameter, p.Diameter, "m", -4}, {thickness, p.Thickness, "m", 1}}
 }
 
 // Checks wants a flat disc.
 func (p Plates) Checks() []Check {
 	list := metres(p.Sensitivity(0))
-	if r := p.Diameter / p.Gap; r < 4 {
-		list = append(list, Check{"diameter over gap", r, "at least 4, or a thick disc tilts and bulges under its clamping force", commonPractice, Note})
+	if r := p.Diameter / p.Thickness; r < 4 {
+		list = append(list, Check{"diameter over thickness", r, "at least 4, or a thick disc tilts and bulges under its clamping force", commonPractice, Note})
 	}
 	return list
 }

@@ -63,7 +63,6 @@ const (
 	width         = "width"
 	diameter      = "diameter"
 	innerDiameter = "inner diameter"
-	gap           = "gap"
 	poisson       = "Poisson ratio"
 	coefficient   = "compression coefficient"
 	bulk          = "bulk modulus"

@@ -177,7 +177,7 @@ func set(s *Shape, name string, v float64) {
 		*map[string]*float64{length: &c.Length, diameter: &c.Diameter, innerDiameter: &c.InnerDiameter}[name] = v
 		*s = c
 	case Plates:
-		*map[string]*float64{diameter: &c.Diameter, gap: &c.Gap}[name] = v
+		*map[string]*float64{diameter: &c.Diameter, thickness: &c.Thickness}[name] = v
 		*s = c
 	case Beam:
 		*map[string]*float64{length: &c.Length, width: &c.Width, thickness: &c.Thickness, poisson: &c.Poisson, shearFactor: &c.Shear}[name] = v
