@@ -169,7 +169,8 @@ type Analysis struct {
 	ShiftLaw             string  // "auto", "WLF", "Arrhenius", "WLF+Arrhenius", "none"
 	VerticalShift        string  // "auto", "none", "density", "bounded", "free"
 	Expansion            float64 // volume expansion for the density law, 1/K; NaN: assumed
-	AmplitudeLaw         string  // "auto", "kraus", "none"
+	AmplitudeLaw         string  // "auto", "kraus", "kraus_extra_loss", "maier_goritz", "none"
+	AmplitudeCoupling    string  // "auto", "overlay", "scaling"
 	FillerFrequency      string  // "auto", "causal", "rate_independent"
 }
 

@@ -77,13 +77,14 @@ func (t *tree) specimens(m mapping, c *Campaign) {
 }
 
 func (t *tree) analysis(m mapping, c *Campaign) {
-	k, _ := t.mapping(m.values["analysis"], "analysis", "reference_temperature", "shift_law", "vertical_shift", "expansion", "amplitude_law", "filler_frequency_dependence")
+	k, _ := t.mapping(m.values["analysis"], "analysis", "reference_temperature", "shift_law", "vertical_shift", "expansion", "amplitude_law", "amplitude_coupling", "filler_frequency_dependence")
 	c.Analysis = Analysis{
 		ReferenceTemperature: k.quantity("reference_temperature", unit.Temperature, positive),
 		ShiftLaw:             k.choice("shift_law", "auto", "auto", "WLF", "Arrhenius", "WLF+Arrhenius", "none"),
 		VerticalShift:        k.choice("vertical_shift", "auto", "auto", "none", "density", "bounded", "free"),
 		Expansion:            k.quantity("expansion", unit.Expansion, positive),
-		AmplitudeLaw:         k.choice("amplitude_law", "auto", "auto", "kraus", "none"),
+		AmplitudeLaw:         k.choice("amplitude_law", "auto", "auto", "kraus", "kraus_extra_loss", "maier_goritz", "none"),
+		AmplitudeCoupling:    k.choice("amplitude_coupling", "auto", "auto", "overlay", "scaling"),
 		FillerFrequency:      k.choice("filler_frequency_dependence", "auto", "auto", "causal", "rate_independent"),
 	}
 }

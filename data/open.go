@@ -60,7 +60,7 @@ func newCampaign() *Campaign {
 	nan := math.NaN()
 	return &Campaign{
 		Compound:     Compound{Density: nan},
-		Analysis:     Analysis{ReferenceTemperature: nan, ShiftLaw: "auto", VerticalShift: "auto", Expansion: nan, AmplitudeLaw: "auto", FillerFrequency: "auto"},
+		Analysis:     Analysis{ReferenceTemperature: nan, ShiftLaw: "auto", VerticalShift: "auto", Expansion: nan, AmplitudeLaw: "auto", AmplitudeCoupling: "auto", FillerFrequency: "auto"},
 		Uncertainty:  Uncertainty{nan, nan, nan, nan, nan, nan},
 		Modulus:      Shear,
 		PoissonRatio: nan,

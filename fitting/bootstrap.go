@@ -119,12 +119,23 @@ func (a *answer) quantities(r *Result) []quantity {
 		add("C1", "", at(idx.Law))
 		add("C2", "K", at(idx.Law+1))
 		add("activation energy of the shift", "kJ/mol", at(idx.Law))
+		add("crossover temperature", "°C", func(s *superpose.Solution) float64 { return degreesC(s.Theta[idx.Law+2]) })
 	}
 	add("filler storage ΔG′", "MPa", func(s *superpose.Solution) float64 { return s.FillerStorage / 1e6 })
 	add("filler loss ΔG″", "MPa", func(s *superpose.Solution) float64 { return s.FillerLoss / 1e6 })
 	if idx.Critical >= 0 {
 		add("critical strain", "%", func(s *superpose.Solution) float64 { return 100 * math.Exp(s.Theta[idx.Critical]) })
+	}
+	if idx.Exponent >= 0 {
 		add("Kraus exponent m", "", at(idx.Exponent))
+	}
+	if idx.Extra >= 0 {
+		add("extra loss modulus", "MPa", func(s *superpose.Solution) float64 { return s.FillerExtra / 1e6 })
+		add("extra loss strain", "%", func(s *superpose.Solution) float64 { return 100 * s.ExtraStrain() })
+	}
+	if idx.Alpha >= 0 {
+		add("filler storage ratio α", "", at(idx.Alpha))
+		add("filler loss ratio β", "", at(idx.Beta))
 	}
 	if idx.Activation >= 0 {
 		add("filler activation energy", "kJ/mol", at(idx.Activation))

@@ -6,6 +6,7 @@ import (
 
 	"phaselag/data"
 	"phaselag/fitting/superpose"
+	"phaselag/models/amplitude"
 )
 
 type rival struct {
@@ -15,8 +16,52 @@ type rival struct {
 	note   string
 }
 
-// chooseAmplitude fits the filler term with both frequency laws and without,
-// and keeps the best by AICc.
+// amplitudeName names a form of the filler term for people.
+func amplitudeName(f superpose.Form) string {
+	if !f.Filler {
+		return "none"
+	}
+	name := f.Amplitude.String()
+	if f.Kappa == 1 {
+		name += ", causal"
+	} else {
+		name += ", rate independent"
+	}
+	if f.Scaling {
+		name += ", scaling"
+	}
+	return name
+}
+
+// amplitudeForms lists the forms of the filler term that the campaign admits.
+func (a *answer) amplitudeForms() []superpose.Form {
+	law, coupling := a.campaign.Analysis.AmplitudeLaw, a.campaign.Analysis.AmplitudeCoupling
+	if law == "" {
+		law = "auto"
+	}
+	kinds := map[string][]amplitude.Kind{
+		"auto": {amplitude.OfKraus, amplitude.ExtraLoss, amplitude.MaierGoritz}, "kraus": {amplitude.OfKraus},
+		"kraus_extra_loss": {amplitude.ExtraLoss}, "maier_goritz": {amplitude.MaierGoritz},
+	}[law]
+	var out []superpose.Form
+	for _, kappa := range a.kappas() {
+		for _, k := range kinds {
+			for _, scaling := range []bool{false, true} {
+				if scaling && (coupling == "overlay" || k == amplitude.ExtraLoss) || !scaling && coupling == "scaling" && k != amplitude.ExtraLoss {
+					continue
+				}
+				out = append(out, superpose.Form{Filler: true, Kappa: kappa, Amplitude: k, Scaling: scaling})
+			}
+		}
+	}
+	if law == "auto" {
+		out = append(out, superpose.Form{})
+	}
+	return out
+}
+
+// chooseAmplitude fits every form of the filler term, and none, and keeps the best
+// by AICc.
 func (a *answer) chooseAmplitude(first *superpose.Solution) error {
 	best, noise, err := a.densify(first)
 	if err != nil {
@@ -26,24 +71,21 @@ func (a *answer) chooseAmplitude(first *superpose.Solution) error {
 	if !a.amp.sweeps {
 		return nil
 	}
-	name := map[float64]string{1: "Kraus, causal", 0: "Kraus, rate independent"}
-	rivals := []rival{{name: name[best.Form.Kappa], s: best}}
-	for _, k := range a.kappas() {
-		if k == best.Form.Kappa {
-			continue
-		}
+	var rivals []rival
+	for _, form := range a.amplitudeForms() {
 		f := best.Form
-		f.Kappa = k
-		if s, err := best.Rival(f, best.Start()); err == nil {
-			rivals = append(rivals, rival{name: name[k], s: s})
+		f.Filler, f.Kappa, f.Amplitude, f.Scaling = form.Filler, form.Kappa, form.Amplitude, form.Scaling
+		f.Activation = best.Form.Activation && f.Filler
+		s := best
+		if f.Filler != best.Form.Filler || f.Kappa != best.Form.Kappa || f.Amplitude != best.Form.Amplitude || f.Scaling != best.Form.Scaling {
+			if s, err = best.Rival(f, best.Start()); err != nil {
+				continue
+			}
 		}
+		rivals = append(rivals, rival{name: amplitudeName(f), s: s})
 	}
-	if a.campaign.Analysis.AmplitudeLaw != "kraus" {
-		f := best.Form
-		f.Filler, f.Activation = false, false
-		if s, err := best.Rival(f, best.Start()); err == nil {
-			rivals = append(rivals, rival{name: "none", s: s})
-		}
+	if len(rivals) == 0 {
+		return nil
 	}
 	at := leastAICc(rivals)
 	a.amplitude = rivals
@@ -122,6 +164,9 @@ func (a *answer) chooseLaw() error {
 	}
 	try(superpose.WLF, 4)
 	try(superpose.Arrhenius, 3)
+	if s := a.crossover(base, free); s != nil {
+		a.laws = append(a.laws, rival{name: superpose.Crossover.String(), s: s})
+	}
 	at := leastAICc(a.laws)
 	if wish := a.campaign.Analysis.ShiftLaw; wish != "" && wish != "auto" {
 		found := false
@@ -136,12 +181,46 @@ func (a *answer) chooseLaw() error {
 			a.laws[0].chosen = true
 			a.find("shift-law-not-supported", data.Doubt, "",
 				fmt.Sprintf("%s was wished for, with %d tested temperatures", wish, n),
-				"too few temperatures, or a law that this version does not fit", "the factors themselves are used")
+				"too few temperatures, or no crossover within them", "the factors themselves are used")
 		}
 	}
 	var err error
 	a.final, a.noise, err = a.laws[at].s.Refine(6)
 	return err
+}
+
+// crossover fits WLF above and Arrhenius below a temperature, from several of the
+// tested temperatures; nil where there are fewer than six, or where it does not
+// end inside the tested temperatures: two of them must be left below it.
+func (a *answer) crossover(base, free *superpose.Solution) *superpose.Solution {
+	knots := a.problem.Knots
+	if len(knots) < 6 {
+		return nil
+	}
+	f := base.Form
+	f.Law = superpose.Crossover
+	var best *superpose.Solution
+	for _, k := range []int{2, 3, len(knots) / 2} {
+		if knots[k] >= a.reference {
+			continue
+		}
+		start := free.Start()
+		start.Cross = knots[k] + 0.5
+		var T, y []float64
+		for i := k; i < len(knots); i++ {
+			T, y = append(T, knots[i]), append(y, free.LogShift(knots[i]))
+		}
+		if len(T) >= 4 {
+			start.WLF = superpose.BestWLF(T, y, a.reference)
+		}
+		if s, err := base.Rival(f, start); err == nil && (best == nil || s.Objective < best.Objective) {
+			best = s
+		}
+	}
+	if best == nil || best.Theta[best.Indices().Law+2] < knots[1] {
+		return nil
+	}
+	return best
 }
 
 // glassy is the modulus above which a density law has no meaning, Pa.

@@ -10,6 +10,7 @@ import (
 	"phaselag/data/unit"
 	"phaselag/fitting/superpose"
 	"phaselag/models"
+	"phaselag/models/amplitude"
 )
 
 // round15 rounds to 15 significant digits, the precision in which a compound
@@ -123,6 +124,13 @@ func (d *draft) shift() {
 		d.Shift.Law = models.LawArrhenius
 		d.Shift.Activation = number(s.Theta[law])
 		d.keep("shift.activation_kJ_per_mol", d.cov.Theta(law), 1)
+	case superpose.Crossover:
+		d.Shift.Law = models.LawCrossover
+		at := degreesC(s.Theta[law+2])
+		d.Shift.C1, d.Shift.C2, d.Shift.Crossover = number(s.Theta[law]), number(s.Theta[law+1]), &at
+		d.keep("shift.c1", d.cov.Theta(law), 1)
+		d.keep("shift.c2_K", d.cov.Theta(law+1), 1)
+		d.keep("shift.crossover_C", d.cov.Theta(law+2), 1)
 	case superpose.Factors:
 		for i, T := range d.problem.Knots {
 			r := d.cov.LogShift(T)
@@ -164,16 +172,34 @@ func (d *draft) filler() {
 		frequency = models.Causal
 	}
 	d.Amplitude = models.Amplitude{
-		Law: models.AmplitudeKraus, Coupling: models.Overlay,
-		Storage: number(s.FillerStorage / 1e6), Loss: number(s.FillerLoss / 1e6),
+		Law: models.AmplitudeKraus, Coupling: models.Overlay, Storage: nan, Loss: nan,
 		Critical: number(100 * critical), Exponent: number(exponent), Activation: number(s.Activation()),
 		Frequency: frequency, ReferenceFrequency: number(d.problem.F0),
 	}
 	idx, nl := s.Indices(), len(s.Form.Lattice)
-	d.keep("amplitude.storage_MPa", d.cov.Modulus(1+nl), 1e-6)
-	d.keep("amplitude.loss_MPa", d.cov.Modulus(2+nl), 1e-6)
+	if s.Form.Scaling {
+		alpha, beta := round15(s.FillerStorage), round15(s.FillerLoss)
+		d.Amplitude.Coupling, d.Amplitude.StorageRatio, d.Amplitude.LossRatio = models.Scaling, &alpha, &beta
+		d.keep("amplitude.storage_ratio", d.cov.Theta(idx.Alpha), 1)
+		d.keep("amplitude.loss_ratio", d.cov.Theta(idx.Beta), 1)
+	} else {
+		d.Amplitude.Storage, d.Amplitude.Loss = number(s.FillerStorage/1e6), number(s.FillerLoss/1e6)
+		d.keep("amplitude.storage_MPa", d.cov.Modulus(1+nl), 1e-6)
+		d.keep("amplitude.loss_MPa", d.cov.Modulus(2+nl), 1e-6)
+	}
 	d.keep("amplitude.critical_strain_percent", d.cov.Theta(idx.Critical), 100*critical)
-	d.keep("amplitude.exponent", d.cov.Theta(idx.Exponent), 1)
+	switch s.Form.Amplitude {
+	case amplitude.MaierGoritz:
+		d.Amplitude.Law = models.AmplitudeMaierGoritz
+	case amplitude.ExtraLoss:
+		extra, at := round15(s.FillerExtra/1e6), round15(100*s.ExtraStrain())
+		d.Amplitude.Law, d.Amplitude.ExtraLoss, d.Amplitude.ExtraStrain = models.AmplitudeExtraLoss, &extra, &at
+		d.keep("amplitude.extra_loss_MPa", d.cov.Modulus(3+nl), 1e-6)
+		d.keep("amplitude.extra_loss_strain_percent", d.cov.Theta(idx.Extra), 100*s.ExtraStrain())
+	}
+	if idx.Exponent >= 0 {
+		d.keep("amplitude.exponent", d.cov.Theta(idx.Exponent), 1)
+	}
 	if idx.Activation >= 0 {
 		d.keep("amplitude.activation_kJ_per_mol", d.cov.Theta(idx.Activation), 1)
 	}

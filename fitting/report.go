@@ -184,7 +184,7 @@ func (a *answer) fill(r *Result) {
 	}
 	idx := s.Indices()
 	switch s.Form.Law {
-	case superpose.WLF:
+	case superpose.WLF, superpose.Crossover:
 		c1, c2 := s.Theta[idx.Law], s.Theta[idx.Law+1]
 		common := a.campaign.Uncertainty.TemperatureCommon
 		if math.IsNaN(common) {
@@ -194,6 +194,9 @@ func (a *answer) fill(r *Result) {
 		a.profile(r, idx.Law, cov.Theta(idx.Law).Deviation(), c1/c2*common, t95)
 		param("C2", "K", c2, math.Hypot(cov.Theta(idx.Law+1).Deviation(), common), math.Abs(c2)/2)
 		a.profile(r, idx.Law+1, cov.Theta(idx.Law+1).Deviation(), common, t95)
+		if s.Form.Law == superpose.Crossover {
+			param("crossover temperature", "°C", degreesC(s.Theta[idx.Law+2]), math.Hypot(cov.Theta(idx.Law+2).Deviation(), common), 10)
+		}
 	case superpose.Arrhenius:
 		e := s.Theta[idx.Law]
 		// A common error δ of all temperatures changes E_a by −2δ/T of itself.
@@ -215,10 +218,23 @@ func (a *answer) fill(r *Result) {
 		g := a.problem.UGeometry / math.Sqrt(float64(a.problem.Factors))
 		withScale := func(root superpose.Root, value float64) float64 { return math.Hypot(dev(root)/1e6, g*value) }
 		st, lo := s.FillerStorage/1e6, s.FillerLoss/1e6
-		param("filler storage ΔG′", "MPa", st, withScale(cov.Modulus(1+nl), st), st/2)
-		param("filler loss ΔG″", "MPa", lo, withScale(cov.Modulus(2+nl), lo), lo/2)
+		if s.Form.Scaling {
+			st, lo = s.FillerStorage, s.FillerLoss
+			param("filler storage ratio α", "", st, cov.Theta(idx.Alpha).Deviation(), st/2)
+			param("filler loss ratio β", "", lo, cov.Theta(idx.Beta).Deviation(), lo/2)
+		} else {
+			param("filler storage ΔG′", "MPa", st, withScale(cov.Modulus(1+nl), st), st/2)
+			param("filler loss ΔG″", "MPa", lo, withScale(cov.Modulus(2+nl), lo), lo/2)
+		}
 		param("critical strain", "%", 100*critical, 100*critical*cov.Theta(idx.Critical).Deviation(), 50*critical)
-		param("Kraus exponent m", "", exponent, cov.Theta(idx.Exponent).Deviation(), exponent/2)
+		if idx.Exponent >= 0 {
+			param("Kraus exponent m", "", exponent, cov.Theta(idx.Exponent).Deviation(), exponent/2)
+		}
+		if idx.Extra >= 0 {
+			x, at := s.FillerExtra/1e6, 100*s.ExtraStrain()
+			param("extra loss modulus", "MPa", x, withScale(cov.Modulus(3+nl), x), x/2)
+			param("extra loss strain", "%", at, at*cov.Theta(idx.Extra).Deviation(), at/2)
+		}
 		if idx.Activation >= 0 {
 			param("filler activation energy", "kJ/mol", s.Activation(), cov.Theta(idx.Activation).Deviation(), 5)
 		}

@@ -72,17 +72,21 @@ type Branch struct {
 const (
 	LawWLF       = "WLF"
 	LawArrhenius = "Arrhenius"
-	LawNone      = "none" // the factors themselves, interpolated
+	LawCrossover = "WLF+Arrhenius" // WLF above a temperature, Arrhenius below
+	LawNone      = "none"          // the factors themselves, interpolated
 )
 
 // Shift is the horizontal shift law with the factors of the tested
 // temperatures.
 type Shift struct {
-	Law        string        `yaml:"law" json:"law"`
-	C1         unit.Number   `yaml:"c1" json:"c1"`
-	C2         unit.Number   `yaml:"c2_K" json:"c2_K"`
-	Activation unit.Number   `yaml:"activation_kJ_per_mol" json:"activation_kJ_per_mol"`
-	Factors    []ShiftFactor `yaml:"factors" json:"factors"`
+	Law        string      `yaml:"law" json:"law"`
+	C1         unit.Number `yaml:"c1" json:"c1"`
+	C2         unit.Number `yaml:"c2_K" json:"c2_K"`
+	Activation unit.Number `yaml:"activation_kJ_per_mol" json:"activation_kJ_per_mol"`
+	// Crossover is the temperature of the law WLF+Arrhenius; no other law has the
+	// key.
+	Crossover *float64      `yaml:"crossover_C,omitempty" json:"crossover_C,omitempty"`
+	Factors   []ShiftFactor `yaml:"factors" json:"factors"`
 }
 
 // ShiftFactor is the shift of one tested temperature as measured, free of any
@@ -118,8 +122,12 @@ type VerticalFactor struct {
 const (
 	AmplitudeNone  = "none"
 	AmplitudeKraus = "kraus"
+	// AmplitudeExtraLoss is Kraus with a loss that falls exponentially with strain.
+	AmplitudeExtraLoss   = "kraus_extra_loss"
+	AmplitudeMaierGoritz = "maier_goritz"
 
-	Overlay = "overlay"
+	Overlay = "overlay" // the filler term is added to the polymer term
+	Scaling = "scaling" // the polymer term is multiplied by one plus the filler term
 
 	Causal          = "causal"
 	RateIndependent = "rate_independent"
@@ -136,6 +144,12 @@ type Amplitude struct {
 	Activation         unit.Number `yaml:"activation_kJ_per_mol" json:"activation_kJ_per_mol"`
 	Frequency          string      `yaml:"frequency_dependence" json:"frequency_dependence"`
 	ReferenceFrequency unit.Number `yaml:"reference_frequency_Hz" json:"reference_frequency_Hz"`
+	// Only the law kraus_extra_loss has these two keys.
+	ExtraLoss   *float64 `yaml:"extra_loss_MPa,omitempty" json:"extra_loss_MPa,omitempty"`
+	ExtraStrain *float64 `yaml:"extra_loss_strain_percent,omitempty" json:"extra_loss_strain_percent,omitempty"`
+	// Only the coupling "scaling" has these two keys, in the place of the moduli.
+	StorageRatio *float64 `yaml:"storage_ratio,omitempty" json:"storage_ratio,omitempty"`
+	LossRatio    *float64 `yaml:"loss_ratio,omitempty" json:"loss_ratio,omitempty"`
 }
 
 // StaticItem is a modulus from a static or relaxation test.

@@ -17,7 +17,8 @@ import (
 // decoder fills a Compound from a tree of YAML nodes. It is stricter than the
 // YAML library's own decoder, and says line and column:
 //
-//   - every key must be there, no other, none twice, no alias;
+//   - every key must be there but the optional ones, no other, none twice, no
+//     alias;
 //   - a number is written in decimal digits and finite; it is read by
 //     strconv.ParseFloat and so bit for bit, the sign of −0 included;
 //   - null stands only where a number may be unknown (unit.Number → NaN) or a
@@ -133,10 +134,11 @@ func (d decoder) mapping(n *yaml.Node, v reflect.Value, path string) error {
 		return d.fault(n, path, "", "must be a mapping of keys, not %s", describeNode(n))
 	}
 	var names []string
-	index := map[string]int{}
+	index, optional := map[string]int{}, map[string]bool{}
 	for i := range v.NumField() {
-		if key, _, _ := strings.Cut(v.Type().Field(i).Tag.Get("json"), ","); key != "" {
+		if key, options, _ := strings.Cut(v.Type().Field(i).Tag.Get("json"), ","); key != "" {
 			names, index[key] = append(names, key), i
+			optional[key] = options == "omitempty"
 		}
 	}
 	seen := map[string]bool{}
@@ -159,7 +161,7 @@ func (d decoder) mapping(n *yaml.Node, v reflect.Value, path string) error {
 		}
 	}
 	for _, key := range names {
-		if !seen[key] {
+		if !seen[key] && !optional[key] {
 			return d.fault(n, join(path, key), "write null where a number is not known", "is missing")
 		}
 	}

@@ -31,10 +31,11 @@ type derived struct {
 
 // filler is the amplitude term in SI.
 type filler struct {
-	storage, loss float64 // Pa
-	kraus         amplitude.Kraus
-	arrhenius     thermal.Arrhenius
-	kappa, f0     float64
+	storage, loss, extra float64 // Pa; of a term that scales, ratios
+	law                  amplitude.Law
+	arrhenius            thermal.Arrhenius
+	kappa, f0            float64
+	scaling              bool
 }
 
 // New checks the fields of c, derives its SI values and returns it ready for
@@ -151,6 +152,19 @@ func (c *Compound) deriveShift(d *derived, bad badFunc) error {
 			return bad("shift.activation_kJ_per_mol", "Arrhenius needs a positive activation energy")
 		}
 		d.law = a
+	case LawCrossover:
+		l := thermal.Crossover{WLF: thermal.WLF{C1: float64(c.Shift.C1), C2: float64(c.Shift.C2), Reference: d.reference}}
+		if !positive(l.C1) || !positive(l.C2) {
+			return bad("shift", "WLF+Arrhenius needs positive c1 and c2_K")
+		}
+		if c.Shift.Crossover == nil {
+			return bad("shift.crossover_C", "WLF+Arrhenius needs the temperature of the crossover")
+		}
+		l.Cross = *c.Shift.Crossover + zeroC
+		if !positive(l.Cross) || l.Cross > d.reference || !(l.C2+l.Cross-d.reference > 0) {
+			return bad("shift.crossover_C", "must lie between the pole of the law and the reference temperature")
+		}
+		d.law = l
 	case LawNone:
 		var f thermal.Factors
 		for i, s := range c.Shift.Factors {
@@ -168,7 +182,10 @@ func (c *Compound) deriveShift(d *derived, bad badFunc) error {
 			d.law = f
 		}
 	default:
-		return bad("shift.law", "%q is not one of WLF, Arrhenius, none", c.Shift.Law)
+		return bad("shift.law", "%q is not one of WLF, Arrhenius, WLF+Arrhenius, none", c.Shift.Law)
+	}
+	if c.Shift.Crossover != nil && c.Shift.Law != LawCrossover {
+		return bad("shift.crossover_C", "the law %s has no crossover", c.Shift.Law)
 	}
 	switch c.Vertical.Law {
 	case VerticalNone:
@@ -204,17 +221,21 @@ func (c *Compound) deriveFiller(d *derived, bad badFunc) error {
 	switch a.Law {
 	case AmplitudeNone:
 		return nil
-	case AmplitudeKraus:
+	case AmplitudeKraus, AmplitudeExtraLoss, AmplitudeMaierGoritz:
 	default:
-		return bad("amplitude.law", "%q is not one of none, kraus", a.Law)
+		return bad("amplitude.law", "%q is not one of none, kraus, kraus_extra_loss, maier_goritz", a.Law)
 	}
-	if a.Coupling != Overlay {
-		return bad("amplitude.coupling", "%q is not overlay", a.Coupling)
+	if a.Coupling != Overlay && a.Coupling != Scaling {
+		return bad("amplitude.coupling", "%q is not overlay or scaling", a.Coupling)
+	}
+	if a.Coupling == Scaling && a.Law == AmplitudeExtraLoss {
+		return bad("amplitude.coupling", "the law kraus_extra_loss is an overlay")
 	}
 	f := filler{
 		storage:   float64(a.Storage) * mega,
 		loss:      float64(a.Loss) * mega,
-		kraus:     amplitude.Kraus{Critical: float64(a.Critical) / 100, Exponent: float64(a.Exponent)},
+		law:       amplitude.Law{Critical: float64(a.Critical) / 100, Exponent: float64(a.Exponent)},
+		scaling:   a.Coupling == Scaling,
 		arrhenius: thermal.Arrhenius{Activation: float64(a.Activation) * 1e3, Reference: d.reference},
 		f0:        float64(a.ReferenceFrequency),
 	}
@@ -225,14 +246,36 @@ func (c *Compound) deriveFiller(d *derived, bad badFunc) error {
 	default:
 		return bad("amplitude.frequency_dependence", "%q is not one of causal, rate_independent", a.Frequency)
 	}
-	for _, v := range []struct {
+	type number struct {
 		key      string
 		x        float64
 		positive bool
-	}{
-		{"storage_MPa", f.storage, false}, {"loss_MPa", f.loss, false},
-		{"critical_strain_percent", f.kraus.Critical, true}, {"exponent", f.kraus.Exponent, true},
-	} {
+	}
+	numbers := []number{{"critical_strain_percent", f.law.Critical, true}}
+	optional := func(p *float64) float64 {
+		if p == nil {
+			return math.NaN()
+		}
+		return *p
+	}
+	switch a.Law {
+	case AmplitudeMaierGoritz:
+		f.law.Kind = amplitude.MaierGoritz
+	case AmplitudeExtraLoss:
+		f.law.Kind = amplitude.ExtraLoss
+		f.extra, f.law.Extra = optional(a.ExtraLoss)*mega, optional(a.ExtraStrain)/100
+		numbers = append(numbers, number{"extra_loss_MPa", f.extra, false}, number{"extra_loss_strain_percent", f.law.Extra, true})
+	}
+	if a.Law != AmplitudeMaierGoritz {
+		numbers = append(numbers, number{"exponent", f.law.Exponent, true})
+	}
+	if f.scaling {
+		f.storage, f.loss = optional(a.StorageRatio), optional(a.LossRatio)
+		numbers = append(numbers, number{"storage_ratio", f.storage, false}, number{"loss_ratio", f.loss, false})
+	} else {
+		numbers = append(numbers, number{"storage_MPa", f.storage, false}, number{"loss_MPa", f.loss, false})
+	}
+	for _, v := range numbers {
 		switch {
 		case math.IsNaN(v.x) || math.IsInf(v.x, 0):
 			return bad("amplitude."+v.key, "the amplitude law needs a finite number")

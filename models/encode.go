@@ -57,7 +57,7 @@ func encode(v reflect.Value) *yaml.Node {
 		n := &yaml.Node{Kind: yaml.MappingNode}
 		for i := range v.NumField() {
 			key, options, _ := strings.Cut(v.Type().Field(i).Tag.Get("yaml"), ",")
-			if key == "" {
+			if key == "" || options == "omitempty" && v.Field(i).IsNil() {
 				continue
 			}
 			item := encode(v.Field(i))

@@ -19,13 +19,12 @@ func (c *Compound) Gradient(q Condition, g []complex128) complex128 {
 	poly := d.spectrum.Modulus(x)
 	polySlope := d.spectrum.Slope(x) // per ln x
 	cb := complex(b, 0)
-	value := cb * poly
 
 	var lawGrad []float64
 	var slope float64
 	if d.law != nil {
 		slope = d.law.Slope(q.Temperature)
-		n := 2
+		n := 3
 		if f, ok := d.law.(thermal.Factors); ok {
 			n = len(f.T)
 		}
@@ -37,14 +36,23 @@ func (c *Compound) Gradient(q Condition, g []complex128) complex128 {
 		vertGrad = make([]float64, len(d.vertical.T))
 		d.vertical.Gradient(q.Temperature, vertGrad)
 	}
-	dT := cb*polySlope*complex(thermal.Ln10*slope, 0) + complex(bSlope, 0)*poly
-
 	var fil fillerGradient
 	if d.filler != nil {
 		fil = d.filler.gradient(q.Frequency, q.Temperature, c.strain(q))
-		value += fil.value
-		dT += fil.byT
+		if d.filler.scaling {
+			// The term multiplies: what belongs to the polymer gets the factor 1 + F,
+			// what belongs to F the polymer term.
+			fil.times(cb * poly)
+			cb *= 1 + fil.term
+		}
 	}
+	value := cb*poly + fil.value
+	h := complex(1, 0)
+	if d.filler != nil && d.filler.scaling {
+		value = cb * poly
+		h = 1 + fil.term
+	}
+	dT := cb*polySlope*complex(thermal.Ln10*slope, 0) + complex(bSlope, 0)*h*poly + fil.byT
 	for i, p := range d.params {
 		switch p.kind {
 		case pEquilibrium:
@@ -63,10 +71,16 @@ func (c *Compound) Gradient(q Condition, g []complex128) complex128 {
 		case pVertical:
 			// The file has b_T, the interpolation ln b_T.
 			g[i] = cb * poly * complex(vertGrad[p.index]/float64(c.Vertical.Factors[p.index].B), 0)
-		case pStorage:
+		case pCrossover:
+			g[i] = cb * polySlope * complex(thermal.Ln10*lawGrad[2], 0)
+		case pStorage, pStorageRatio:
 			g[i] = fil.byStorage
-		case pLoss:
+		case pLoss, pLossRatio:
 			g[i] = fil.byLoss
+		case pExtraLoss:
+			g[i] = fil.byExtra
+		case pExtraStrain:
+			g[i] = fil.byLnExtra / complex(*c.Amplitude.ExtraStrain, 0)
 		case pCritical:
 			g[i] = fil.byLnCritical / complex(float64(c.Amplitude.Critical), 0)
 		case pExponent:
@@ -84,28 +98,44 @@ func (c *Compound) Gradient(q Condition, g []complex128) complex128 {
 	return value
 }
 
+// fillerGradient is the filler term and its derivatives.
 type fillerGradient struct {
+	term                     complex128 // F, per unit of the polymer term where it scales
 	value, byT               complex128
-	byStorage, byLoss        complex128 // per MPa
+	byStorage, byLoss        complex128 // per MPa, or per ratio
+	byExtra, byLnExtra       complex128 // per MPa; per ln γ_2
 	byLnCritical, byExponent complex128
 	byActivation             complex128 // per kJ/mol
 }
 
+// times multiplies everything but the term by the polymer term.
+func (g *fillerGradient) times(p complex128) {
+	for _, v := range []*complex128{&g.value, &g.byT, &g.byStorage, &g.byLoss, &g.byExtra, &g.byLnExtra, &g.byLnCritical, &g.byExponent, &g.byActivation} {
+		*v *= p
+	}
+}
+
 func (f *filler) gradient(freq, T, gamma float64) fillerGradient {
-	k1, k2, k1c, k2c, k1m, k2m := f.kraus.Slopes(gamma)
+	t := f.law.Terms(gamma)
 	phi := f.arrhenius.Factor(T)
 	lossDir := complex(amplitude.FrequencyPart(f.kappa, freq, f.f0), 1)
-	term := func(a, b float64) complex128 {
-		return complex(phi*f.storage*a, 0) + complex(phi*f.loss*b, 0)*lossDir
+	term := func(a, b, x float64) complex128 {
+		return complex(phi*f.storage*a, 0) + complex(phi*(f.loss*b+f.extra*x), 0)*lossDir
 	}
-	v := term(k1, k2)
+	unit := float64(mega)
+	if f.scaling {
+		unit = 1
+	}
+	v := term(t.K1, t.K2, t.K3)
 	return fillerGradient{
-		value:        v,
+		term: v, value: v,
 		byT:          v * complex(-f.arrhenius.Activation/(thermal.GasConstant*T*T), 0),
-		byStorage:    complex(mega*phi*k1, 0),
-		byLoss:       complex(mega*phi*k2, 0) * lossDir,
-		byLnCritical: term(k1c, k2c),
-		byExponent:   term(k1m, k2m),
+		byStorage:    complex(unit*phi*t.K1, 0),
+		byLoss:       complex(unit*phi*t.K2, 0) * lossDir,
+		byExtra:      complex(mega*phi*t.K3, 0) * lossDir,
+		byLnExtra:    complex(phi*f.extra*t.K3Extra, 0) * lossDir,
+		byLnCritical: term(t.K1Critical, t.K2Critical, 0),
+		byExponent:   term(t.K1Exponent, t.K2Exponent, 0),
 		byActivation: v * complex(1e3/thermal.GasConstant*(1/T-1/f.arrhenius.Reference), 0),
 	}
 }

@@ -59,7 +59,7 @@ func TestGradientOfLinearParts(t *testing.T) {
 		var sum complex128
 		for i, name := range c.Uncertainty.Parameters {
 			switch c.derived.params[i].kind {
-			case pEquilibrium, pBranch, pStorage, pLoss:
+			case pEquilibrium, pBranch, pStorage, pLoss, pExtraLoss:
 				sum += g[i] * complex(*field(c, name), 0)
 			case pSpecimen:
 				if g[i] != value {

@@ -72,7 +72,7 @@ func TestHostileFiles(t *testing.T) {
 		{"  c1: 6.01", "  c1: ¶!!float six", "must be a number"},
 		{"  c1: 6.01", "  c1: &a 6.01\n  ¶c9: *a", "is no key"},
 		{"  c2_K: 149.75", "  c2_K: 60", "the shift law has no value at -40"}, // beyond its pole
-		{"  law: WLF", "  law: ¶wlf", "is not one of WLF, Arrhenius, none"},
+		{"  law: WLF", "  law: ¶wlf", "is not one of WLF, Arrhenius, WLF+Arrhenius, none"},
 		{"  law: density", "  law: ¶free", "is not one of none, density, factors"},
 		{"  law: kraus", "  law: ¶cubic", "is not one of none, kraus"},
 		{"reference_temperature_C: 23", "reference_temperature_C: ¶-300", "below absolute zero"},

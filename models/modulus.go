@@ -97,11 +97,20 @@ func (d *derived) verticalAt(T float64) (b, slope float64) {
 	return 1, 0
 }
 
-// fillerAt is F*(γ, f)·φ(T).
+// at is F*(γ, f)·φ(T).
 func (f *filler) at(freq, T, gamma float64) complex128 {
-	k1, k2 := f.kraus.Shape(gamma)
+	k1, k2, k3 := f.law.Shares(gamma)
 	phi := f.arrhenius.Factor(T)
-	return complex(phi*(f.storage*k1+f.loss*k2*amplitude.FrequencyPart(f.kappa, freq, f.f0)), phi*f.loss*k2)
+	loss := f.loss*k2 + f.extra*k3
+	return complex(phi*(f.storage*k1+loss*amplitude.FrequencyPart(f.kappa, freq, f.f0)), phi*loss)
+}
+
+// with puts the filler term to the polymer term g.
+func (f *filler) with(g, term complex128) complex128 {
+	if f.scaling {
+		return g * (1 + term)
+	}
+	return g + term
 }
 
 // Value is G*(f, T, γ) in Pa, without interval, without a look at the domain
@@ -117,7 +126,7 @@ func (c *Compound) Value(q Condition) complex128 {
 		g *= complex(b, 0)
 	}
 	if d.filler != nil {
-		g += d.filler.at(q.Frequency, q.Temperature, c.strain(q))
+		g = d.filler.with(g, d.filler.at(q.Frequency, q.Temperature, c.strain(q)))
 	}
 	return g
 }

@@ -5,6 +5,8 @@ import (
 	"math"
 	"strconv"
 	"strings"
+
+	"phaselag/models/amplitude"
 )
 
 // paramKind says what a row of the covariance belongs to.
@@ -26,6 +28,11 @@ const (
 	pSpecimen
 	pTemperature
 	pPhase
+	pCrossover
+	pExtraLoss
+	pExtraStrain
+	pStorageRatio
+	pLossRatio
 )
 
 type parameter struct {
@@ -53,6 +60,12 @@ var plainParams = map[string]paramKind{
 	ParamSpecimen:                       pSpecimen,
 	ParamTemperature:                    pTemperature,
 	ParamPhase:                          pPhase,
+
+	"shift.crossover_C":                   pCrossover,
+	"amplitude.extra_loss_MPa":            pExtraLoss,
+	"amplitude.extra_loss_strain_percent": pExtraStrain,
+	"amplitude.storage_ratio":             pStorageRatio,
+	"amplitude.loss_ratio":                pLossRatio,
 }
 
 func (c *Compound) deriveParameters(d *derived, bad badFunc) error {
@@ -88,11 +101,21 @@ func (c *Compound) parameter(name string, d *derived) (p parameter, ok bool) {
 	if kind, plain := plainParams[name]; plain {
 		switch kind {
 		case pC1, pC2:
-			return parameter{kind: kind}, d.wlf != nil
+			return parameter{kind: kind}, d.wlf != nil || c.Shift.Law == LawCrossover
+		case pCrossover:
+			return parameter{kind: kind}, c.Shift.Law == LawCrossover
 		case pShiftActivation:
 			return parameter{kind: kind}, c.Shift.Law == LawArrhenius
-		case pStorage, pLoss, pCritical, pExponent, pActivation:
+		case pCritical, pActivation:
 			return parameter{kind: kind}, d.filler != nil
+		case pExponent:
+			return parameter{kind: kind}, d.filler != nil && d.filler.law.Kind != amplitude.MaierGoritz
+		case pStorage, pLoss:
+			return parameter{kind: kind}, d.filler != nil && !d.filler.scaling
+		case pStorageRatio, pLossRatio:
+			return parameter{kind: kind}, d.filler != nil && d.filler.scaling
+		case pExtraLoss, pExtraStrain:
+			return parameter{kind: kind}, d.filler != nil && d.filler.law.Kind == amplitude.ExtraLoss
 		}
 		return parameter{kind: kind}, true
 	}

@@ -34,8 +34,9 @@ func (c *Compound) relaxation(t, T, gamma float64) float64 {
 	b, _ := d.verticalAt(T)
 	g := b * d.spectrum.Relaxation(t/c.shift(T))
 	if f := d.filler; f != nil {
-		k1, k2 := f.kraus.Shape(c.strain(Condition{Strain: gamma}))
-		g += f.arrhenius.Factor(T) * (f.storage*k1 + f.loss*k2*amplitude.RelaxationPart(f.kappa, t, f.f0))
+		k1, k2, k3 := f.law.Shares(c.strain(Condition{Strain: gamma}))
+		term := f.arrhenius.Factor(T) * (f.storage*k1 + (f.loss*k2+f.extra*k3)*amplitude.RelaxationPart(f.kappa, t, f.f0))
+		g = real(f.with(complex(g, 0), complex(term, 0)))
 	}
 	return g
 }

@@ -90,6 +90,8 @@ func sampleParameters(c *Compound) []string {
 	switch c.Shift.Law {
 	case LawWLF:
 		names = append(names, "shift.c1", "shift.c2_K")
+	case LawCrossover:
+		names = append(names, "shift.c1", "shift.c2_K", "shift.crossover_C")
 	case LawArrhenius:
 		names = append(names, "shift.activation_kJ_per_mol")
 	case LawNone:
@@ -105,7 +107,19 @@ func sampleParameters(c *Compound) []string {
 		}
 	}
 	if c.Amplitude.Law != AmplitudeNone {
-		names = append(names, "amplitude.storage_MPa", "amplitude.loss_MPa", "amplitude.critical_strain_percent", "amplitude.exponent", "amplitude.activation_kJ_per_mol")
+		if c.Amplitude.Coupling == Scaling {
+			names = append(names, "amplitude.storage_ratio", "amplitude.loss_ratio")
+		} else {
+			names = append(names, "amplitude.storage_MPa", "amplitude.loss_MPa")
+		}
+		names = append(names, "amplitude.critical_strain_percent")
+		if c.Amplitude.Law != AmplitudeMaierGoritz {
+			names = append(names, "amplitude.exponent")
+		}
+		if c.Amplitude.Law == AmplitudeExtraLoss {
+			names = append(names, "amplitude.extra_loss_MPa", "amplitude.extra_loss_strain_percent")
+		}
+		names = append(names, "amplitude.activation_kJ_per_mol")
 	}
 	return append(names, ParamSpecimen, ParamTemperature, ParamPhase)
 }
@@ -152,6 +166,16 @@ func field(c *Compound, name string) *float64 {
 		return number(&c.Amplitude.Exponent)
 	case "amplitude.activation_kJ_per_mol":
 		return number(&c.Amplitude.Activation)
+	case "shift.crossover_C":
+		return c.Shift.Crossover
+	case "amplitude.extra_loss_MPa":
+		return c.Amplitude.ExtraLoss
+	case "amplitude.extra_loss_strain_percent":
+		return c.Amplitude.ExtraStrain
+	case "amplitude.storage_ratio":
+		return c.Amplitude.StorageRatio
+	case "amplitude.loss_ratio":
+		return c.Amplitude.LossRatio
 	}
 	part := strings.Split(name, ".")
 	if len(part) != 4 {
@@ -175,6 +199,12 @@ func moved(t rapid.TB, c *Compound, change map[string]float64) *Compound {
 	n.Linear.Branches = append([]Branch{}, c.Linear.Branches...)
 	n.Shift.Factors = append([]ShiftFactor{}, c.Shift.Factors...)
 	n.Vertical.Factors = append([]VerticalFactor{}, c.Vertical.Factors...)
+	for _, p := range []**float64{&n.Shift.Crossover, &n.Amplitude.ExtraLoss, &n.Amplitude.ExtraStrain, &n.Amplitude.StorageRatio, &n.Amplitude.LossRatio} {
+		if *p != nil {
+			v := **p
+			*p = &v
+		}
+	}
 	for name, d := range change {
 		if p := field(&n, name); p != nil {
 			*p += d
@@ -208,11 +238,15 @@ func anyCompound(t *rapid.T) Compound {
 	for k := range rapid.IntRange(1, 12).Draw(t, "branches") {
 		c.Linear.Branches = append(c.Linear.Branches, Branch{Time: math.Pow(10, float64(k-6)), Modulus: float64(num(0.01, 3, "G"))})
 	}
-	c.Shift = Shift{Law: rapid.SampledFrom([]string{LawWLF, LawArrhenius, LawNone}).Draw(t, "law"), C1: unit.NaN(), C2: unit.NaN(), Activation: unit.NaN()}
+	c.Shift = Shift{Law: rapid.SampledFrom([]string{LawWLF, LawArrhenius, LawCrossover, LawNone}).Draw(t, "law"), C1: unit.NaN(), C2: unit.NaN(), Activation: unit.NaN()}
 	c.Domain.Temperature = Range{c.ReferenceTempC - 30, c.ReferenceTempC + 50}
 	switch c.Shift.Law {
 	case LawWLF:
 		c.Shift.C1, c.Shift.C2 = num(2, 12, "C1"), num(80, 220, "C2")
+	case LawCrossover:
+		c.Shift.C1, c.Shift.C2 = num(2, 12, "C1"), num(80, 220, "C2")
+		at := c.ReferenceTempC - float64(num(2, 40, "below"))
+		c.Shift.Crossover = &at
 	case LawArrhenius:
 		c.Shift.Activation = num(20, 200, "E")
 	default:
@@ -242,6 +276,22 @@ func anyCompound(t *rapid.T) Compound {
 		c.Amplitude.Activation = num(0, 20, "Ea")
 		c.Amplitude.Frequency = rapid.SampledFrom([]string{Causal, RateIndependent}).Draw(t, "κ")
 		c.Amplitude.ReferenceFrequency = num(1, 30, "f0")
+		some := func(lo, hi float64, name string) *float64 {
+			v := float64(num(lo, hi, name))
+			return &v
+		}
+		c.Amplitude.Law = rapid.SampledFrom([]string{AmplitudeKraus, AmplitudeExtraLoss, AmplitudeMaierGoritz}).Draw(t, "form")
+		switch c.Amplitude.Law {
+		case AmplitudeExtraLoss:
+			c.Amplitude.ExtraLoss, c.Amplitude.ExtraStrain = some(0.02, 0.3, "ΔG2"), some(0.05, 5, "γ2")
+		case AmplitudeMaierGoritz:
+			c.Amplitude.Exponent = unit.NaN()
+		}
+		if c.Amplitude.Law != AmplitudeExtraLoss && rapid.Bool().Draw(t, "scaling") {
+			c.Amplitude.Coupling = Scaling
+			c.Amplitude.Storage, c.Amplitude.Loss = unit.NaN(), unit.NaN()
+			c.Amplitude.StorageRatio, c.Amplitude.LossRatio = some(0.1, 3, "α"), some(0.02, 0.4, "β")
+		}
 	} else {
 		nan := unit.NaN()
 		c.Amplitude = Amplitude{Law: AmplitudeNone, Coupling: Overlay, Storage: nan, Loss: nan, Critical: nan, Exponent: nan, Activation: nan, Frequency: RateIndependent, ReferenceFrequency: nan}

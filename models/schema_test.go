@@ -21,10 +21,10 @@ const schemaID = "urn:phaselag:compound:1"
 var narrower = map[string]func(*generate.Schema){
 	"Compound.phaselag_compound": func(s *generate.Schema) { s.Minimum, s.Maximum = "1", "1" },
 	"Compound.modulus":           oneOf("shear", "young"),
-	"Shift.law":                  oneOf(LawWLF, LawArrhenius, LawNone),
+	"Shift.law":                  oneOf(LawWLF, LawArrhenius, LawCrossover, LawNone),
 	"Vertical.law":               oneOf(VerticalNone, VerticalDensity, VerticalFactors),
-	"Amplitude.law":              oneOf(AmplitudeNone, AmplitudeKraus),
-	"Amplitude.coupling":         oneOf(Overlay),
+	"Amplitude.law":              oneOf(AmplitudeNone, AmplitudeKraus, AmplitudeExtraLoss, AmplitudeMaierGoritz),
+	"Amplitude.coupling":         oneOf(Overlay, Scaling),
 
 	"Amplitude.frequency_dependence": oneOf(Causal, RateIndependent),
 	"Linear.equilibrium_modulus_MPa": func(s *generate.Schema) { s.Minimum = "0" },

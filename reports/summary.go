@@ -64,6 +64,8 @@ func compoundLines(line func(string, ...any), r *fitting.Result) {
 				line("shift       WLF at %.4g °C: C1 = %s, C2 = %s K", k.ReferenceC, plusMinusASCII(float64(k.C1), 1.96*float64(k.C1U)), plusMinusASCII(float64(k.C2), 1.96*float64(k.C2U)))
 			}
 		}
+	case models.LawCrossover:
+		line("shift       WLF at %.4g °C: C1 = %s, C2 = %s K; Arrhenius below %s °C", c.ReferenceTempC, parameterText(r, "C1"), parameterText(r, "C2"), parameterText(r, "crossover temperature"))
 	case models.LawArrhenius:
 		line("shift       Arrhenius: E_a = %s kJ/mol", parameterText(r, "activation energy of the shift"))
 	default:
@@ -83,8 +85,25 @@ func compoundLines(line func(string, ...any), r *fitting.Result) {
 		line("vertical    %s", c.Vertical.Law)
 	}
 	if c.Amplitude.Law != models.AmplitudeNone {
-		line("strain      Kraus, %s: ΔG' %s, ΔG'' %s MPa,", strings.ReplaceAll(c.Amplitude.Frequency, "_", " "), parameterText(r, "filler storage ΔG′"), parameterText(r, "filler loss ΔG″"))
-		line("            critical strain %s %%, m %s, E_a %s kJ/mol", parameterText(r, "critical strain"), parameterText(r, "Kraus exponent m"), parameterText(r, "filler activation energy"))
+		name := "filler"
+		for _, k := range r.Amplitude {
+			if k.Chosen {
+				name = k.Name
+			}
+		}
+		if c.Amplitude.Coupling == models.Scaling {
+			line("strain      %s: α %s, β %s,", name, parameterText(r, "filler storage ratio α"), parameterText(r, "filler loss ratio β"))
+		} else {
+			line("strain      %s: ΔG' %s, ΔG'' %s MPa,", name, parameterText(r, "filler storage ΔG′"), parameterText(r, "filler loss ΔG″"))
+		}
+		exponent := ""
+		if m := parameterText(r, "Kraus exponent m"); m != "–" {
+			exponent = ", m " + m
+		}
+		line("            critical strain %s %%%s, E_a %s kJ/mol", parameterText(r, "critical strain"), exponent, parameterText(r, "filler activation energy"))
+		if x := parameterText(r, "extra loss modulus"); x != "–" {
+			line("            extra loss %s MPa, falling with strain over %s %%", x, parameterText(r, "extra loss strain"))
+		}
 	}
 	line("")
 	line("%10s%10s%18s%18s%18s", "T / °C", "f / Hz", s+"' / MPa", s+"'' / MPa", "tan δ")

@@ -141,12 +141,15 @@ type Indices struct {
 	Activation int
 	Critical   int // ln γ_c
 	Exponent   int
+	Extra      int // ln γ_2
+	Alpha      int // α and β of a term that scales
+	Beta       int
 }
 
 // Indices tells where the parameters stand in θ.
 func (s *Solution) Indices() Indices {
 	l := &s.e.l
-	return Indices{Law: l.law, Activation: l.activation, Critical: l.critical, Exponent: l.exponent}
+	return Indices{Law: l.law, Activation: l.activation, Critical: l.critical, Exponent: l.exponent, Extra: l.extra, Alpha: l.alpha, Beta: l.beta}
 }
 
 // OffsetRoot is the root of the temperature offset of run j, K; nil where it

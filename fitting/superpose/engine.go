@@ -53,20 +53,19 @@ type engine struct {
 
 // rowState is what a row needs at θ.
 type rowState struct {
-	T                     float64 // with offset
-	a                     float64 // a_T
-	slope                 float64 // d log a_T/dT
-	b, bSlope             float64
-	phi, phiByEa, phiByT  float64 // φ, ∂φ/∂E_a (per kJ/mol), ∂φ/∂T
-	k1, k2                float64
-	k1c, k2c, k1m, k2m    float64
-	part                  float64 // what stands with ΔG''K2 in the storage (or relaxation) part
-	q                     complex128
-	polyRe, polyIm        float64 // filled by the Jacobian: Σ c_k …, in units of scale
-	polySlRe, polySlIm    float64
-	fillRe, fillIm        float64 // φF*
-	fillCritRe, fillExpRe float64
-	fillCritIm, fillExpIm float64
+	T                    float64 // with offset
+	a                    float64 // a_T
+	slope                float64 // d log a_T/dT
+	b, bSlope            float64
+	phi, phiByEa, phiByT float64 // φ, ∂φ/∂E_a (per kJ/mol), ∂φ/∂T
+	terms                amplitude.Terms
+	q                    complex128
+	polyRe, polyIm       float64 // filled by the Jacobian: Σ c_k …, in units of scale
+	polySlRe, polySlIm   float64
+	fill, fillCrit       complex128 // F* and its derivatives by ln γ_c,
+	fillExp, fillExtra   complex128 // m and ln γ_2; of a term that scales per unit of the polymer term
+	h                    complex128 // factor of the polymer term
+	dir                  complex128 // what stands with the loss moduli: part + i, or part alone in a relaxation
 }
 
 func newEngine(p *Problem, f *Form) *engine {
@@ -99,9 +98,7 @@ func newEngine(p *Problem, f *Form) *engine {
 		e.priors++
 	}
 	e.nc = 1 + len(f.Lattice)
-	if f.Filler {
-		e.nc += 2
-	}
+	e.nc += f.fillerColumns()
 	n := len(p.Rows)
 	e.denom = make([]complex128, n)
 	e.wRe, e.wIm = make([]float64, n), make([]float64, n)
@@ -146,10 +143,10 @@ func (e *engine) prepare(theta []float64) {
 		}
 		e.factors[l.nFactor] = math.Exp(-sum)
 	}
-	var kraus amplitude.Kraus
+	var law amplitude.Law
 	var ea float64
 	if f.Filler {
-		kraus = amplitude.Kraus{Critical: math.Exp(theta[l.critical]), Exponent: theta[l.exponent]}
+		law = f.amplitude(l, theta)
 		if l.activation >= 0 {
 			ea = theta[l.activation]
 		}
@@ -191,6 +188,7 @@ func (e *engine) prepare(theta []float64) {
 		if !r.Relaxation {
 			s.q *= turn
 		}
+		s.h = 1
 		if !f.Filler {
 			continue
 		}
@@ -198,11 +196,15 @@ func (e *engine) prepare(theta []float64) {
 		s.phi = math.Exp(ea * g)
 		s.phiByEa = s.phi * g
 		s.phiByT = -s.phi * ea * 1e3 / (thermal.GasConstant * s.T * s.T)
-		s.k1, s.k2, s.k1c, s.k2c, s.k1m, s.k2m = kraus.Slopes(r.Strain)
+		s.terms = law.Terms(r.Strain)
 		if r.Relaxation {
-			s.part = amplitude.RelaxationPart(f.Kappa, r.Time, p.F0)
+			s.dir = complex(amplitude.RelaxationPart(f.Kappa, r.Time, p.F0), 0)
 		} else {
-			s.part = amplitude.FrequencyPart(f.Kappa, r.Omega/(2*math.Pi), p.F0)
+			s.dir = complex(amplitude.FrequencyPart(f.Kappa, r.Omega/(2*math.Pi), p.F0), 1)
+		}
+		if f.Scaling {
+			s.scaling(theta[l.alpha], theta[l.beta])
+			s.h = 1 + complex(s.phi, 0)*s.fill
 		}
 	}
 }
@@ -219,14 +221,14 @@ func (e *engine) fill() {
 		ln := cmplx.Log(p.Rows[i].G / e.denom[i])
 		e.y[j], e.y[n+j] = e.wRe[i]*(real(ln)+1), e.wIm[i]*imag(ln)
 		s := &e.state[i]
-		q := s.q * complex(s.b*e.scale, 0)
+		q := s.q * s.h * complex(s.b*e.scale, 0)
 		re(0)[j], im(0)[j] = e.wRe[i]*real(q), e.wIm[i]*imag(q)
 	}
 	for j, i := range e.rel {
 		d := real(e.denom[i])
 		e.y[2*n+j] = e.wRe[i] * (math.Log(real(p.Rows[i].G)/d) + 1)
 		s := &e.state[i]
-		rel(0)[j] = e.wRe[i] * real(s.q) * s.b * e.scale
+		rel(0)[j] = e.wRe[i] * real(s.q*s.h) * s.b * e.scale
 	}
 	re0, im0 := re(0), im(0)
 	for k, tau := range e.f.Lattice {
@@ -251,22 +253,35 @@ func (e *engine) fill() {
 		}
 	}
 	e.fillPrior()
-	if !e.f.Filler {
-		return
+	for c := range e.f.fillerColumns() {
+		// Storage, loss and extra loss term.
+		share := func(s *rowState) complex128 {
+			switch c {
+			case 0:
+				return complex(s.terms.K1, 0)
+			case 1:
+				return complex(s.terms.K2, 0) * s.dir
+			}
+			return complex(s.terms.K3, 0) * s.dir
+		}
+		col := 1 + nl + c
+		for j, i := range e.osc {
+			s := &e.state[i]
+			v := s.q * complex(s.phi*e.scale, 0) * share(s)
+			re(col)[j], im(col)[j] = e.wRe[i]*real(v), e.wIm[i]*imag(v)
+		}
+		for j, i := range e.rel {
+			s := &e.state[i]
+			rel(col)[j] = e.wRe[i] * real(s.q*share(s)) * s.phi * e.scale
+		}
 	}
-	cs, cl := 1+nl, 2+nl
-	for j, i := range e.osc {
-		s := &e.state[i]
-		q := s.q * complex(s.phi*e.scale, 0)
-		re(cs)[j], im(cs)[j] = e.wRe[i]*real(q)*s.k1, e.wIm[i]*imag(q)*s.k1
-		v := q * complex(s.k2*s.part, s.k2)
-		re(cl)[j], im(cl)[j] = e.wRe[i]*real(v), e.wIm[i]*imag(v)
-	}
-	for j, i := range e.rel {
-		s := &e.state[i]
-		q := e.wRe[i] * real(s.q) * s.phi * e.scale
-		rel(cs)[j], rel(cl)[j] = q*s.k1, q*s.k2*s.part
-	}
+}
+
+// scaling writes the term that multiplies the polymer term and its derivatives.
+func (s *rowState) scaling(alpha, beta float64) {
+	t := &s.terms
+	mix := func(a, b float64) complex128 { return complex(alpha*a, 0) + complex(beta*b, 0)*s.dir }
+	s.fill, s.fillCrit, s.fillExp = mix(t.K1, t.K2), mix(t.K1Critical, t.K2Critical), mix(t.K1Exponent, t.K2Exponent)
 }
 
 // residual solves for the moduli at θ and writes the residual of all rows,
@@ -318,7 +333,9 @@ func (e *engine) sums() {
 	for i := range e.state {
 		s := &e.state[i]
 		s.polyRe, s.polyIm, s.polySlRe, s.polySlIm = e.c[0], 0, 0, 0
-		s.fillRe, s.fillIm = 0, 0
+		if !e.f.Scaling {
+			s.fill, s.fillCrit, s.fillExp, s.fillExtra = 0, 0, 0, 0
+		}
 	}
 	for k, tau := range e.f.Lattice {
 		c := e.c[1+k]
@@ -346,19 +363,22 @@ func (e *engine) sums() {
 			s.polySlIm += c * lo1
 		}
 	}
-	if !e.f.Filler {
+	n := e.f.fillerColumns()
+	if n == 0 {
 		return
 	}
-	cs, cl := e.c[1+nl], e.c[2+nl]
+	var c [3]complex128
+	for k := range n {
+		c[k] = complex(e.c[1+nl+k], 0)
+	}
 	for i := range e.state {
 		s := &e.state[i]
-		loss := 1.0
-		if e.p.Rows[i].Relaxation {
-			loss = 0
+		t := &s.terms
+		mix := func(a, b, x float64) complex128 {
+			return c[0]*complex(a, 0) + (c[1]*complex(b, 0)+c[2]*complex(x, 0))*s.dir
 		}
-		s.fillRe, s.fillIm = cs*s.k1+cl*s.k2*s.part, cl*s.k2*loss
-		s.fillCritRe, s.fillCritIm = cs*s.k1c+cl*s.k2c*s.part, cl*s.k2c*loss
-		s.fillExpRe, s.fillExpIm = cs*s.k1m+cl*s.k2m*s.part, cl*s.k2m*loss
+		s.fill, s.fillCrit = mix(t.K1, t.K2, t.K3), mix(t.K1Critical, t.K2Critical, 0)
+		s.fillExp, s.fillExtra = mix(t.K1Exponent, t.K2Exponent, 0), mix(0, 0, t.K3Extra)
 	}
 }
 
@@ -370,6 +390,12 @@ func (e *engine) model(i int) complex128 {
 	if e.l.phase >= 0 && !e.p.Rows[i].Relaxation {
 		turn = cmplx.Rect(1, e.theta[e.l.phase])
 	}
-	return turn * complex(e.factors[e.p.Rows[i].Factor]*e.scale, 0) *
-		complex(s.b*s.polyRe+s.phi*s.fillRe, s.b*s.polyIm+s.phi*s.fillIm)
+	poly := complex(s.b*s.polyRe, s.b*s.polyIm) * s.h
+	if !e.f.Scaling {
+		poly += complex(s.phi, 0) * s.fill
+	}
+	if e.p.Rows[i].Relaxation {
+		poly = complex(real(poly), 0)
+	}
+	return turn * complex(e.factors[e.p.Rows[i].Factor]*e.scale, 0) * poly
 }

@@ -8,6 +8,7 @@ import (
 	"testing"
 
 	"phaselag/data/demo"
+	"phaselag/models/amplitude"
 )
 
 // laboratory makes a Problem from a simulated compound: isotherms from −40 to
@@ -78,7 +79,7 @@ func TestExact(t *testing.T) {
 			p.Runs[i].U = 0
 		}
 		f := l.form(p)
-		st := Start{Filler: FillerStart{5, 0.01, 0.6}}
+		st := Start{Filler: FillerStart{Activation: 5, Critical: 0.01, Exponent: 0.6}}
 		st.WLF.C1, st.WLF.C2, st.WLF.Reference = 8, 120, p.Reference
 		law, err := Fit(p, f, st)
 		if err != nil {
@@ -118,13 +119,21 @@ func TestJacobian(t *testing.T) {
 	l := laboratory{truth: demo.HM60(), sweeps: true, sigmaM: 0.02, sigmaD: 0.02, scatter: 0.3, factor: 0.015}
 	p := l.problem(3)
 	p.UPhase = 0.001
-	for _, law := range []Law{WLF, Factors, Arrhenius} {
-		for _, v := range []Vertical{NoVertical, Density, Free} {
+	for _, law := range []Law{WLF, Factors, Arrhenius, Crossover} {
+		for n, v := range []Vertical{NoVertical, Density, Free, NoVertical, Density} {
 			f := l.form(p)
 			f.Law, f.Vertical, f.Expansion = law, v, 6.6e-4
+			f.Amplitude, f.Scaling = amplitude.Kind(n%3), n >= 3
+			if n == 2 {
+				f.Prior = Prior{Level: make([]float64, len(f.Lattice)), Spread: 0.1}
+				for k := range f.Lattice {
+					f.Prior.Level[k] = 1e5
+				}
+			}
 			e := newEngine(p, &f)
-			s := Start{Activation: 90e3, Filler: FillerStart{5, 0.02, 0.6}}
+			s := Start{Activation: 90e3, Filler: FillerStart{Activation: 5, Critical: 0.02, Exponent: 0.6}}
 			s.WLF.C1, s.WLF.C2, s.WLF.Reference = 6, 150, p.Reference
+			s.Cross = 250
 			for _, T := range p.Knots {
 				s.LogShift = append(s.LogShift, s.WLF.LogShift(T))
 			}
@@ -153,7 +162,7 @@ func TestJacobian(t *testing.T) {
 				}
 				want := (side(h) - side(-h)) / (2 * h)
 				if math.Abs(got-want) > 1e-4*(math.Abs(want)+1e-3*squares(r)) {
-					t.Errorf("%v, %v, parameter %d: gradient %g, by differences %g", law, v, k, got, want)
+					t.Errorf("%v, %v, %v, parameter %d: gradient %g, by differences %g", law, v, f.Amplitude, k, got, want)
 				}
 			}
 		}

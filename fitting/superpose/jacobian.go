@@ -39,7 +39,8 @@ func (e *engine) derivatives() {
 			d.column = append(d.column, col)
 			d.value = append(d.value, complex(wRe*real(v), wIm*imag(v)))
 		}
-		poly, slope := complex(s.polyRe, s.polyIm), complex(s.polySlRe, s.polySlIm)
+		bare := complex(s.polyRe, s.polyIm)
+		poly, slope := bare*s.h, complex(s.polySlRe, s.polySlIm)*s.h
 		byLog := complex(thermal.Ln10*s.b, 0) * slope
 		if l.nLaw > 0 {
 			e.law.Gradient(s.T, d.lawG)
@@ -60,13 +61,21 @@ func (e *engine) derivatives() {
 				}
 			}
 		}
-		fill := complex(s.fillRe, s.fillIm)
+		// The filler term, and what its shapes multiply.
+		fill, per := s.fill, complex(1, 0)
+		if e.f.Scaling {
+			per = complex(s.b, 0) * bare
+			fill *= per
+		}
 		if o := l.offset[r.Run]; o >= 0 && e.p.Runs[r.Run].Decades {
 			add(o, byLog)
 		} else if o >= 0 {
 			add(o, byLog*complex(s.slope, 0)+complex(s.bSlope, 0)*poly+complex(s.phiByT, 0)*fill)
 		}
-		whole := complex(s.b, 0)*poly + complex(s.phi, 0)*fill
+		whole := complex(s.b, 0) * poly
+		if !e.f.Scaling {
+			whole += complex(s.phi, 0) * fill
+		}
 		if l.phase >= 0 && !r.Relaxation {
 			add(l.phase, whole*1i)
 		}
@@ -83,8 +92,18 @@ func (e *engine) derivatives() {
 			add(l.activation, complex(s.phiByEa, 0)*fill)
 		}
 		if l.critical >= 0 {
-			add(l.critical, complex(s.phi*s.fillCritRe, s.phi*s.fillCritIm))
-			add(l.exponent, complex(s.phi*s.fillExpRe, s.phi*s.fillExpIm))
+			phi := complex(s.phi, 0) * per
+			add(l.critical, phi*s.fillCrit)
+			if l.exponent >= 0 {
+				add(l.exponent, phi*s.fillExp)
+			}
+			if l.extra >= 0 {
+				add(l.extra, phi*s.fillExtra)
+			}
+			if l.alpha >= 0 {
+				add(l.alpha, phi*complex(s.terms.K1, 0))
+				add(l.beta, phi*complex(s.terms.K2, 0)*s.dir)
+			}
 		}
 	}
 	d.start = append(d.start, len(d.column))

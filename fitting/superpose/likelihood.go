@@ -47,7 +47,13 @@ func (s *Solution) Constants() int {
 		k++
 	}
 	if s.e.l.critical >= 0 {
-		k += 4 // γ_c, m and the two moduli
+		k += 3 // γ_c and the two moduli, or α and β
+	}
+	if s.e.l.exponent >= 0 {
+		k++
+	}
+	if s.e.l.extra >= 0 {
+		k += 2 // γ_2 and the modulus
 	}
 	return k
 }

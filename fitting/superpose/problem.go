@@ -3,6 +3,7 @@ package superpose
 import (
 	"math"
 
+	"phaselag/models/amplitude"
 	"phaselag/models/thermal"
 )
 
@@ -48,10 +49,13 @@ const (
 	Factors   Law = iota // one shift factor a tested temperature
 	WLF                  // Williams–Landel–Ferry
 	Arrhenius            // Arrhenius
+	Crossover            // WLF above a temperature, Arrhenius below
 	OneTemp              // a single temperature: nothing to shift
 )
 
-func (l Law) String() string { return [...]string{"none", "WLF", "Arrhenius", "one temperature"}[l] }
+func (l Law) String() string {
+	return [...]string{"none", "WLF", "Arrhenius", "WLF+Arrhenius", "one temperature"}[l]
+}
 
 // Vertical is a vertical shift of the polymer term.
 type Vertical int
@@ -96,10 +100,14 @@ func sineSquare(delta float64) float64 {
 
 // Form is a model without its numbers.
 type Form struct {
-	Law        Law
-	Vertical   Vertical
-	Expansion  float64   // 1/K, for Density
-	Filler     bool      // with the amplitude term
+	Law       Law
+	Vertical  Vertical
+	Expansion float64 // 1/K, for Density
+	Filler    bool    // with the amplitude term
+	Amplitude amplitude.Kind
+	// Scaling: the amplitude term multiplies the polymer term by
+	// 1 + φ(T)[α K1 + β K2 (i + κ (2/π) ln(f/f0))] instead of being added to it.
+	Scaling    bool
 	Activation bool      // its temperature dependence is fitted, not zero
 	Kappa      float64   // 1 causal, 0 rate-independent
 	Lattice    []float64 // τ_k, s, rising
@@ -119,6 +127,8 @@ type layout struct {
 	activation     int
 	critical       int
 	exponent       int
+	extra          int // ln γ_2 of the extra loss
+	alpha, beta    int // of a term that scales
 	n              int
 }
 
@@ -135,7 +145,7 @@ func (p *Problem) anchor() int {
 }
 
 func (p *Problem) layout(f *Form) layout {
-	l := layout{law: -1, vertical: -1, factor: -1, phase: -1, activation: -1, critical: -1, exponent: -1}
+	l := layout{law: -1, vertical: -1, factor: -1, phase: -1, activation: -1, critical: -1, exponent: -1, extra: -1, alpha: -1, beta: -1}
 	take := func(n int) int {
 		at := l.n
 		l.n += n
@@ -148,6 +158,8 @@ func (p *Problem) layout(f *Form) layout {
 		l.nLaw = 2
 	case Arrhenius:
 		l.nLaw = 1
+	case Crossover:
+		l.nLaw = 3
 	}
 	if l.nLaw > 0 {
 		l.law = take(l.nLaw)
@@ -174,7 +186,16 @@ func (p *Problem) layout(f *Form) layout {
 		if f.Activation {
 			l.activation = take(1)
 		}
-		l.critical, l.exponent = take(1), take(1)
+		l.critical = take(1)
+		if f.Amplitude != amplitude.MaierGoritz {
+			l.exponent = take(1)
+		}
+		if f.Amplitude == amplitude.ExtraLoss && !f.Scaling {
+			l.extra = take(1)
+		}
+		if f.Scaling {
+			l.alpha, l.beta = take(1), take(1)
+		}
 	}
 	return l
 }
@@ -228,6 +249,8 @@ func (p *Problem) law(f *Form, l *layout, theta []float64) thermal.Law {
 		return thermal.WLF{C1: theta[l.law], C2: theta[l.law+1], Reference: p.Reference}
 	case Arrhenius:
 		return thermal.Arrhenius{Activation: 1e3 * theta[l.law], Reference: p.Reference}
+	case Crossover:
+		return thermal.Crossover{WLF: thermal.WLF{C1: theta[l.law], C2: theta[l.law+1], Reference: p.Reference}, Cross: theta[l.law+2]}
 	case Factors:
 		if l.nLaw > 0 {
 			return p.anchored(theta[l.law : l.law+l.nLaw])
@@ -253,6 +276,10 @@ func (p *Problem) bounds(f *Form, l *layout) (lower, upper []float64) {
 		lower[l.law+1], upper[l.law+1] = p.Reference-cold+8, 5000
 	case Arrhenius:
 		lower[l.law], upper[l.law] = 0.1, 2000
+	case Crossover:
+		lower[l.law], upper[l.law] = 0.05, 200
+		lower[l.law+1], upper[l.law+1] = 5, 5000
+		lower[l.law+2], upper[l.law+2] = cold, p.Reference
 	case Factors:
 		for i := range l.nLaw {
 			lower[l.law+i], upper[l.law+i] = -30, 30
@@ -280,10 +307,43 @@ func (p *Problem) bounds(f *Form, l *layout) (lower, upper []float64) {
 	}
 	if l.critical >= 0 {
 		lower[l.critical], upper[l.critical] = math.Log(1e-6), math.Log(10)
+	}
+	if l.exponent >= 0 {
 		lower[l.exponent], upper[l.exponent] = 0.1, 2
+	}
+	if l.extra >= 0 {
+		lower[l.extra], upper[l.extra] = math.Log(1e-6), math.Log(10)
+	}
+	if l.alpha >= 0 {
+		lower[l.alpha], upper[l.alpha] = 0, 100
+		lower[l.beta], upper[l.beta] = 0, 100
 	}
 	if l.activation >= 0 {
 		lower[l.activation], upper[l.activation] = -20, 100
 	}
 	return lower, upper
+}
+
+// amplitude builds the amplitude law at θ.
+func (f *Form) amplitude(l *layout, theta []float64) amplitude.Law {
+	out := amplitude.Law{Kind: f.Amplitude, Critical: math.Exp(theta[l.critical])}
+	if l.exponent >= 0 {
+		out.Exponent = theta[l.exponent]
+	}
+	if l.extra >= 0 {
+		out.Extra = math.Exp(theta[l.extra])
+	}
+	return out
+}
+
+// fillerColumns is the number of linear moduli of the filler term: storage, loss
+// and extra loss.
+func (f *Form) fillerColumns() int {
+	switch {
+	case !f.Filler || f.Scaling:
+		return 0
+	case f.Amplitude == amplitude.ExtraLoss:
+		return 3
+	}
+	return 2
 }

@@ -117,11 +117,14 @@ func (s *Solution) Value(f, T, strain float64) complex128 {
 	if !s.Form.Filler {
 		return g
 	}
-	critical, exponent := s.Kraus()
-	k1, k2 := amplitude.Kraus{Critical: critical, Exponent: exponent}.Shape(strain)
+	k1, k2, k3 := s.Form.amplitude(&s.e.l, s.Theta).Shares(strain)
 	phi := math.Exp(s.Activation() * 1e3 / thermal.GasConstant * (1/T - 1/s.Problem.Reference))
-	part := amplitude.FrequencyPart(s.Form.Kappa, f, s.Problem.F0)
-	return g + complex(phi*(s.FillerStorage*k1+s.FillerLoss*k2*part), phi*s.FillerLoss*k2)
+	loss := s.FillerLoss*k2 + s.FillerExtra*k3
+	term := complex(phi, 0) * (complex(s.FillerStorage*k1, 0) + complex(loss, 0)*complex(amplitude.FrequencyPart(s.Form.Kappa, f, s.Problem.F0), 1))
+	if s.Form.Scaling {
+		return g * (1 + term)
+	}
+	return g + term
 }
 
 // Polymer is the fitted polymer term at the reference temperature, Pa, at a

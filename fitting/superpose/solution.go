@@ -12,6 +12,7 @@ import (
 type Start struct {
 	WLF        thermal.WLF // for the law WLF
 	Activation float64     // J/mol, for the law Arrhenius
+	Cross      float64     // K, for the law Crossover
 	LogShift   []float64   // per knot, for the law Factors
 	Filler     FillerStart
 }
@@ -21,6 +22,9 @@ type FillerStart struct {
 	Activation float64 // kJ/mol
 	Critical   float64 // m/m
 	Exponent   float64
+	Extra      float64 // γ_2, m/m; 0: a tenth of Critical
+	// Alpha and Beta of a term that scales; 0: 0.3 and 0.05.
+	Alpha, Beta float64
 }
 
 // Solution is a fitted Form.
@@ -32,7 +36,8 @@ type Solution struct {
 	// FillerLoss are the moduli in Pa.
 	Equilibrium               float64
 	Branches                  []float64
-	FillerStorage, FillerLoss float64
+	FillerStorage, FillerLoss float64 // of a term that scales: α and β, without unit
+	FillerExtra               float64 // ΔG of the extra loss, Pa
 	Objective                 float64 // squared weighted residuals, prior rows with them
 	Iterations, Evaluations   int
 
@@ -50,6 +55,8 @@ func (p *Problem) theta(f *Form, l *layout, s Start) []float64 {
 		t[l.law], t[l.law+1] = s.WLF.C1, s.WLF.C2
 	case Arrhenius:
 		t[l.law] = s.Activation / 1e3
+	case Crossover:
+		t[l.law], t[l.law+1], t[l.law+2] = s.WLF.C1, s.WLF.C2, s.Cross
 	case Factors:
 		a, k := p.anchor(), 0
 		for i, v := range s.LogShift {
@@ -63,7 +70,22 @@ func (p *Problem) theta(f *Form, l *layout, s Start) []float64 {
 		t[l.activation] = s.Filler.Activation
 	}
 	if l.critical >= 0 {
-		t[l.critical], t[l.exponent] = math.Log(s.Filler.Critical), s.Filler.Exponent
+		t[l.critical] = math.Log(s.Filler.Critical)
+	}
+	or := func(v, otherwise float64) float64 {
+		if v > 0 {
+			return v
+		}
+		return otherwise
+	}
+	if l.exponent >= 0 {
+		t[l.exponent] = or(s.Filler.Exponent, 0.6)
+	}
+	if l.extra >= 0 {
+		t[l.extra] = math.Log(or(s.Filler.Extra, s.Filler.Critical/10))
+	}
+	if l.alpha >= 0 {
+		t[l.alpha], t[l.beta] = or(s.Filler.Alpha, 0.3), or(s.Filler.Beta, 0.05)
 	}
 	lower, upper := p.bounds(f, l)
 	for i := range t {
@@ -142,9 +164,15 @@ func (s *Solution) settle() {
 	for k := range nl {
 		s.Branches[k] = e.c[1+k] * e.scale
 	}
-	s.FillerStorage, s.FillerLoss = 0, 0
-	if s.Form.Filler {
+	s.FillerStorage, s.FillerLoss, s.FillerExtra = 0, 0, 0
+	switch n := s.Form.fillerColumns(); {
+	case s.Form.Filler && s.Form.Scaling:
+		s.FillerStorage, s.FillerLoss = s.Theta[e.l.alpha], s.Theta[e.l.beta]
+	case n >= 2:
 		s.FillerStorage, s.FillerLoss = e.c[1+nl]*e.scale, e.c[2+nl]*e.scale
+		if n == 3 {
+			s.FillerExtra = e.c[3+nl] * e.scale
+		}
 	}
 }
 
@@ -208,13 +236,26 @@ func (s *Solution) Activation() float64 {
 	return s.Theta[s.e.l.activation]
 }
 
-// Kraus is the fitted critical strain, m/m, and exponent.
+// Kraus is the fitted critical strain, m/m, and exponent; NaN where the form has
+// none.
 func (s *Solution) Kraus() (critical, exponent float64) {
 	l := &s.e.l
 	if l.critical < 0 {
 		return math.NaN(), math.NaN()
 	}
-	return math.Exp(s.Theta[l.critical]), s.Theta[l.exponent]
+	critical, exponent = math.Exp(s.Theta[l.critical]), math.NaN()
+	if l.exponent >= 0 {
+		exponent = s.Theta[l.exponent]
+	}
+	return critical, exponent
+}
+
+// ExtraStrain is γ_2 of the extra loss, m/m; NaN where there is none.
+func (s *Solution) ExtraStrain() float64 {
+	if s.e.l.extra < 0 {
+		return math.NaN()
+	}
+	return math.Exp(s.Theta[s.e.l.extra])
 }
 
 // Start gives the solution as a start for a form with any law.
@@ -226,12 +267,20 @@ func (s *Solution) Start() Start {
 	switch law := s.e.law.(type) {
 	case thermal.WLF:
 		st.WLF = law
+	case thermal.Crossover:
+		st.WLF, st.Cross = law.WLF, law.Cross
 	default:
 		st.WLF = BestWLF(s.Problem.Knots, st.LogShift, s.Problem.Reference)
 	}
 	st.Activation = BestArrhenius(s.Problem.Knots, st.LogShift, s.Problem.Reference)
 	st.Filler.Activation = s.Activation()
 	st.Filler.Critical, st.Filler.Exponent = s.Kraus()
+	if x := s.ExtraStrain(); x > 0 {
+		st.Filler.Extra = x
+	}
+	if s.Form.Filler && s.Form.Scaling {
+		st.Filler.Alpha, st.Filler.Beta = s.FillerStorage, s.FillerLoss
+	}
 	return st
 }
 

@@ -155,7 +155,7 @@ func TestSign(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		w := anyWLF(t)
 		laws := []Law{w, Arrhenius{Activation: rapid.Float64Range(1e3, 4e5).Draw(t, "E"), Reference: w.Reference}}
-		cold := w.Reference - w.C2*rapid.Float64Range(0.001, 0.95).Draw(t, "cold")
+		cold := max(20, w.Reference-w.C2*rapid.Float64Range(0.001, 0.95).Draw(t, "cold"))
 		warm := w.Reference + rapid.Float64Range(0.1, 200).Draw(t, "warm")
 		for _, l := range laws {
 			if !(l.LogShift(cold) > 0) || !(l.LogShift(warm) < 0) {
