@@ -112,6 +112,7 @@ func (r *Result) noNil() {
 	empty(&r.Isotherms)
 	empty(&r.Causality)
 	empty(&r.Bootstrap.Rows)
+	empty(&r.Compact)
 	empty(&r.Fixed)
 	empty(&r.Points)
 	empty(&r.Findings)
@@ -281,6 +282,7 @@ func (a *answer) fill(r *Result) {
 	}
 	r.Causality = a.causality
 	a.bootstrap(r)
+	a.compacted(r)
 	if a.freeUp != nil {
 		span, u := a.freeSpan()
 		r.Common.FreeVertical, r.Common.FreeVerticalU = number(span), number(u)

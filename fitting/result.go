@@ -32,6 +32,8 @@ type Result struct {
 	Common      Misfit             `json:"common_curve_misfit"`
 	Causality   []Causality        `json:"causality"`
 	Bootstrap   Bootstrap          `json:"bootstrap"`
+	Compact     []CompactModel     `json:"compact_models"`
+	Few         *FewBranches       `json:"few_branches"` // null where there is no master curve
 	Fixed       []FixedFrequency   `json:"fixed_frequency"`
 	Points      []Point            `json:"points"`
 	Findings    []data.Finding     `json:"findings"`

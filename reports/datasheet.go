@@ -280,11 +280,15 @@ func constants(r *fitting.Result) figure.Section {
 	rivals := Candidates(r)
 	if len(rivals.Rows) > 0 {
 		g := figure.GridOf(rivals, "Rival forms on the same data, noise and relaxation times; differences below 2 are no difference")
+		for _, row := range g.Rows {
+			row[0] = strings.TrimSuffix(row[0], " law")
+		}
 		for j := range g.Columns {
 			g.Columns[j].Heading = []string{"Part", "Form", "Constants", "AICc", "Difference", "Used", "Note"}[j]
 		}
 		blocks = append(blocks, g)
 	}
+	blocks = append(blocks, compactBlocks(r)...)
 	noise := figure.Grid{Caption: "Noise found in the measurements", Columns: []figure.GridColumn{{Heading: "Tests"}, {Heading: "Magnitude", Unit: "%"}, {Heading: "Phase", Unit: "°"}}}
 	for _, n := range r.Noise {
 		noise.Rows = append(noise.Rows, []string{n.Kind, optional(roundTo(float64(n.Magnitude), 2)), optional(roundTo(float64(n.Phase), 2))})

@@ -168,6 +168,12 @@ func csvFiles(r *fitting.Result) ([]file, error) {
 	if len(r.Causality) > 0 {
 		list = append(list, named{"causality", CausalityTable(r)})
 	}
+	if len(r.Compact) > 0 {
+		list = append(list, named{"compact-models", CompactTable(r)})
+	}
+	if r.Few != nil && len(r.Few.Branches) > 0 {
+		list = append(list, named{"few-branches", FewBranchesTable(r)})
+	}
 	if len(r.Bootstrap.Rows) > 0 {
 		list = append(list, named{"bootstrap", BootstrapTable(r)})
 	}
