@@ -3,6 +3,7 @@ package fitting
 import (
 	"fmt"
 	"math"
+	"sort"
 
 	"phaselag/data"
 	"phaselag/fitting/superpose"
@@ -72,7 +73,16 @@ func (a *answer) chooseAmplitude(first *superpose.Solution) error {
 		return nil
 	}
 	var rivals []rival
-	for _, form := range a.amplitudeForms() {
+	// Kraus with both frequency dependences decides which of them the other forms
+	// are tried with.
+	forms := a.amplitudeForms()
+	plain := func(f superpose.Form) bool { return f.Filler && f.Amplitude == amplitude.OfKraus && !f.Scaling }
+	sort.SliceStable(forms, func(i, j int) bool { return plain(forms[i]) && !plain(forms[j]) })
+	kappa, least := math.NaN(), math.Inf(1)
+	for _, form := range forms {
+		if form.Filler && !plain(form) && !math.IsNaN(kappa) && form.Kappa != kappa {
+			continue
+		}
 		f := best.Form
 		f.Filler, f.Kappa, f.Amplitude, f.Scaling = form.Filler, form.Kappa, form.Amplitude, form.Scaling
 		f.Activation = best.Form.Activation && f.Filler
@@ -83,6 +93,9 @@ func (a *answer) chooseAmplitude(first *superpose.Solution) error {
 			}
 		}
 		rivals = append(rivals, rival{name: amplitudeName(f), s: s})
+		if v := s.AICc(); plain(f) && v < least {
+			kappa, least = f.Kappa, v
+		}
 	}
 	if len(rivals) == 0 {
 		return nil

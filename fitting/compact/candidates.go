@@ -4,6 +4,7 @@ import (
 	"errors"
 	"math"
 	"math/cmplx"
+	"sort"
 
 	"phaselag/fitting/lsq"
 	"phaselag/models/linear"
@@ -201,6 +202,11 @@ func (f *form) problem(points []Point) lsq.Problem {
 	}
 }
 
+const (
+	startPoints = 40 // points on which the starts are tried
+	goOn        = 2  // starts that go on with all points
+)
+
 // fit searches from several starts: the glassy modulus at the end of the points or
 // decades beyond it, the relaxation time before, at and beyond their fast end.
 func (f *form) fit(points []Point, lo, hi float64) Fit {
@@ -208,21 +214,39 @@ func (f *form) fit(points []Point, lo, hi float64) Fit {
 	for _, p := range points {
 		low, high = min(low, cmplx.Abs(p.G)), max(high, cmplx.Abs(p.G))
 	}
-	problem := f.problem(points)
-	var best *lsq.Result
+	// The starts are tried on a few of the points; the best few go on with all.
+	few := points
+	if step := len(points) / startPoints; step > 1 {
+		few = nil
+		for i := 0; i < len(points); i += step {
+			few = append(few, points[i])
+		}
+	}
+	type try struct {
+		x    []float64
+		norm float64
+	}
+	var tries []try
+	coarse := f.problem(few)
 	for _, above := range []float64{1.2, 10, 300} {
 		for _, decades := range []float64{-2, 0, 3} {
 			for _, alpha := range []float64{0.35, 0.65} {
 				x := f.start(0.9*low, above*high, -math.Log(hi)-decades*math.Ln10, alpha)
-				res, err := lsq.Solve(problem, x, &lsq.Settings{MaxEvaluations: 300})
-				if err != nil || math.IsNaN(res.Norm) {
-					continue
-				}
-				if best == nil || res.Norm < best.Norm*(1-1e-9) {
-					c := res.Clone()
-					best = &c
+				res, err := lsq.Solve(coarse, x, &lsq.Settings{MaxEvaluations: 60, FunctionTol: 1e-6})
+				if err == nil && !math.IsNaN(res.Norm) {
+					tries = append(tries, try{append([]float64(nil), res.X...), res.Norm})
 				}
 			}
+		}
+	}
+	sort.SliceStable(tries, func(i, j int) bool { return tries[i].norm < tries[j].norm })
+	problem := f.problem(points)
+	var best *lsq.Result
+	for _, t := range tries[:min(len(tries), goOn)] {
+		res, err := lsq.Solve(problem, t.x, &lsq.Settings{MaxEvaluations: 300})
+		if err == nil && !math.IsNaN(res.Norm) && (best == nil || res.Norm < best.Norm*(1-1e-9)) {
+			c := res.Clone()
+			best = &c
 		}
 	}
 	out := Fit{Name: f.name, AICc: math.Inf(1)}
