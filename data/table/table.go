@@ -206,3 +206,33 @@ func (t *Table) Headings() []string {
 func Quote(s string) string {
 	return `"` + strings.NewReplacer(`\`, `\\`, `"`, `\"`).Replace(clip(s)) + `"`
 }
+
+// Plain gives the number in a row's column as it stands in the file, without its
+// unit; NaN where the cell is empty or says that nothing was measured.
+func (t *Table) Plain(r Row, column int) (float64, error) {
+	if column >= len(r.Cells) {
+		return math.NaN(), nil
+	}
+	return t.number(r.Cells[column])
+}
+
+// Rough splits the first lines of a text into cells without understanding them, for
+// a look at what cannot be read.
+func Rough(content []byte, lines int) (encoding, separator string, rows [][]Cell, err error) {
+	text, encoding, err := decode(content)
+	if err != nil {
+		return "", "", nil, err
+	}
+	text = newlines(text)
+	separator = sniff(text)
+	all, err := grid(text, separator)
+	if err != nil {
+		return "", "", nil, err
+	}
+	for _, r := range all {
+		if len(r) > 0 && len(rows) < lines {
+			rows = append(rows, r)
+		}
+	}
+	return encoding, separator, rows, nil
+}

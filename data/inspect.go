@@ -1,0 +1,205 @@
+package data
+
+import (
+	"fmt"
+	"math"
+	"path"
+	"path/filepath"
+	"strings"
+
+	"phaselag/data/place"
+	"phaselag/data/table"
+	"phaselag/data/unit"
+)
+
+// Inspection says how a table was understood, before anything is made of it.
+type Inspection struct {
+	File       string
+	Encoding   string
+	Separator  string // "," or ";", "tabulator", "blanks"
+	Decimal    string // "." or ","
+	HeaderLine int    // from 1; 0: none
+	UnitsLine  int    // 0: none of its own
+	FirstLine  int    // of the first row of numbers
+	Rows       int
+	Blocks     int // parts told apart by blank lines or repeated headings
+	Columns    []InspectedColumn
+	// Kind and Runs are what would be made of the file alone; Kind is "" and Refused
+	// says why where it would be refused.
+	Kind    Kind
+	Runs    []Run
+	Refused error
+	// First holds the first lines, split into cells, of a file without headings that
+	// are understood; nil otherwise.
+	First [][]string
+	// Snippet is the entry of a campaign file that reads the file as it was
+	// understood, to be corrected where that is wrong.
+	Snippet     string
+	Assumptions []string
+}
+
+// InspectedColumn is one column of the file.
+type InspectedColumn struct {
+	Number   int // from 1
+	Heading  string
+	Quantity string // "" if the heading was not understood
+	Unit     string // as written; "" if none
+	Known    bool   // the unit belongs to the quantity
+	First    []string
+	Empty    int     // cells without text
+	Text     bool    // no numbers
+	Min, Max float64 // of the numbers as they stand in the file; NaN if there are none
+}
+
+// firstValues is how many values of a column are shown.
+const firstValues = 3
+
+// Inspect reads one table and says how it was understood. The error is that of
+// reading the table itself; what the headings do not say is in Refused.
+func Inspect(name string) (*Inspection, error) {
+	if isCampaign(name) {
+		return nil, &place.Error{File: name, What: "is a campaign file by its name, not a table", Hint: "phaselag check shows how a campaign and its tables were understood"}
+	}
+	s := &source{}
+	content, err := s.read(name, path.Base(filepath.ToSlash(name)))
+	if err != nil {
+		return nil, err
+	}
+	t, err := table.Read(name, content, table.Settings{})
+	if err != nil {
+		return rough(name, content, err)
+	}
+	in := &Inspection{
+		File: name, Encoding: t.Encoding, Separator: separatorName(t.Separator), Decimal: t.Decimal,
+		HeaderLine: t.HeaderLine, UnitsLine: t.UnitsLine, Rows: len(t.Rows), FirstLine: t.Rows[0].Line,
+		Blocks: t.Rows[len(t.Rows)-1].Block + 1, Assumptions: t.Assumptions,
+	}
+	for i := range t.Columns {
+		in.Columns = append(in.Columns, inspectColumn(t, i))
+	}
+	c, err := Open(name)
+	if err != nil {
+		in.Refused = err
+	} else {
+		in.Kind, in.Runs = c.Tests[0].Kind, c.Tests[0].Runs
+		for _, a := range c.Assumptions {
+			if !contains(in.Assumptions, a) {
+				in.Assumptions = append(in.Assumptions, a)
+			}
+		}
+	}
+	in.Snippet = in.snippet(t)
+	return in, nil
+}
+
+// roughLines is how many lines of a file are shown that cannot be read.
+const roughLines = 8
+
+// rough shows a text that is not understood; what is no text at all is an error.
+func rough(name string, content []byte, cause error) (*Inspection, error) {
+	encoding, separator, rows, err := table.Rough(content, roughLines)
+	if err != nil || len(rows) == 0 {
+		return nil, cause
+	}
+	in := &Inspection{File: name, Encoding: encoding, Separator: separatorName(separator), Decimal: "?", Refused: cause}
+	for _, r := range rows {
+		cells := []string{fmt.Sprint(r[0].Line)}
+		for _, c := range r {
+			cells = append(cells, c.Text)
+		}
+		in.First = append(in.First, cells)
+	}
+	sep := strings.NewReplacer("\t", `\t`).Replace(separator)
+	in.Snippet = fmt.Sprintf("tests:\n  - name: %s\n    kind: frequency sweep\n    file: %s\n    reading: {separator: \"%s\", header_row: %s}\n    columns:\n      frequency: {column: 1, unit: Hz}\n      storage modulus: {column: 2, unit: MPa}\n      loss modulus: {column: 3, unit: MPa}\n",
+		table.Quote(stem(name)), table.Quote(path.Base(filepath.ToSlash(name))), sep, "none")
+	return in, nil
+}
+
+func separatorName(s string) string {
+	switch s {
+	case "\t":
+		return "tabulator"
+	case " ":
+		return "blanks"
+	}
+	return s
+}
+
+func inspectColumn(t *table.Table, i int) InspectedColumn {
+	col := t.Columns[i]
+	out := InspectedColumn{Number: i + 1, Heading: col.Heading, Quantity: string(col.Concept), Unit: col.UnitText, Known: col.HasUnit, Min: math.NaN(), Max: math.NaN()}
+	numbers, texts := 0, 0
+	for _, r := range t.Rows {
+		text := t.Text(r, i)
+		if text == "" {
+			out.Empty++
+			continue
+		}
+		if len(out.First) < firstValues {
+			out.First = append(out.First, text)
+		}
+		x, err := t.Plain(r, i)
+		if err != nil || math.IsNaN(x) || math.IsInf(x, 0) {
+			texts++
+			continue
+		}
+		numbers++
+		if numbers == 1 {
+			out.Min, out.Max = x, x
+		}
+		out.Min, out.Max = min(out.Min, x), max(out.Max, x)
+	}
+	out.Text = numbers == 0 && texts > 0
+	return out
+}
+
+// snippet writes the campaign entry.
+func (in *Inspection) snippet(t *table.Table) string {
+	var b strings.Builder
+	kind := in.Kind
+	if kind == "" {
+		kind = FrequencySweep
+	}
+	base := path.Base(filepath.ToSlash(in.File))
+	fmt.Fprintf(&b, "tests:\n  - name: %s\n    kind: %s\n    file: %s\n", table.Quote(stem(in.File)), kind, table.Quote(base))
+	sep := strings.NewReplacer("\t", `\t`).Replace(t.Separator)
+	fmt.Fprintf(&b, "    reading: {separator: %q, decimal: %q", "S", t.Decimal)
+	text := strings.Replace(b.String(), `"S"`, `"`+sep+`"`, 1)
+	b.Reset()
+	b.WriteString(text)
+	if t.HeaderLine > 0 {
+		fmt.Fprintf(&b, ", header_row: %d", t.HeaderLine)
+	}
+	if t.UnitsLine > 0 {
+		fmt.Fprintf(&b, ", units_row: %d", t.UnitsLine)
+	}
+	b.WriteString("}\n    columns:\n")
+	known := map[string]bool{}
+	for _, c := range table.Concepts() {
+		known[c] = true
+	}
+	seen := map[string]bool{}
+	lines := 0
+	for _, c := range in.Columns {
+		if !known[c.Quantity] || seen[c.Quantity] {
+			continue
+		}
+		seen[c.Quantity] = true
+		lines++
+		q := table.Concept(c.Quantity).Quantity()
+		switch {
+		case q == "":
+			fmt.Fprintf(&b, "      %s: %s\n", c.Quantity, table.Quote(c.Heading))
+		case c.Known && c.Unit != "":
+			fmt.Fprintf(&b, "      %s: {heading: %s, unit: %s}\n", c.Quantity, table.Quote(c.Heading), table.Quote(c.Unit))
+		case c.Known:
+			fmt.Fprintf(&b, "      %s: %s\n", c.Quantity, table.Quote(c.Heading))
+		default:
+			fmt.Fprintf(&b, "      %s: {heading: %s, unit: %s}  # which of %s?\n", c.Quantity, table.Quote(c.Heading), unit.Preferred(q).Symbol, strings.Join(unit.Symbols(q), ", "))
+		}
+	}
+	if lines == 0 {
+		b.WriteString("      # no heading was understood; quantities are " + strings.Join(table.Concepts(), ", ") + "\n")
+	}
+	return b.String()
+}
