@@ -75,7 +75,14 @@ type Specimen struct {
 	Width     float64 // m, NaN if not stated
 	Length    float64 // m, NaN if not stated
 	Thickness float64 // m, of one rubber layer; NaN if not stated
-	Measured  bool    // dimensions measured on this piece, not taken from the drawing
+	// The rest is NaN if not stated.
+	InnerDiameter float64 // m, of a hollow cylinder
+	Poisson       float64 // for lubricated compression, tension and bending
+	Coefficient   float64 // k of bonded compression
+	Bulk          float64 // Pa, of bonded compression
+	ShearFactor   float64 // shear coefficient of bending
+	Bending       bool    // the bending of sheared layers is taken off
+	Measured      bool    // dimensions measured on this piece, not taken from the drawing
 }
 
 // Test is one entry of the campaign's list of tests.
@@ -144,6 +151,10 @@ type Point struct {
 
 	Storage float64 // Pa; the relaxation modulus in a relaxation test
 	Loss    float64 // Pa; NaN in a relaxation test
+	// MassShare is what the force on the moving mass was of the specimen's, and
+	// FrameShare what the frame took of the displacement, where the machine was
+	// corrected for; NaN elsewhere.
+	MassShare, FrameShare float64
 	// StatedLossFactor is the file's own loss factor where the moduli were
 	// taken from other columns; NaN where there is none. For the check only.
 	StatedLossFactor float64

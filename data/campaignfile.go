@@ -66,11 +66,14 @@ func (t *tree) compound(m mapping, c *Campaign) (poisson float64) {
 func (t *tree) specimens(m mapping, c *Campaign) {
 	all, names := t.mapping(m.values["specimens"], "specimens")
 	for _, name := range names {
-		k, _ := t.mapping(all.values[name], all.sub(name), "shape", "diameter", "width", "length", "thickness", "measured")
+		k, _ := t.mapping(all.values[name], all.sub(name), "shape", "diameter", "inner_diameter", "width", "length", "thickness", "poisson_ratio", "compression_coefficient", "bulk_modulus", "shear_coefficient", "bending", "measured")
 		c.Specimens = append(c.Specimens, Specimen{
 			Name: name, Shape: k.text("shape"),
 			Diameter: k.quantity("diameter", unit.Length, positive), Width: k.quantity("width", unit.Length, positive),
 			Length: k.quantity("length", unit.Length, positive), Thickness: k.quantity("thickness", unit.Length, positive),
+			InnerDiameter: k.quantity("inner_diameter", unit.Length, positive), Poisson: k.number("poisson_ratio"),
+			Coefficient: k.number("compression_coefficient"), Bulk: k.quantity("bulk_modulus", unit.Modulus, positive),
+			ShearFactor: k.number("shear_coefficient"), Bending: k.flag("bending"),
 			Measured: k.flag("measured"),
 		})
 	}
@@ -204,9 +207,28 @@ func (t *tree) test(s *source, k mapping, c *Campaign) *plan {
 	p.Tested = k.date("tested")
 	app, _ := t.mapping(k.values["apparatus"], k.sub("apparatus"), "name", "moving_mass", "frame_stiffness", "corrected")
 	p.Apparatus = app.text("name")
-	app.quantity("moving_mass", unit.Mass, notNegative)
-	app.quantity("frame_stiffness", unit.Stiffness, positive)
+	t.machine(app, p)
 	return p
+}
+
+// machine reads what of the apparatus has to be taken off the measurements; what is
+// listed as corrected has been.
+func (t *tree) machine(app mapping, p *plan) {
+	mass, frame := app.quantity("moving_mass", unit.Mass, notNegative), app.quantity("frame_stiffness", unit.Stiffness, positive)
+	done := map[string]bool{}
+	for _, n := range app.list("corrected") {
+		word := t.text(t.follow(n, app.sub("corrected")), app.sub("corrected"))
+		if word != "inertia" && word != "compliance" {
+			t.fault(n, app.sub("corrected"), "corrected: [inertia, compliance]", "%q is no correction", clip(word))
+		}
+		done[word] = true
+	}
+	if mass > 0 && !done["inertia"] {
+		p.machine.MovingMass = mass
+	}
+	if frame > 0 && !done["compliance"] {
+		p.machine.FrameStiffness = complex(frame, 0)
+	}
 }
 
 // values reads the moduli of a static test that stand in the campaign file.

@@ -12,7 +12,9 @@ import (
 // columnSet is the columns of a table that a test uses; -1: none.
 type columnSet struct {
 	frequency, temperature, strain, time int
-	a, b                                 int // of the pair of moduli, or the modulus
+	a, b                                 int // of the pair of moduli or stiffnesses, or the modulus
+	force, displacement                  int // amplitudes
+	stiff                                bool
 	pair                                 *pair
 	lossFactor, phase                    int // stated beside the pair
 	set                                  int // temperature as it was set
@@ -22,7 +24,7 @@ type columnSet struct {
 
 // columnsOf finds the columns that the kind of test needs.
 func (p *plan) columnsOf(t *table.Table) (cols columnSet, err error) {
-	cols = columnSet{-1, -1, -1, -1, -1, -1, nil, -1, -1, -1, nil, nil}
+	cols = columnSet{frequency: -1, temperature: -1, strain: -1, time: -1, a: -1, b: -1, force: -1, displacement: -1, lossFactor: -1, phase: -1, set: -1}
 	for _, f := range p.rows {
 		i := headingColumn(t, f.heading)
 		if i < 0 {
@@ -185,6 +187,11 @@ func (p *plan) oscillatoryColumns(t *table.Table, cols *columnSet) error {
 		}
 	}
 	if cols.pair == nil {
+		if err := p.stiffnessColumns(t, cols, at); err != nil || cols.pair != nil {
+			return err
+		}
+	}
+	if cols.pair == nil {
 		if trouble != nil {
 			return trouble
 		}
@@ -237,7 +244,7 @@ func (p *plan) modulusOf(t *table.Table, i int) error {
 func (p *plan) describeColumns(t *table.Table, written string, cols columnSet) {
 	for i, col := range t.Columns {
 		usedHere := false
-		for _, j := range []int{cols.frequency, cols.temperature, cols.strain, cols.time, cols.a, cols.b, cols.lossFactor, cols.phase, cols.set} {
+		for _, j := range []int{cols.frequency, cols.temperature, cols.strain, cols.time, cols.a, cols.b, cols.force, cols.displacement, cols.lossFactor, cols.phase, cols.set} {
 			usedHere = usedHere || i == j
 		}
 		if usedHere {

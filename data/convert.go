@@ -36,7 +36,7 @@ func convert(c *Campaign, plans []*plan, poisson float64) error {
 			}
 			p.scale(1 / (2 * (1 + c.PoissonRatio)))
 		}
-		if !keep && (p.Deformation == Tension || p.Deformation == Compression) && p.strained() {
+		if !keep && !p.moved && (p.Deformation == Tension || p.Deformation == Compression) && p.strained() {
 			c.assume("%s: strain amplitudes in %s count as shear strains of equal stored energy, γ = √3 ε (our own rule)", p.Name, p.Deformation)
 			for i := range p.points {
 				p.points[i].Strain *= math.Sqrt(3)
@@ -45,7 +45,7 @@ func convert(c *Campaign, plans []*plan, poisson float64) error {
 				p.StaticValues[i].Strain *= math.Sqrt(3)
 			}
 		}
-		if p.Deformation == Torsion && p.strained() {
+		if p.Deformation == Torsion && !p.moved && p.strained() {
 			c.assume("%s: strain amplitudes in torsion are taken as they stand; the energy-equivalent strain of a solid cylinder is that at ¾ of the radius", p.Name)
 		}
 	}

@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"phaselag/data/place"
+	"phaselag/data/specimen"
 	"phaselag/data/table"
 	"phaselag/data/unit"
 )
@@ -26,6 +27,11 @@ type plan struct {
 	amplitude                      float64 // factor to the single amplitude
 	amplitudeStated                bool
 	nominalStrain                  bool
+
+	machine specimen.Machine // what is to be taken off
+	shape   specimen.Shape   // nil: not described, or not needed
+	stiff   bool             // the tables have stiffness, not modulus
+	moved   bool             // strains come from displacements
 
 	modulus string // of the points as read: "shear", "young", "" where no heading says it
 	points  []raw
@@ -77,6 +83,10 @@ func (p *plan) read(s *source, c *Campaign) error {
 		for _, a := range t.Assumptions {
 			c.assume("%s: %s", f.written, a)
 		}
+		if err := p.describeShape(c, t); err != nil {
+			faults.Add(err)
+			continue
+		}
 		n, err := p.readTable(c, t, f.written, blocks)
 		faults.Add(err)
 		blocks += n
@@ -84,6 +94,7 @@ func (p *plan) read(s *source, c *Campaign) error {
 	if len(faults) > 0 || p.Kind == Static {
 		return faults.Err()
 	}
+	p.reportCorrections(c)
 	if !p.amplitudeStated {
 		for _, pt := range p.points {
 			if !math.IsNaN(pt.Strain) && p.Kind != Relaxation {

@@ -101,7 +101,7 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 	pt := raw{block: firstBlock + row.Block}
 	pt.File, pt.Row = written, row.Line
 	pt.Frequency, pt.Temperature, pt.Strain, pt.Time = math.NaN(), math.NaN(), math.NaN(), math.NaN()
-	pt.Loss, pt.StatedLossFactor = math.NaN(), math.NaN()
+	pt.Loss, pt.StatedLossFactor, pt.MassShare, pt.FrameShare = math.NaN(), math.NaN(), math.NaN(), math.NaN()
 	var faults place.List
 	get := func(column int, constant float64) float64 {
 		v, err := p.cell(t, row, column, constant)
@@ -123,8 +123,20 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 			faults.Add(&place.Error{File: t.File, Line: line, Column: column, What: fmt.Sprintf("the frequency %q is not greater than zero", clip(t.Text(row, cols.frequency))), Hint: "correct the row, or leave it out"})
 		}
 		a, b := get(cols.a, math.NaN()), get(cols.b, math.NaN())
+		if cols.force >= 0 {
+			a = get(cols.force, math.NaN()) / get(cols.displacement, math.NaN())
+		}
 		pt.Storage, pt.Loss = cols.pair.complex(a, b)
 		pt.Reason = modulusFault(pt.Storage, pt.Loss)
+		if pt.Reason == "" {
+			p.throughShape(&pt.Point)
+		}
+		if p.shape != nil && cols.displacement >= 0 && cols.strain < 0 {
+			if x := p.amplitude * get(cols.displacement, math.NaN()); !math.IsNaN(x) && x >= 0 {
+				pt.Strain = p.shape.Strain(x)
+				p.moved = true
+			}
+		}
 		switch {
 		case pt.Reason != "":
 		case math.IsNaN(pt.Frequency) || math.IsInf(pt.Frequency, 0):

@@ -323,6 +323,7 @@ func (a *answer) points() []Point {
 					Offset: nan, Strain: number(100 * p.Strain), Time: number(p.Time),
 					Storage: number(p.Storage / 1e6), Loss: number(p.Loss / 1e6),
 					ReducedFrequency: nan, FittedStorage: nan, FittedLoss: nan, ResidualPercent: nan, ResidualDeg: nan, Weight: nan,
+					MassShare: number(100 * p.MassShare), FrameShare: number(100 * p.FrameShare),
 					Used: p.Used, Reason: p.Reason,
 				}
 				if why := a.reason[o]; row.Used && why != "" {

@@ -227,8 +227,12 @@ type Point struct {
 	ResidualPercent  unit.Number `json:"residual_magnitude_percent"`
 	ResidualDeg      unit.Number `json:"residual_phase_deg"`
 	Weight           unit.Number `json:"weight"`
-	Used             bool        `json:"used"`
-	Reason           string      `json:"reason"`
+	// What was taken off for the moving mass, of the force, and for the frame, of
+	// the displacement; null where nothing was.
+	MassShare  unit.Number `json:"inertia_percent"`
+	FrameShare unit.Number `json:"compliance_percent"`
+	Used       bool        `json:"used"`
+	Reason     string      `json:"reason"`
 }
 
 // StatedUncertainty repeats the campaign's standard uncertainties; null: not

@@ -26,6 +26,7 @@ func Points(r *fitting.Result) table.Table {
 		{Key: "frequency_Hz"}, {Key: "temperature_C"}, {Key: "temperature_offset_K"}, {Key: "strain_amplitude_percent"}, {Key: "time_s"},
 		{Key: "storage_MPa"}, {Key: "loss_MPa"}, {Key: "reduced_frequency_Hz"}, {Key: "fitted_storage_MPa"}, {Key: "fitted_loss_MPa"},
 		{Key: "residual_magnitude_percent"}, {Key: "residual_phase_deg"}, {Key: "weight"}, {Key: "used"}, {Key: "reason"},
+		{Key: "inertia_percent"}, {Key: "compliance_percent"},
 	}}
 	for _, p := range r.Points {
 		t.Rows = append(t.Rows, []table.Cell{
@@ -33,6 +34,7 @@ func Points(r *fitting.Result) table.Table {
 			num(p.Frequency), num(p.TemperatureC), num(p.Offset), num(p.Strain), num(p.Time),
 			num(p.Storage), num(p.Loss), num(p.ReducedFrequency), num(p.FittedStorage), num(p.FittedLoss),
 			num(p.ResidualPercent), num(p.ResidualDeg), num(p.Weight), yesNo(p.Used), table.Text(p.Reason),
+			num(p.MassShare), num(p.FrameShare),
 		})
 	}
 	return t

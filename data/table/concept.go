@@ -25,7 +25,8 @@ const (
 	StaticModulus     Concept = "modulus"
 	Segment           Concept = "segment" // a number or name that changes from run to run
 
-	// Understood, so that they are not taken for something else, but not used.
+	// Used where the specimen is described, or understood so that they are not taken
+	// for something else.
 	SetTemperature   Concept = "set temperature"
 	StaticStrain     Concept = "static strain"
 	StaticForce      Concept = "static force"
@@ -34,7 +35,9 @@ const (
 	Torque           Concept = "torque"
 	Force            Concept = "force"
 	Displacement     Concept = "displacement"
-	Stiffness        Concept = "stiffness"
+	Stiffness        Concept = "stiffness" // magnitude of the complex stiffness
+	StorageStiffness Concept = "storage stiffness"
+	LossStiffness    Concept = "loss stiffness"
 )
 
 // concept describes how headings name a concept.
@@ -85,13 +88,16 @@ var vocabulary = []concept{
 	{Torque, unit.Torque, []string{"M"}, []string{"torque", "oscillationtorque"}},
 	{Force, unit.Force, []string{"F"}, []string{"force", "dynamicforce", "forceamplitude", "load"}},
 	{Displacement, unit.Length, nil, []string{"displacement", "dynamicdisplacement", "displacementamplitude", "oscillationdisplacement"}},
-	{Stiffness, unit.Stiffness, []string{"K*", "|K*|", "K'", "K''", "k*"}, []string{"stiffness", "complexstiffness", "dynamicstiffness", "storagestiffness", "lossstiffness", "springrate"}},
+	{Stiffness, unit.Stiffness, []string{"K*", "|K*|", "k*", "|k*|"}, []string{"stiffness", "complexstiffness", "dynamicstiffness", "springrate", "stiffnessmagnitude"}},
+	{StorageStiffness, unit.Stiffness, []string{"K'", "k'"}, []string{"storagestiffness", "elasticstiffness"}},
+	{LossStiffness, unit.Stiffness, []string{"K''", "k''"}, []string{"lossstiffness"}},
 }
 
 // Concepts lists the keys that "columns" of a campaign file may have.
 func Concepts() []string {
 	return []string{string(Frequency), string(Temperature), string(Storage), string(Loss), string(Magnitude), string(Phase),
-		string(LossFactor), string(Strain), string(Time), string(RelaxationModulus), string(StaticModulus), string(Segment)}
+		string(LossFactor), string(Strain), string(Time), string(RelaxationModulus), string(StaticModulus), string(Segment),
+		string(Stiffness), string(StorageStiffness), string(LossStiffness), string(Force), string(Displacement)}
 }
 
 // Quantity says in which quantity the numbers of a concept are; "" for text.
