@@ -297,9 +297,7 @@ func (t *tree) columns(k mapping, p *plan) {
 
 func (t *tree) reading(k mapping, p *plan) {
 	r, _ := t.mapping(k.values["reading"], k.sub("reading"), "sheet", "separator", "decimal", "header_row", "units_row")
-	if r.has("sheet") {
-		t.fault(r.at("sheet"), r.sub("sheet"), "save the sheet as text, with semicolons or tabulators", "workbooks are not read in this version")
-	}
+	p.settings.Sheet = r.text("sheet")
 	if n, _ := r.get("separator"); n != nil && n.Kind == yaml.ScalarNode {
 		p.settings.Separator = n.Value
 	}

@@ -54,9 +54,10 @@ type InspectedColumn struct {
 // firstValues is how many values of a column are shown.
 const firstValues = 3
 
-// Inspect reads one table and says how it was understood. The error is that of
-// reading the table itself; what the headings do not say is in Refused.
-func Inspect(name string) (*Inspection, error) {
+// Inspect reads one table, or each sheet of a workbook, and says how it was
+// understood. The error is that of reading the table itself; what the headings do not
+// say is in Refused.
+func Inspect(name string) ([]*Inspection, error) {
 	if isCampaign(name) {
 		return nil, &place.Error{File: name, What: "is a campaign file by its name, not a table", Hint: "phaselag check shows how a campaign and its tables were understood"}
 	}
@@ -65,10 +66,25 @@ func Inspect(name string) (*Inspection, error) {
 	if err != nil {
 		return nil, err
 	}
-	t, err := table.Read(name, content, table.Settings{})
+	tables, err := table.ReadAll(name, content, table.Settings{})
 	if err != nil {
-		return rough(name, content, err)
+		in, err := rough(name, content, err)
+		if err != nil {
+			return nil, err
+		}
+		return []*Inspection{in}, nil
 	}
+	c, refused := Open(name)
+	var out []*Inspection
+	for _, t := range tables {
+		out = append(out, inspectTable(name, t, c, refused))
+	}
+	return out, nil
+}
+
+// inspectTable says how one table was understood; c is the campaign that the file
+// alone makes, nil where it is refused.
+func inspectTable(name string, t *table.Table, c *Campaign, refused error) *Inspection {
 	in := &Inspection{
 		File: name, Encoding: t.Encoding, Separator: separatorName(t.Separator), Decimal: t.Decimal,
 		HeaderLine: t.HeaderLine, UnitsLine: t.UnitsLine, Rows: len(t.Rows), FirstLine: t.Rows[0].Line,
@@ -77,11 +93,17 @@ func Inspect(name string) (*Inspection, error) {
 	for i := range t.Columns {
 		in.Columns = append(in.Columns, inspectColumn(t, i))
 	}
-	c, err := Open(name)
-	if err != nil {
-		in.Refused = err
-	} else {
-		in.Kind, in.Runs = c.Tests[0].Kind, c.Tests[0].Runs
+	if t.Sheet != "" {
+		in.File = name + "[" + t.Sheet + "]"
+	}
+	in.Refused = refused
+	if c != nil {
+		in.Kind = c.Tests[0].Kind
+		for _, r := range c.Tests[0].Runs {
+			if t.Sheet == "" || len(r.Points) > 0 && strings.HasSuffix(r.Points[0].File, "["+t.Sheet+"]") {
+				in.Runs = append(in.Runs, r)
+			}
+		}
 		for _, a := range c.Assumptions {
 			if !contains(in.Assumptions, a) {
 				in.Assumptions = append(in.Assumptions, a)
@@ -89,7 +111,7 @@ func Inspect(name string) (*Inspection, error) {
 		}
 	}
 	in.Snippet = in.snippet(t)
-	return in, nil
+	return in
 }
 
 // roughLines is how many lines of a file are shown that cannot be read.
@@ -153,6 +175,11 @@ func inspectColumn(t *table.Table, i int) InspectedColumn {
 	return out
 }
 
+// readingOf begins the key reading of a text table.
+func readingOf(t *table.Table) string {
+	return fmt.Sprintf("    reading: {separator: \"%s\", decimal: %q", strings.ReplaceAll(t.Separator, "\t", `\t`), t.Decimal)
+}
+
 // snippet writes the campaign entry.
 func (in *Inspection) snippet(t *table.Table) string {
 	var b strings.Builder
@@ -160,13 +187,13 @@ func (in *Inspection) snippet(t *table.Table) string {
 	if kind == "" {
 		kind = FrequencySweep
 	}
-	base := path.Base(filepath.ToSlash(in.File))
-	fmt.Fprintf(&b, "tests:\n  - name: %s\n    kind: %s\n    file: %s\n", table.Quote(stem(in.File)), kind, table.Quote(base))
-	sep := strings.NewReplacer("\t", `\t`).Replace(t.Separator)
-	fmt.Fprintf(&b, "    reading: {separator: %q, decimal: %q", "S", t.Decimal)
-	text := strings.Replace(b.String(), `"S"`, `"`+sep+`"`, 1)
-	b.Reset()
-	b.WriteString(text)
+	base := path.Base(filepath.ToSlash(t.File))
+	fmt.Fprintf(&b, "tests:\n  - name: %s\n    kind: %s\n    file: %s\n", table.Quote(stem(t.File)), kind, table.Quote(base))
+	if t.Sheet != "" {
+		fmt.Fprintf(&b, "    reading: {sheet: %s", table.Quote(t.Sheet))
+	} else {
+		b.WriteString(readingOf(t))
+	}
 	if t.HeaderLine > 0 {
 		fmt.Fprintf(&b, ", header_row: %d", t.HeaderLine)
 	}

@@ -21,10 +21,11 @@ func TestSnippet(t *testing.T) {
 		if err := os.WriteFile(file, []byte(text), 0o666); err != nil {
 			t.Fatal(err)
 		}
-		in, err := Inspect(file)
-		if err != nil {
+		all, err := Inspect(file)
+		if err != nil || len(all) != 1 {
 			t.Fatal(name, err)
 		}
+		in := all[0]
 		if in.Refused != nil || in.Kind != FrequencySweep || len(in.Runs) != 2 || len(in.Columns) != 4 {
 			t.Errorf("%s: %v, %s, %d runs, %d columns", name, in.Refused, in.Kind, len(in.Runs), len(in.Columns))
 		}
@@ -70,11 +71,19 @@ func TestInspectUnreadable(t *testing.T) {
 		}
 		return file
 	}
-	in, err := Inspect(write("odd.csv", "a;b;c\n1;2;3\n4;5;6\n"))
+	all, err := Inspect(write("odd.csv", "a;b;c\n1;2;3\n4;5;6\n"))
+	if err != nil || len(all) != 1 {
+		t.Fatal(err)
+	}
+	in := all[0]
 	if err != nil || in.Refused == nil || len(in.First) != 3 || in.First[1][2] != "2" || !strings.Contains(in.Snippet, "header_row: none") {
 		t.Errorf("%+v, %v", in, err)
 	}
-	in, err = Inspect(write("unit.csv", "f,T / °C,G' / MPa,G'' / MPa\n1,20,1,0.1\n2,20,1.1,0.1\n"))
+	all, err = Inspect(write("unit.csv", "f,T / °C,G' / MPa,G'' / MPa\n1,20,1,0.1\n2,20,1.1,0.1\n"))
+	if err != nil || len(all) != 1 {
+		t.Fatal(err)
+	}
+	in = all[0]
 	if err != nil || in.Refused == nil || in.Columns[0].Known || !strings.Contains(in.Snippet, "# which of") {
 		t.Errorf("%+v, %v", in, err)
 	}

@@ -75,21 +75,24 @@ func (p *plan) read(s *source, c *Campaign) error {
 			faults.Add(p.missingFile(err))
 			continue
 		}
-		t, err := table.Read(f.resolved, content, p.settings)
-		if err != nil {
-			faults.Add(err)
-			continue
-		}
-		for _, a := range t.Assumptions {
-			c.assume("%s: %s", f.written, a)
-		}
-		if err := p.describeShape(c, t); err != nil {
-			faults.Add(err)
-			continue
-		}
-		n, err := p.readTable(c, t, f.written, blocks)
+		tables, err := table.ReadAll(f.resolved, content, p.settings)
 		faults.Add(err)
-		blocks += n
+		for _, t := range tables {
+			for _, a := range t.Assumptions {
+				c.assume("%s: %s", f.written, a)
+			}
+			written := f.written
+			if t.Sheet != "" {
+				written += "[" + t.Sheet + "]"
+			}
+			if err := p.describeShape(c, t); err != nil {
+				faults.Add(t.Placed(err))
+				continue
+			}
+			n, err := p.readTable(c, t, written, blocks)
+			faults.Add(t.Placed(err))
+			blocks += n
+		}
 	}
 	if len(faults) > 0 || p.Kind == Static {
 		return faults.Err()

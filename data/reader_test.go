@@ -142,7 +142,7 @@ func TestFaults(t *testing.T) {
 		{"no such heading", one(`columns: {storage modulus: "K"}`), sweep, "K"},
 		{"no such row", one(`rows: {lane: "1"}`), sweep, `no column of a.csv has the heading "lane"`},
 		{"no row left", one(`rows: {"f / Hz": "77"}`), sweep, "no row of a.csv"},
-		{"sheet", one("reading: {sheet: 1}"), sweep, "workbooks"},
+		{"sheet", one("reading: {sheet: 1}"), sweep, "no workbook"},
 		{"leave out without reason", one("leave_out: [{where: {row: 3}}]"), sweep, "the reason is missing"},
 		{"empty table", one("mounting: 1"), "", "a.csv: the file is empty"},
 		{"headings only", one("mounting: 1"), "f / Hz,T / °C,G' / MPa,G'' / MPa\n", "headings, but no row"},

@@ -16,6 +16,9 @@ func Inspection(w io.Writer, in *data.Inspection) error {
 	line := func(format string, a ...any) { fmt.Fprintf(&b, format+"\n", a...) }
 	line("%s", in.File)
 	separated := "separated by " + in.Separator
+	if in.Encoding == "workbook" {
+		separated = "every digit of its numbers"
+	}
 	if len(in.Separator) == 1 {
 		separated = fmt.Sprintf("separated by %q", in.Separator)
 	}

@@ -17,11 +17,6 @@ import (
 // every other place, which is UTF-16 of mostly Latin text; else Windows-1252.
 func decode(b []byte) (text, encoding string, err error) {
 	switch {
-	case bytes.HasPrefix(b, []byte("PK\x03\x04")), bytes.HasPrefix(b, []byte("\xd0\xcf\x11\xe0")):
-		return "", "", &place.Error{
-			What: "this is a workbook or an archive, not a text table",
-			Hint: "workbooks are not read in this version: save the sheet as CSV",
-		}
 	case bytes.HasPrefix(b, []byte("\xef\xbb\xbf")):
 		text, encoding = string(bytes.ToValidUTF8(b[3:], []byte("\ufffd"))), "UTF-8"
 	case bytes.HasPrefix(b, []byte("\xff\xfe")):

@@ -15,6 +15,7 @@ import (
 type Settings struct {
 	Separator string // ",", ";", "\t" or " " (any number of blanks); "": found
 	Decimal   string // "." or ","; "": found
+	Sheet     string // of a workbook; "": every sheet that is understood
 	HeaderRow int    // line of the headings, from 1; 0: found; NoHeader: there is none
 	UnitsRow  int    // line of the units, from 1; 0: found
 	Wants     []Want // columns that are chosen by hand
@@ -42,6 +43,7 @@ type Row struct {
 // Table is a text table that was understood.
 type Table struct {
 	File        string
+	Sheet       string // of a workbook, else ""
 	Encoding    string // for people
 	Separator   string // as in Settings
 	Decimal     string // "." or ","

@@ -1,6 +1,8 @@
 package cli
 
 import (
+	"fmt"
+
 	"github.com/spf13/cobra"
 
 	"phaselag/data"
@@ -20,14 +22,25 @@ campaign file that reads it so. Where the file would be refused as it stands, it
 says why.`,
 		Args: exactly("FILE"),
 		RunE: func(_ *cobra.Command, args []string) error {
-			in, err := data.Inspect(args[0])
+			all, err := data.Inspect(args[0])
 			if err != nil {
 				return err
 			}
-			if f := table.Format(format); f != table.Terminal {
-				return table.Write(a.out, f, reports.InspectionTable(in))
+			for i, in := range all {
+				switch f := table.Format(format); {
+				case f != table.Terminal:
+					err = table.Write(a.out, f, reports.InspectionTable(in))
+				default:
+					if i > 0 {
+						fmt.Fprintln(a.out)
+					}
+					err = reports.Inspection(a.out, in)
+				}
+				if err != nil {
+					return err
+				}
 			}
-			return reports.Inspection(a.out, in)
+			return nil
 		},
 	}
 	formatFlag(cmd, &format)
