@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"math/cmplx"
+	"strings"
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
@@ -247,18 +248,17 @@ func (sc scenario) bound(t *testing.T) map[string]float64 {
 //
 //	go test ./fitting -run TestEfficiency -v -campaigns 1000 -timeout 0
 //
-// The short form only looks for gross losses. The loss factor is shown and not
-// judged: the bound knows that the truth is two smooth processes, and a spectrum
-// that knows only that it is not negative has more freedom where the loss is low
-// and at the warm edge; there it scatters up to twice, at the edge itself five
-// times as much as the bound.
+// The short form only looks for gross losses. The two conditions at the edges of
+// the window are shown and not judged: the bound knows that the truth is two smooth
+// processes that go on beyond it, and a spectrum that knows only that it is smooth and
+// not negative scatters up to twice as much at the warm edge.
 func TestEfficiency(t *testing.T) {
 	if testing.Short() {
 		t.Skip("a simulation of its own, left out with -short")
 	}
 	n := *campaigns
 	list := scenarios()[:4]
-	meanBar, eachBar := 1.15, 1.25
+	meanBar, eachBar := 1.15, 1.3
 	if n == 0 {
 		n, list = 16, list[1:2]
 		meanBar, eachBar = 1.6, 2.2
@@ -275,18 +275,22 @@ func TestEfficiency(t *testing.T) {
 			}
 			ratio := math.Sqrt(v.e2/float64(v.n)) / bound[name]
 			c := className(name)
+			edge := strings.HasSuffix(name, "condition 6") || strings.HasSuffix(name, "condition 7")
+			if edge {
+				c += ", edges"
+			}
 			sum[c] += ratio
 			count[c]++
 			worst[c] = max(worst[c], ratio)
 			t.Logf("  %-42s scatter over bound %.3f of %d", name, ratio, v.n)
-			if ratio > eachBar && c != "tan δ" {
+			if ratio > eachBar && !edge {
 				t.Errorf("%s: %s scatters %.3f times as much as it must", sc.name, name, ratio)
 			}
 		}
 		for _, c := range sortedKeys(sum) {
 			mean := sum[c] / float64(count[c])
 			t.Logf("| %s | %s | %d | %.3f | %.3f |", sc.name, c, n, mean, worst[c])
-			if mean > meanBar && c != "tan δ" {
+			if mean > meanBar && !strings.HasSuffix(c, "edges") {
 				t.Errorf("%s: class %s scatters %.3f times as much as it must", sc.name, c, mean)
 			}
 		}
