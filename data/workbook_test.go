@@ -4,6 +4,7 @@ import (
 	"archive/zip"
 	"bytes"
 	"fmt"
+	"math"
 	"os"
 	"path/filepath"
 	"strings"
@@ -16,7 +17,7 @@ import (
 
 // rowsOf is a table with numbers that no display shows in full.
 var rowsOf = [][4]float64{
-	{1.0 / 3, 20, 1.2345678901234567, 0.1}, {1, 20, 1.3, 0.11234567890123456}, {10, 20, 1.5, 0.2},
+	{1.0 / 3, 20, 1.2345678901234567, 1.2345678901234567e-7}, {1, 20, 1.3, 0.11234567890123456}, {10, 20, 1.5, 0.2},
 	{1.0 / 3, 40, 1.1, 0.05}, {1, 40, 1.15, 0.06}, {10, 40, 1.3, 0.1},
 }
 
@@ -47,7 +48,8 @@ func xlsx(t *testing.T) []byte {
 	for r, row := range rowsOf {
 		for i, v := range row {
 			cell, _ := excelize.CoordinatesToCellName(i+1, 5+r)
-			check(f.SetCellValue("Data", cell, v))
+			// SetCellValue would write 15 digits; spreadsheets write 17.
+			check(f.SetCellDefault("Data", cell, fmt.Sprintf("%.17g", v)))
 			check(f.SetCellStyle("Data", cell, cell, style))
 		}
 		check(f.SetCellValue("Data", fmt.Sprintf("E%d", 5+r), time.Date(2026, 11, 12, 9, r, 0, 0, time.UTC)))
@@ -117,7 +119,7 @@ func TestWorkbooks(t *testing.T) {
 		}
 		for i, r := range rowsOf {
 			for k := range r {
-				if d := got[i][k] - r[k]; d > 1e-12 || d < -1e-12 {
+				if d := got[i][k] - r[k]; d > 1e-15*(1+math.Abs(r[k])) && k != 1 || d < -1e-12 || d > 1e-12 || k == 3 && math.Abs(d) > 1e-15*r[k] {
 					t.Errorf("%s: %.17g, should be %.17g", name, got[i][k], r[k])
 				}
 			}

@@ -168,3 +168,11 @@ func (c Cell) Float() float64 {
 	}
 	return c.number
 }
+
+// Value is the cell's number as a float64 or its text as a string.
+func (c Cell) Value() any {
+	if c.numeric {
+		return c.number
+	}
+	return c.text
+}

@@ -1,0 +1,173 @@
+package cli
+
+import (
+	"bytes"
+	"math"
+	"os"
+	"path/filepath"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"phaselag/data/unit"
+	"phaselag/models"
+	"phaselag/reports"
+	"phaselag/reports/table"
+)
+
+type exportOptions struct {
+	file, as, out                  string
+	frequency, temperature, strain string
+}
+
+func (a *app) exportCmd() *cobra.Command {
+	var o exportOptions
+	cmd := &cobra.Command{
+		Use:   "export COMPOUND --as grid|relaxation|c [--out FILE]",
+		Short: "The compound for other tools: a grid, a relaxation series, C source",
+		Long: `export writes the compound for the sizing step and the tools beyond:
+
+  grid        modulus with intervals at every combination of --frequency,
+              --temperature and --strain, as CSV, or as a workbook where --out ends
+              with .xlsx; a condition outside the domain has no numbers
+  relaxation  relaxation times and moduli of the polymer term at one --temperature
+              (default: the reference), also normalised with the instantaneous and
+              with the long-time modulus, as CSV
+  c           a C99 source file without dependencies that evaluates the compound
+
+Without --out the answer goes to standard output.`,
+		Example: `  phaselag export compound.yaml --as grid --frequency 1:100:5/decade,200Hz --temperature -20:60:10C --out grid.xlsx
+  phaselag export compound.yaml --as c --out compound.c`,
+		Args: exactly("COMPOUND"),
+		RunE: func(_ *cobra.Command, args []string) error {
+			o.file = args[0]
+			return a.export(o)
+		},
+	}
+	cmd.Flags().Var(choice{&o.as, []string{"grid", "relaxation", "c"}}, "as", "grid, relaxation or c (required)")
+	cmd.Flags().StringVar(&o.out, "out", "", "file to write; an existing one is replaced as a whole")
+	conditionFlags(cmd, &o.frequency, &o.temperature)
+	cmd.Flags().StringVar(&o.strain, "strain", "", "strain amplitudes of a grid, zero to peak (default: the isotherms' own)")
+	return cmd
+}
+
+func (a *app) export(o exportOptions) error {
+	c, err := models.Open(o.file)
+	if err != nil {
+		return err
+	}
+	var content []byte
+	outside := 0
+	switch o.as {
+	case "c":
+		content, err = reports.CSource(c)
+	case "relaxation":
+		content, err = a.exportRelaxation(c, o)
+	case "grid":
+		content, outside, err = a.exportGrid(c, o)
+	default:
+		return usagef("--as is missing: grid, relaxation or c")
+	}
+	if err != nil {
+		return err
+	}
+	if o.out == "" {
+		_, err = a.out.Write(content)
+	} else {
+		err = writeWhole(o.out, content)
+	}
+	if err == nil && outside > 0 {
+		return errNo
+	}
+	return err
+}
+
+func (a *app) exportRelaxation(c *models.Compound, o exportOptions) ([]byte, error) {
+	T := c.ReferenceTempC + 273.15
+	if o.temperature != "" {
+		list, err := list("temperature", o.temperature, unit.Temperature)
+		if err != nil {
+			return nil, err
+		}
+		if len(list) != 1 {
+			return nil, usagef("a relaxation series holds at one temperature")
+		}
+		T = list[0]
+	}
+	t := reports.RelaxationSeries(c, T)
+	return a.asCSV(t)
+}
+
+func (a *app) exportGrid(c *models.Compound, o exportOptions) ([]byte, int, error) {
+	f, T, err := conditionLists(o.frequency, o.temperature)
+	if err != nil {
+		return nil, 0, err
+	}
+	strains := []float64{math.NaN()}
+	if o.strain != "" {
+		if strains, err = list("strain", o.strain, unit.Strain); err != nil {
+			return nil, 0, err
+		}
+	}
+	if len(f)*len(T)*len(strains) > maxConditions {
+		return nil, 0, usagef("%d conditions are more than %d", len(f)*len(T)*len(strains), maxConditions)
+	}
+	var q []models.Condition
+	for _, t := range T {
+		for _, v := range f {
+			for _, s := range strains {
+				q = append(q, models.Condition{Frequency: v, Temperature: t, Strain: s})
+			}
+		}
+	}
+	t, outside, err := reports.ModulusTable(c, q, false)
+	if err != nil {
+		return nil, 0, err
+	}
+	if o.strain == "" {
+		t.Assumptions = append(t.Assumptions, reports.OwnStrainNote(c))
+	}
+	if strings.EqualFold(filepath.Ext(o.out), ".xlsx") {
+		for _, s := range t.Assumptions {
+			a.note(s)
+		}
+		b, err := reports.Workbook(t, "modulus")
+		return b, outside, err
+	}
+	b, err := a.asCSV(t)
+	return b, outside, err
+}
+
+// asCSV writes a table as CSV; its assumptions are said on standard error.
+func (a *app) asCSV(t table.Table) ([]byte, error) {
+	for _, s := range t.Assumptions {
+		a.note(s)
+	}
+	t.Assumptions = nil
+	var b bytes.Buffer
+	err := table.Write(&b, table.CSV, t)
+	return b.Bytes(), err
+}
+
+// writeWhole replaces a file as a whole: written beside, synced, renamed.
+func writeWhole(name string, content []byte) error {
+	f, err := os.CreateTemp(filepath.Dir(name), ".phaselag-*")
+	if err != nil {
+		return err
+	}
+	defer os.Remove(f.Name())
+	_, err = f.Write(content)
+	if err == nil {
+		err = f.Sync()
+	}
+	if cerr := f.Close(); err == nil {
+		err = cerr
+	}
+	if err == nil {
+		err = os.Chmod(f.Name(), 0o644)
+	}
+	if err == nil {
+		err = os.Rename(f.Name(), name)
+	}
+	return err
+}
