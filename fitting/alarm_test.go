@@ -22,40 +22,27 @@ func TestAlarms(t *testing.T) {
 	}
 	for _, sc := range list {
 		var mu sync.Mutex
-		var wg sync.WaitGroup
 		small, alarms := 0, 0
-		next := make(chan uint64, n)
-		for i := range n {
-			next <- uint64(5000 + i)
-		}
-		close(next)
-		for range *workers {
-			wg.Add(1)
-			go func() {
-				defer wg.Done()
-				for seed := range next {
-					c, err := data.OpenFS(demo.Campaign(sc.truth, sc.plan, seed), "campaign.yaml")
-					if err != nil {
-						t.Error(err)
-						return
-					}
-					r, err := Characterize(c, &Settings{Workers: 1})
-					if err != nil {
-						t.Error(err)
-						return
-					}
-					mu.Lock()
-					if r.Common.P <= alarmP {
-						small++
-					}
-					if r.Compound.Fit.Superposition.Holds == models.HoldsNo {
-						alarms++
-					}
-					mu.Unlock()
-				}
-			}()
-		}
-		wg.Wait()
+		eachSeed(5000, n, func(seed uint64) {
+			c, err := data.OpenFS(demo.Campaign(sc.truth, sc.plan, seed), "campaign.yaml")
+			if err != nil {
+				t.Error(err)
+				return
+			}
+			r, err := Characterize(c, &Settings{Workers: 1})
+			if err != nil {
+				t.Error(err)
+				return
+			}
+			mu.Lock()
+			defer mu.Unlock()
+			if r.Common.P <= alarmP {
+				small++
+			}
+			if r.Compound.Fit.Superposition.Holds == models.HoldsNo {
+				alarms++
+			}
+		})
 		t.Logf("| %s | %d | %.3f | %.3f |", sc.name, n, float64(small)/float64(n), float64(alarms)/float64(n))
 		if limit := max(1, 0.04*float64(n)); float64(alarms) > limit {
 			t.Errorf("%s: %d alarms in %d sound campaigns", sc.name, alarms, n)

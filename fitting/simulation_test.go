@@ -205,21 +205,19 @@ func TestCoverage(t *testing.T) {
 	}
 	n := *campaigns
 	if n == 0 {
-		n = 16
+		n = 10
 	}
 	for _, sc := range scenarios() {
 		report(t, sc.name, n, sc.simulate(t, n))
 	}
 }
 
-// simulate scores n campaigns; the seeds are 1000, 1001, ….
-func (sc scenario) simulate(t *testing.T, n int) score {
-	total := score{}
-	var mu sync.Mutex
+// eachSeed calls do for n seeds from first on, on -workers goroutines.
+func eachSeed(first uint64, n int, do func(seed uint64)) {
 	var wg sync.WaitGroup
 	next := make(chan uint64, n)
 	for i := range n {
-		next <- uint64(1000 + i)
+		next <- first + uint64(i)
 	}
 	close(next)
 	for range *workers {
@@ -227,18 +225,27 @@ func (sc scenario) simulate(t *testing.T, n int) score {
 		go func() {
 			defer wg.Done()
 			for seed := range next {
-				s, err := sc.judge(seed)
-				mu.Lock()
-				if err != nil {
-					t.Errorf("%s, seed %d: %v", sc.name, seed, err)
-				} else {
-					total.merge(s)
-				}
-				mu.Unlock()
+				do(seed)
 			}
 		}()
 	}
 	wg.Wait()
+}
+
+// simulate scores n campaigns; the seeds are 1000, 1001, ….
+func (sc scenario) simulate(t *testing.T, n int) score {
+	total := score{}
+	var mu sync.Mutex
+	eachSeed(1000, n, func(seed uint64) {
+		s, err := sc.judge(seed)
+		mu.Lock()
+		defer mu.Unlock()
+		if err != nil {
+			t.Errorf("%s, seed %d: %v", sc.name, seed, err)
+			return
+		}
+		total.merge(s)
+	})
 	return total
 }
 

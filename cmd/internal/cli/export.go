@@ -2,7 +2,6 @@ package cli
 
 import (
 	"bytes"
-	"math"
 	"os"
 	"path/filepath"
 	"strings"
@@ -99,26 +98,9 @@ func (a *app) exportRelaxation(c *models.Compound, o exportOptions) ([]byte, err
 }
 
 func (a *app) exportGrid(c *models.Compound, o exportOptions) ([]byte, int, error) {
-	f, T, err := conditionLists(o.frequency, o.temperature)
+	q, err := conditions(o.frequency, o.temperature, o.strain)
 	if err != nil {
 		return nil, 0, err
-	}
-	strains := []float64{math.NaN()}
-	if o.strain != "" {
-		if strains, err = list("strain", o.strain, unit.Strain); err != nil {
-			return nil, 0, err
-		}
-	}
-	if len(f)*len(T)*len(strains) > maxConditions {
-		return nil, 0, usagef("%d conditions are more than %d", len(f)*len(T)*len(strains), maxConditions)
-	}
-	var q []models.Condition
-	for _, t := range T {
-		for _, v := range f {
-			for _, s := range strains {
-				q = append(q, models.Condition{Frequency: v, Temperature: t, Strain: s})
-			}
-		}
 	}
 	t, outside, err := reports.ModulusTable(c, q, false)
 	if err != nil {

@@ -73,23 +73,21 @@ func conditionLists(frequency, temperature string) (f, T []float64, err error) {
 // maxConditions bounds the answers of one call.
 const maxConditions = 1_000_000
 
-func (a *app) modulus(o modulusOptions) error {
-	f, T, err := conditionLists(o.frequency, o.temperature)
+// conditions are all combinations of the lists of three flags, at the isotherms'
+// own strain where there is none.
+func conditions(frequency, temperature, strain string) ([]models.Condition, error) {
+	f, T, err := conditionLists(frequency, temperature)
 	if err != nil {
-		return err
+		return nil, err
 	}
 	strains := []float64{math.NaN()}
-	if o.strain != "" {
-		if strains, err = list("strain", o.strain, unit.Strain); err != nil {
-			return err
+	if strain != "" {
+		if strains, err = list("strain", strain, unit.Strain); err != nil {
+			return nil, err
 		}
 	}
-	if len(f)*len(T)*len(strains) > maxConditions {
-		return usagef("%d conditions are more than %d", len(f)*len(T)*len(strains), maxConditions)
-	}
-	c, err := models.Open(o.file)
-	if err != nil {
-		return err
+	if n := len(f) * len(T) * len(strains); n > maxConditions {
+		return nil, usagef("%d conditions are more than %d", n, maxConditions)
 	}
 	var q []models.Condition
 	for _, t := range T {
@@ -98,6 +96,18 @@ func (a *app) modulus(o modulusOptions) error {
 				q = append(q, models.Condition{Frequency: v, Temperature: t, Strain: s})
 			}
 		}
+	}
+	return q, nil
+}
+
+func (a *app) modulus(o modulusOptions) error {
+	q, err := conditions(o.frequency, o.temperature, o.strain)
+	if err != nil {
+		return err
+	}
+	c, err := models.Open(o.file)
+	if err != nil {
+		return err
 	}
 	t, outside, err := reports.ModulusTable(c, q, o.extrapolate)
 	if err != nil {
