@@ -46,15 +46,6 @@ func (s signal) record() Record {
 	return r
 }
 
-func has(r Result, c Code) bool {
-	for _, d := range r.Doubts {
-		if d.Code == c {
-			return true
-		}
-	}
-	return false
-}
-
 // Without noise everything comes out as put in: closed forms.
 func TestAnalyseExact(t *testing.T) {
 	s := usual()
