@@ -35,6 +35,7 @@ const (
 	Noisy               Code = "loss-angle-uncertain"         // rad, standard uncertainty of δ (0.0175: 1°)
 	LoopDiffers         Code = "loop-energy-differs"          // loop integral over π F0 x0 sin δ, minus 1 (0.02)
 	FrequencyFixedEarly Code = "frequency-fixed-early"        // rad over half a block (0.01)
+	ChangeFoundLate     Code = "change-found-late"            // samples of the next segment in this one (0)
 )
 
 // Doubt is one thing that makes a record doubtful, with the number that shows it.

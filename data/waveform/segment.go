@@ -1,6 +1,7 @@
 package waveform
 
 import (
+	"errors"
 	"fmt"
 	"math"
 
@@ -12,8 +13,10 @@ import (
 // head. If the head is never filled, the fit is made on it. Otherwise its frequency
 // and onset are found when it is full, it is poured into a stream, and what follows
 // goes there directly. A full head that holds fewer than leastCycles cycles is
-// averaged two by two and filled again: a cycle then has over a hundred samples,
-// so nothing is lost.
+// averaged two by two and filled again. A cycle then has s = Buffer/32 samples or
+// more; averaging loses the part (hπ/s)²/3 of the information on harmonic h, which
+// with the least buffer moves the fundamental by 0.02 of its uncertainty, with the
+// default one by less than 0.001.
 
 const (
 	probeSize   = 256
@@ -148,6 +151,9 @@ func (s *segment) take(t, force, displacement float64) {
 // step is the usual step of the samples in the head.
 func (s *segment) step() float64 { return s.clock.dt * float64(s.group) }
 
+// ahead is how far a group's first sample lies before its mean.
+func (s *segment) ahead() float64 { return float64(s.group-1) / 2 * s.clock.dt }
+
 // perCycle is how many samples of the head a cycle has.
 func (s *segment) perCycle(omega float64) float64 { return 2 * math.Pi / omega / s.step() }
 
@@ -178,7 +184,7 @@ func (s *segment) fit() (*solution, error) {
 	if _, pulls := detrended(s.t, s.f); !pulls {
 		return nil, refuse(ErrNoForce, fmt.Sprintf("%d samples over %g s", n, length), "the columns may be the wrong ones, or the load cell was not connected")
 	}
-	if per := 1 / (f * s.step()); s.group == 1 && per < 4 {
+	if per := 1 / (f * s.step()); per < 4 {
 		return nil, refuse(ErrTooSlow, fmt.Sprintf("%.3g samples a cycle at %.4g Hz", per, f), "sample at least ten times a cycle")
 	}
 	if c := f * (length + s.step()); c < 0.99 {
@@ -188,11 +194,12 @@ func (s *segment) fit() (*solution, error) {
 	if sol == nil {
 		return nil, refuse(ErrFit, fmt.Sprintf("no sine near %.4g Hz fits %d samples", f, n), "give the nominal frequency, or split the record where it changes")
 	}
+	// The largest of 30 000 lines of noise is 4.6 u on average.
 	d := derivation{s: sol}
-	if a, u := d.amplitude(1, 1); !(a > 5*u) {
+	if a, u := d.amplitude(1, 1); !(a > 6*u) {
 		return nil, refuse(ErrNoMotion, fmt.Sprintf("an amplitude of %.3g with a standard uncertainty of %.3g near %.4g Hz", a, u, f), "the columns may be the wrong ones, or the actuator stood still")
 	}
-	if per := s.perCycle(sol.frame.omega); s.group == 1 && per < 3.99 {
+	if per := s.perCycle(sol.frame.omega); per < 3.99 {
 		return nil, refuse(ErrTooSlow, fmt.Sprintf("%.3g samples a cycle", per), "sample at least ten times a cycle")
 	}
 	if c := sol.frame.omega / (2 * math.Pi) * (length + s.step()); c < 0.99 {
@@ -250,6 +257,10 @@ func (s *segment) leaveOut(sol *solution) bool {
 func (s *segment) pour() {
 	sol, err := s.fit()
 	if err != nil {
+		if per := 1 / (s.fx * s.step()); per > 80 && (errors.Is(err, ErrTooShort) || errors.Is(err, ErrFit)) {
+			s.pair()
+			return
+		}
 		// At rest yet, it seems: the older half goes.
 		n := len(s.t) / 2
 		s.counts.LeftOut += n * s.group
@@ -271,7 +282,7 @@ func (s *segment) pour() {
 	period := 2 * math.Pi / sol.frame.omega
 	cycles := math.Ceil(math.Max(1, 200/per))
 	st := newStream(sol.layout, sol.frame.omega, s.t[0], cycles*period, !s.set.Known)
-	s.start = s.t[0]
+	s.start = s.t[0] - s.ahead()
 	for i := range s.t {
 		st.add(s.t[i], s.f[i], s.x[i])
 	}
@@ -323,7 +334,7 @@ func (s *segment) finish() (Result, error) {
 				return Result{}, err
 			}
 		}
-		s.start = s.t[0]
+		s.start = s.t[0] - s.ahead()
 		// Blocks for the judgement alone.
 		period := 2 * math.Pi / sol.frame.omega
 		length := s.t[len(s.t)-1] - s.t[0] + s.step()
@@ -346,8 +357,8 @@ func (s *segment) finish() (Result, error) {
 	d := &derivation{s: sol, start: s.start, mean: s.group, gain: math.Sqrt(float64(s.group)), dt: s.clock.dt}
 	r.derive(d)
 	bl := s.stream.blocks
-	r.Start, r.End = s.start, bl[len(bl)-1].last
-	r.Cycles = r.Frequency * (r.End - r.Start + s.step())
+	r.Start, r.End = s.start, bl[len(bl)-1].last+s.ahead()
+	r.Cycles = r.Frequency * (r.End - r.Start + s.clock.dt)
 	r.PerCycle = 1 / (r.Frequency * s.clock.dt)
 	r.Counts = s.counts
 	r.Counts.Lost = s.clock.lost
