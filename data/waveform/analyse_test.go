@@ -219,3 +219,12 @@ func TestRefusals(t *testing.T) {
 		}
 	}
 }
+
+func has(r Result, c Code) bool {
+	for _, d := range r.Doubts {
+		if d.Code == c {
+			return true
+		}
+	}
+	return false
+}

@@ -19,7 +19,7 @@ type clock struct {
 }
 
 // usualStep is the median step, or the mean one where the times were rounded so
-// coarsely that most steps differ from the median. It returns 0 if time stands
+// coarsely that a fifth of the steps differ from the median. It returns 0 if time stands
 // still.
 func usualStep(t []float64) float64 {
 	if len(t) < 2 {
@@ -37,7 +37,7 @@ func usualStep(t []float64) float64 {
 			near++
 		}
 	}
-	if 2*near < len(steps) {
+	if 5*near < 4*len(steps) {
 		m = (t[len(t)-1] - t[0]) / float64(len(t)-1)
 	}
 	if !(m > 0) || math.IsInf(m, 0) {

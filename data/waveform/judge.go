@@ -66,7 +66,11 @@ func (s *segment) judgeSamples(r *Result, add func(Doubt)) {
 		}
 	}
 	if n := r.Counts.Backward; n > 0 {
-		add(Doubt{Code: TimeBackward, Severity: Suspect, Value: float64(n),
+		sev := Suspect
+		if 100*n > r.Counts.Given {
+			sev = Severe
+		}
+		add(Doubt{Code: TimeBackward, Severity: sev, Value: float64(n),
 			Evidence: fmt.Sprintf("%d samples have an earlier time than the one before and were left out", n),
 			Cause:    "two records were joined, or lines changed places", Remedy: "split the record, or sort it"})
 	}
@@ -118,26 +122,27 @@ func (s *segment) judgeFrequency(r *Result, sol *solution, add func(Doubt)) {
 
 // judgeBlocks looks at the phase and amplitude of each channel from block to block.
 func (s *segment) judgeBlocks(sol *solution, add func(Doubt)) {
-	type point struct{ u, phase, size, uSize float64 }
+	type point struct{ u, phase, uPhase, size, uSize float64 }
 	var points [2][]point
 	whole := derivation{s: sol}
 	f := sol.frame
 	var turn, last [2]float64
 	s.stream.each(func(b block, one *solution) {
-		if b.last-b.first < 0.7*2*math.Pi/f.omega {
+		if b.last-b.first+1.5*s.step() < 2*math.Pi/f.omega {
 			return
 		}
 		one.sigma = sol.sigma
 		d := derivation{s: one}
 		for c := range points {
 			z := d.phasor(c, 1) * cmplx.Rect(1, f.omega*(f.center-b.frame.center)) / whole.phasor(c, 1)
-			a, u := d.amplitude(c, 1)
+			_, u := d.amplitude(c, 1)
+			uPhase := d.u(d.phaseTerms(c, 1)...)
 			p := cmplx.Phase(z)
 			if len(points[c]) > 0 {
 				turn[c] += math.Round((last[c]-p-turn[c])/(2*math.Pi)) * 2 * math.Pi
 			}
 			last[c] = p + turn[c]
-			points[c] = append(points[c], point{(b.frame.center - f.center) / f.scale, last[c], cmplx.Abs(z), u / a})
+			points[c] = append(points[c], point{(b.frame.center - f.center) / f.scale, last[c], math.Min(uPhase, 1), cmplx.Abs(z), u / cmplx.Abs(whole.phasor(c, 1))})
 		}
 	})
 	for c, name := range []string{"force", "displacement"} {
@@ -145,7 +150,7 @@ func (s *segment) judgeBlocks(sol *solution, add func(Doubt)) {
 		if n < 3 {
 			continue
 		}
-		var mu, mp, ms, uu, up, us, noise float64
+		var mu, mp, ms, uu, up, us, noise, noisePhase float64
 		for _, p := range points[c] {
 			mu += p.u / n
 			mp += p.phase / n
@@ -156,6 +161,7 @@ func (s *segment) judgeBlocks(sol *solution, add func(Doubt)) {
 			up += (p.u - mu) * p.phase
 			us += (p.u - mu) * p.size
 			noise += p.uSize * p.uSize / n
+			noisePhase += p.uPhase * p.uPhase / n
 		}
 		var off, curve, fourth float64
 		for _, p := range points[c] {
@@ -165,7 +171,7 @@ func (s *segment) judgeBlocks(sol *solution, add func(Doubt)) {
 			curve += w * e
 			fourth += w * w
 		}
-		if excess := math.Sqrt(math.Max(off-noise, 0)); c == 1 && excess > 0.01 && off > 4*noise {
+		if excess := math.Sqrt(math.Max(off-noisePhase, 0)); c == 1 && excess > 0.01 && off > 4*noisePhase {
 			// φ = κ u² is a change of ω by 4κ/scale from end to end.
 			change := 4 * curve / fourth / f.scale / (2 * math.Pi)
 			add(Doubt{Code: FrequencyDrifts, Severity: Suspect, Channel: name, Value: excess, Limit: 0.01,

@@ -10,7 +10,8 @@ import "math"
 // extreme is taken for clipping if it is at least three samples and three more
 // than twice that natural run, and comes in two runs or more (one is enough in a
 // record of fewer than 2.5 cycles). q is the smallest difference seen between
-// neighbours.
+// neighbours; a channel in which no neighbours are equal but at the extremes is
+// not read in steps, and three samples are a run.
 
 // extreme follows the largest value of v (or of -v) and its runs.
 type extreme struct {
@@ -41,6 +42,7 @@ type rail struct {
 	top, bottom extreme
 	last        float64
 	quantum     float64 // smallest difference of neighbours, 0: none yet
+	equal       int     // neighbours equal, away from the extremes
 	n           int
 }
 
@@ -49,6 +51,9 @@ func (r *rail) add(v float64) {
 	r.bottom.add(-v)
 	if d := math.Abs(v - r.last); r.n > 0 && d > 0 && (r.quantum == 0 || d < r.quantum) {
 		r.quantum = d
+	}
+	if r.n > 0 && v == r.last && v < r.top.value && -v < r.bottom.value {
+		r.equal++
 	}
 	r.last = v
 	r.n++
@@ -65,11 +70,11 @@ func (r *rail) clipped(perCycle, cycles float64) (e extreme, value float64, limi
 		return e, 0, 0, false
 	}
 	natural := math.Sqrt(2*r.quantum/a) / math.Pi * perCycle
-	if natural > float64(r.n) {
+	if r.equal > 0 && natural > float64(r.n) {
 		return e, 0, 0, false
 	}
 	limit = 3
-	if natural > 0.5 {
+	if r.equal > 0 && natural > 0.5 {
 		limit += int(math.Ceil(2 * natural))
 	}
 	e, value = r.top, r.top.value

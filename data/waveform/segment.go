@@ -49,11 +49,6 @@ func newSegment(set *Settings, limit int) *segment {
 // add takes one sample.
 func (s *segment) add(t, force, displacement float64) {
 	s.counts.Given++
-	if !finite(t) {
-		s.counts.Missing++
-		s.clock.untold++
-		return
-	}
 	if s.clock.dt > 0 {
 		s.pass(t, force, displacement)
 		return
@@ -65,7 +60,7 @@ func (s *segment) add(t, force, displacement float64) {
 }
 
 // drain fixes the usual step and passes the probe on, except while the time stands
-// still: then the probe is forgotten but for its last sample.
+// still: then the probe is forgotten.
 func (s *segment) drain() {
 	if len(s.probe) == 0 {
 		return
@@ -73,6 +68,10 @@ func (s *segment) drain() {
 	// A step back must not spoil the step: the longest forward part counts.
 	var forward, best []float64
 	for _, p := range s.probe {
+		if !finite(p[0]) {
+			forward = nil
+			continue
+		}
 		if len(forward) > 0 && p[0] < forward[len(forward)-1] {
 			forward = nil
 		}
@@ -83,9 +82,14 @@ func (s *segment) drain() {
 	}
 	s.clock.dt = usualStep(best)
 	if s.clock.dt == 0 {
-		n := len(s.probe) - 1
-		s.counts.LeftOut += n
-		s.probe = append(s.probe[:0], s.probe[n])
+		for _, p := range s.probe {
+			if finite(p[0]) {
+				s.counts.LeftOut++
+			} else {
+				s.counts.Missing++
+			}
+		}
+		s.probe = s.probe[:0]
 		return
 	}
 	probe := s.probe
@@ -96,8 +100,14 @@ func (s *segment) drain() {
 }
 
 func (s *segment) pass(t, force, displacement float64) {
+	if !finite(t) {
+		s.counts.Missing++
+		s.clock.untold++
+		return
+	}
 	if s.clock.any && t < s.clock.last {
 		s.counts.Backward++
+		s.clock.untold++
 		return
 	}
 	gap := s.clock.step(t)
@@ -273,6 +283,12 @@ func (s *segment) pour() {
 		s.pair()
 		return
 	}
+	if n := restBefore(s.t, s.x, sol.frame.omega); n > 0 {
+		s.counts.LeftOut += n * s.group
+		s.restLeftOut += n * s.group
+		s.keep(n)
+		return
+	}
 	t, f, x := s.t, s.f, s.x
 	s.leaveOut(sol)
 	if len(s.t) == 0 {
@@ -328,6 +344,15 @@ func (s *segment) finish() (Result, error) {
 		var err error
 		if sol, err = s.fit(); err != nil {
 			return Result{}, err
+		}
+		rest := restBefore(s.t, s.x, sol.frame.omega)
+		if rest > 0 {
+			s.counts.LeftOut += rest * s.group
+			s.restLeftOut += rest * s.group
+			s.keep(rest)
+			if sol, err = s.fit(); err != nil {
+				return Result{}, err
+			}
 		}
 		if s.leaveOut(sol) {
 			if sol, err = s.fit(); err != nil {

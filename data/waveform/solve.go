@@ -34,6 +34,7 @@ type solution struct {
 	unit   []float64   // (RbᵀRb)⁻¹, base×base
 	rss    [2][2]float64
 	sigma  [2][2]float64 // covariance of the noise
+	w      [2][2]float64 // weights of the channels
 	step   float64       // κ
 	varK   float64       // of κ; 0 at a known frequency
 	alone  [2]float64    // the step each channel alone would take
@@ -50,9 +51,9 @@ func (s *solution) dof() float64 {
 	return d
 }
 
-// solve reads a folded factor. It returns nil if the base is not of full rank or
+// solve reads a folded factor. The weights are those of held, if it is not nil. It returns nil if the base is not of full rank or
 // nothing is left for the noise.
-func solve(a *triangle, l layout, f frame, free bool) *solution {
+func solve(a *triangle, l layout, f frame, free bool, held *solution) *solution {
 	p, q, nc := l.base(), l.extra(), l.channels
 	s := &solution{layout: l, frame: f, n: a.count, free: free}
 	if s.dof() < 1 {
@@ -105,6 +106,10 @@ func solve(a *triangle, l layout, f frame, free bool) *solution {
 		}
 	}
 	if l.times {
+		s.w = weights(s.sigma, s.b, l)
+		if held != nil {
+			s.w = held.w
+		}
 		s.stepFrom(a, back)
 	}
 	return s
@@ -132,7 +137,7 @@ func (s *solution) stepFrom(a *triangle, back func([]float64) []float64) {
 		s.g = append(s.g, back(top))
 		r[c] = low
 	}
-	w := weights(s.sigma, s.b, l)
+	w := s.w
 	var S, num float64
 	u := make([][]float64, nc)
 	for d := range nc {
@@ -193,18 +198,24 @@ func weights(sigma [2][2]float64, b [][]float64, l layout) [2][2]float64 {
 const (
 	maxPasses = 40
 	tinyStep  = 1e-12 // rad at the end of the record
+	// Channels of two frequencies would take the weight from each other for ever.
+	holdWeights = 8
 )
 
 // iterate makes Gauss-Newton steps from f.omega until the stopping rule holds.
 // factor returns the folded factor at a frame. A step is bounded to one radian at
 // the record's ends. It returns nil where the fit cannot be made or does not end.
 func iterate(factor func(frame) *triangle, l layout, f frame, free bool) *solution {
+	var held *solution
 	for pass := 1; pass <= maxPasses; pass++ {
-		s := solve(factor(f), l, f, free)
+		s := solve(factor(f), l, f, free, held)
 		if s == nil {
 			return nil
 		}
 		s.passes = pass
+		if pass == holdWeights {
+			held = s
+		}
 		if !free {
 			return s
 		}

@@ -162,7 +162,7 @@ func (s *stream) each(visit func(block, *solution)) {
 	for _, b := range s.blocks {
 		copy(s.carried.r, b.r)
 		s.carried.rows, s.carried.count = 0, b.count
-		if sol := solve(s.carried, l, b.frame, false); sol != nil {
+		if sol := solve(s.carried, l, b.frame, false, nil); sol != nil {
 			visit(b, sol)
 		}
 	}

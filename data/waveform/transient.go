@@ -52,7 +52,7 @@ func findOnset(t, force, displacement []float64, omega float64, l layout, perCyc
 		if i == len(t) && t[i-1] < lo+span-1.5*period/perCycle {
 			break // the last one is not complete
 		}
-		s := solve(a, l, f, false)
+		s := solve(a, l, f, false, nil)
 		if s == nil {
 			break // a gap: what follows cannot tell
 		}
@@ -87,6 +87,49 @@ func findOnset(t, force, displacement []float64, omega float64, l layout, perCyc
 	o.cycles = lead * group
 	o.end = t[0] + float64(lead)*span
 	return o
+}
+
+// restBefore returns how many samples lie before the first cycle in which the
+// displacement has half of its largest amplitude, if the first cycle has less than
+// a tenth of it; otherwise 0. The second largest amplitude counts, for the largest
+// may be a jerk.
+func restBefore(t, x []float64, omega float64) int {
+	period := 2 * math.Pi / omega
+	var sizes []float64
+	var starts []int
+	for i := 0; i < len(t); {
+		end := t[i] + period
+		k := i
+		m := 0.0
+		for k < len(t) && t[k] < end {
+			m += x[k]
+			k++
+		}
+		m /= float64(k - i)
+		var c, s float64
+		for j := i; j < k; j++ {
+			sin, cos := math.Sincos(omega * (t[j] - t[i]))
+			c += (x[j] - m) * cos
+			s += (x[j] - m) * sin
+		}
+		sizes, starts = append(sizes, math.Hypot(c, s)/float64(k-i)), append(starts, i)
+		i = k
+	}
+	sorted := slices.Clone(sizes)
+	slices.Sort(sorted)
+	if len(sorted) < 3 {
+		return 0
+	}
+	large := sorted[len(sorted)-2]
+	if !(sizes[0] < 0.1*large) {
+		return 0
+	}
+	for i, a := range sizes {
+		if a > large/2 {
+			return starts[i]
+		}
+	}
+	return 0
 }
 
 func median[T any](x []T, of func(T) float64) float64 {
