@@ -97,6 +97,7 @@ func TestScatterIsUncertainty(t *testing.T) {
 		{"four parameters, noise correlated", Settings{Trend: LinearTrend}, 0.8},
 	} {
 		t.Run(c.name, func(t *testing.T) {
+			t.Parallel()
 			s := usual()
 			s.corr, s.third, s.rate = c.corr, 0.05, 200
 			const draws = 1000

@@ -1,6 +1,7 @@
 package waveform
 
 import (
+	"errors"
 	"fmt"
 	"math"
 )
@@ -19,7 +20,8 @@ type Segment struct {
 // What it keeps for good is one Segment per segment.
 //
 // Segments are the runs of equal steps ([Analyser.AddStep]), or with Detect what a
-// [Splitter] finds in the displacement.
+// [Splitter] finds in the displacement; there what is too short for a fit is no
+// segment, but counts as unsteady.
 type Analyser struct {
 	set      Settings
 	cur      *segment // nil: none open
@@ -31,7 +33,6 @@ type Analyser struct {
 	ring     []sample // with Detect: samples not yet given to a segment
 	head     int      // of the ring: the oldest
 	held     int
-	steady   bool
 	unsteady int
 	late     int // samples of this segment that went to the one before
 	finished bool
@@ -104,7 +105,7 @@ func (a *Analyser) AddStep(step, t, force, displacement float64) {
 	a.late = max(oldest-b.Index, 0)
 	a.release(max(b.Index-oldest, 0))
 	a.end()
-	if a.steady = b.Steady; a.steady {
+	if b.Steady {
 		a.begin(a.n - a.held)
 	}
 }
@@ -135,6 +136,12 @@ func (a *Analyser) end() {
 	}
 	s := Segment{Step: a.step, First: a.first, Last: a.n - a.held - 1, Unsteady: a.unsteady}
 	s.Result, s.Err = a.cur.finish()
+	if a.split != nil && (errors.Is(s.Err, ErrTooFew) || errors.Is(s.Err, ErrTooShort) || errors.Is(s.Err, ErrNoMotion)) {
+		// A steady moment, not a piece that anybody meant.
+		a.unsteady += s.Last - s.First + 1
+		a.late, a.cur = 0, nil
+		return
+	}
 	if a.late > 0 && s.Err == nil {
 		s.Result.Doubts = append(s.Result.Doubts, Doubt{Code: ChangeFoundLate, Severity: Suspect, Value: float64(a.late),
 			Evidence: fmt.Sprintf("the last %d samples belong to what follows", a.late),
@@ -149,7 +156,7 @@ func (a *Analyser) end() {
 func (a *Analyser) flush() {
 	a.release(a.held)
 	a.end()
-	a.steady, a.unsteady, a.late = false, 0, 0
+	a.unsteady, a.late = 0, 0
 }
 
 // Finish ends the record and returns its segments in their order.

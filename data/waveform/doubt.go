@@ -33,6 +33,7 @@ const (
 	FrequenciesDiffer   Code = "channels-differ-in-frequency" // force over displacement, minus 1
 	FrequencyOffNominal Code = "frequency-off-nominal"        // over the known frequency, minus 1
 	Noisy               Code = "loss-angle-uncertain"         // rad, standard uncertainty of δ (0.0175: 1°)
+	BlocksScatter       Code = "blocks-scatter"               // scatter of the blocks' loss angles over that of white noise (2)
 	LoopDiffers         Code = "loop-energy-differs"          // loop integral over π F0 x0 sin δ, minus 1 (0.02)
 	FrequencyFixedEarly Code = "frequency-fixed-early"        // rad over half a block (0.01)
 	ChangeFoundLate     Code = "change-found-late"            // samples of the next segment in this one (0)

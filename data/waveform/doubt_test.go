@@ -73,9 +73,10 @@ func TestDoubts(t *testing.T) {
 			k := 1 - 0.4*math.Exp(-*t/0.1)
 			*f, *x = *f*k, *x*k
 		}, Settings{}, []Code{TransientLeftOut}, 5},
-		{"another frequency in the force", plain, func(_ int, t, f, _ *float64) { *f = 50 * math.Cos(2*math.Pi*9.4**t) }, Settings{}, []Code{FrequenciesDiffer, Noisy}, -1},
+		{"another frequency in the force", plain, func(_ int, t, f, _ *float64) { *f = 50 * math.Cos(2*math.Pi*9.4**t) }, Settings{}, []Code{FrequenciesDiffer, Noisy, BlocksScatter}, -1},
 		{"another clock", plain, func(_ int, t, f, _ *float64) { *f = 50 * math.Cos(w*1.001**t+0.3) }, Settings{}, []Code{FrequenciesDiffer}, -1},
 		{"not the nominal frequency", plain, same, Settings{Frequency: 7.3, Known: true}, []Code{FrequencyOffNominal, FrequencyDrifts}, -1},
+		{"another motor beside", plain, func(_ int, t, f, _ *float64) { *f += 3 * math.Cos(2*math.Pi*7.9**t+1) }, Settings{}, []Code{BlocksScatter}, -1},
 		{"noisy", with(func(s *signal) { s.noiseF = 60 }), same, Settings{}, []Code{Noisy}, 5},
 		{"both distorted", with(func(s *signal) { s.third, s.noiseF, s.noiseX = 0.2, 0.01, 1e-8 }), func(_ int, t, _, x *float64) { *x += 2e-5 * math.Cos(3*w**t-1) }, Settings{}, []Code{LoopDiffers}, 5},
 	} {
@@ -86,7 +87,7 @@ func TestDoubts(t *testing.T) {
 			continue
 		}
 		got := codes(r)
-		ok := len(got) <= len(c.want)
+		ok := len(got) <= len(c.want) && (len(got) > 0 || len(c.want) == 0)
 		for _, w := range c.want[:min(1, len(c.want))] {
 			ok = ok && has(r, w)
 		}

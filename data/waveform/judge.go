@@ -124,6 +124,7 @@ func (s *segment) judgeFrequency(r *Result, sol *solution, add func(Doubt)) {
 func (s *segment) judgeBlocks(sol *solution, add func(Doubt)) {
 	type point struct{ u, phase, uPhase, size, uSize float64 }
 	var points [2][]point
+	var angles []angle
 	whole := derivation{s: sol}
 	f := sol.frame
 	var turn, last [2]float64
@@ -133,6 +134,10 @@ func (s *segment) judgeBlocks(sol *solution, add func(Doubt)) {
 		}
 		one.sigma = sol.sigma
 		d := derivation{s: one}
+		F, x := d.phasor(0, 1), d.phasor(1, 1)
+		if v := cmplx.Phase(F / x / whole.phasor(0, 1) * whole.phasor(1, 1)); finite(v) {
+			angles = append(angles, angle{v, d.u(append(d.phaseTerms(0, 1), d.phaseTerms(1, -1)...)...)})
+		}
 		for c := range points {
 			z := d.phasor(c, 1) * cmplx.Rect(1, f.omega*(f.center-b.frame.center)) / whole.phasor(c, 1)
 			_, u := d.amplitude(c, 1)
@@ -145,6 +150,7 @@ func (s *segment) judgeBlocks(sol *solution, add func(Doubt)) {
 			points[c] = append(points[c], point{(b.frame.center - f.center) / f.scale, last[c], math.Min(uPhase, 1), cmplx.Abs(z), u / cmplx.Abs(whole.phasor(c, 1))})
 		}
 	})
+	s.judgeScatter(angles, add)
 	for c, name := range []string{"force", "displacement"} {
 		n := float64(len(points[c]))
 		if n < 3 {
@@ -185,4 +191,32 @@ func (s *segment) judgeBlocks(sol *solution, add func(Doubt)) {
 				Cause:    "the specimen warms up or softens, or the control settles", Remedy: "condition longer, or fit a later part of the record"})
 		}
 	}
+}
+
+// angle is the loss angle of a block less that of the whole, and its standard
+// uncertainty under white noise.
+type angle struct{ v, u float64 }
+
+// judgeScatter compares the scatter of the blocks' loss angles with that of white
+// noise. Differences of neighbours are taken, so that a slow change does not count.
+func (s *segment) judgeScatter(a []angle, add func(Doubt)) {
+	const least, limit = 12, 2
+	if len(a) < least {
+		return
+	}
+	var got, want float64
+	for i := 1; i < len(a); i++ {
+		d := a[i].v - a[i-1].v
+		got += d * d
+		want += a[i].u*a[i].u + a[i-1].u*a[i-1].u
+	}
+	n := 2 * float64(len(a)-1)
+	ratio := math.Sqrt(got / want)
+	got, want = math.Sqrt(got/n), math.Sqrt(want/n)
+	if !(ratio > limit) || got < 0.001 {
+		return
+	}
+	add(Doubt{Code: BlocksScatter, Severity: Suspect, Value: ratio, Limit: limit,
+		Evidence: fmt.Sprintf("the loss angles of %d blocks scatter by %.2g°; white noise of the same size would give %.2g°", len(a), got*180/math.Pi, want*180/math.Pi),
+		Cause:    "hum, or a motion that is not steady from cycle to cycle", Remedy: fmt.Sprintf("take the standard uncertainties %.2g times as large, and look for the disturbance", ratio)})
 }

@@ -14,13 +14,18 @@ import "math"
 // after a larger one), and σ the noise, from the mean square of fourth differences
 // over 70. A cycle runs from one upward crossing of the mid-level to the next and
 // has a period and a swing. While both stay within Change of their running means
-// the motion is steady; two deviating cycles in a row end it at the beginning of
-// the first of them, and two cycles in a row that agree with each other begin the
-// next steady piece. A rest of 2.5 periods, a gap of three periods in time, and time
-// running backward end it as well.
+// the motion is steady; two deviating cycles in a row end it, and two cycles in a
+// row that agree with each other begin the next steady piece. A rest of 2.5 periods,
+// a gap of three periods in time, and time running backward end it as well.
 //
-// It needs five samples a cycle and noise below a tenth of the amplitude. A steady
-// piece loses at most its first cycle and a half.
+// A change can come so near the end of a cycle that it moves the cycle by less than
+// Change. Therefore a steady piece begins with the second of the agreeing cycles and
+// ends before the last one that agreed: it loses up to three cycles at its beginning
+// and two at its end.
+//
+// It needs five samples a cycle and noise below a thirtieth of the amplitude. It
+// does not see a piece that is both below a third of the swing before it and over
+// within 1.5 of the half periods before it.
 
 // Boundary is where a piece of a record begins.
 type Boundary struct {
@@ -60,7 +65,7 @@ type Splitter struct {
 	steady     bool
 	mean       cycle // of the steady piece
 	odd        int   // deviating cycles in a row
-	oddIndex   int
+	good       int   // index where the last agreeing cycle began
 }
 
 type cycle struct {
@@ -88,10 +93,10 @@ func (s *Splitter) Add(t, displacement float64) (b Boundary, found bool) {
 	if s.any && (t < s.lastT || s.cycles > 0 && t-s.lastT > 3*s.cycle.period) {
 		b, found = s.restart(i)
 	} else if s.steady && t-s.crossT > 2.5*s.mean.period {
-		b, found = s.restart(s.crossIndex)
+		b, found = s.restart(s.good)
 	}
 	s.follow(t, displacement)
-	if s.cross(t, displacement) {
+	if s.cross(displacement) {
 		when := t
 		if mid := (s.low + s.high) / 2; s.any && displacement > s.last && mid > s.last && t > s.lastT {
 			when = s.lastT + (t-s.lastT)*(mid-s.last)/(displacement-s.last)
@@ -162,7 +167,7 @@ func (s *Splitter) follow(t, x float64) {
 }
 
 // cross reports the first sample above the mid-level after each minimum.
-func (s *Splitter) cross(_, x float64) bool {
+func (s *Splitter) cross(x float64) bool {
 	if s.turns < 2 || s.dir < 0 || s.crossed || x < (s.low+s.high)/2 {
 		return false
 	}
@@ -181,21 +186,21 @@ func (s *Splitter) judge(c cycle) (Boundary, bool) {
 		if s.cycles > 1 && agrees(last) {
 			s.steady, s.odd = true, 0
 			s.mean = cycle{period: (c.period + last.period) / 2, swing: (c.swing + last.swing) / 2}
-			return Boundary{last.index, true}, true
+			s.good = c.index
+			return Boundary{c.index, true}, true
 		}
 		return Boundary{}, false
 	}
 	if agrees(s.mean) {
-		s.odd = 0
+		s.odd, s.good = 0, c.index
 		s.mean.period += (c.period - s.mean.period) / 8
 		s.mean.swing += (c.swing - s.mean.swing) / 8
 		return Boundary{}, false
 	}
 	s.odd++
 	if s.odd == 1 {
-		s.oddIndex = c.index
 		return Boundary{}, false
 	}
 	s.steady = false
-	return Boundary{s.oddIndex, false}, true
+	return Boundary{s.good, false}, true
 }
