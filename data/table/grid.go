@@ -35,18 +35,104 @@ const blanks = " "
 // before a separator or a line end within 20 lines; two quotes inside are one.
 // Any other quote is text: G" is a heading.
 func grid(text, separator string) ([][]Cell, error) {
-	var rows [][]Cell
-	var row []Cell
-	cells := 0
-	line, column := 1, 1
-	endRow := func() {
-		for len(row) > 0 && row[len(row)-1].Text == "" {
-			row = row[:len(row)-1]
-		}
-		rows = append(rows, row)
-		row = nil
-	}
+	g := gridder{separator: separator[0]}
+	line := 1
 	for i := 0; i < len(text); {
+		end := strings.IndexByte(text[i:], '\n')
+		if end < 0 {
+			end = len(text) - i
+		}
+		var next, lines int
+		if content := text[i : i+end]; strings.IndexByte(content, '"') < 0 {
+			g.plainRow(content, line)
+			next, lines = i+end+1, 1
+		} else {
+			next, lines = g.quotedRow(text, i, line)
+		}
+		line += lines
+		i = next
+		if !g.endRow() {
+			return nil, &place.Error{Line: line - 1, What: fmt.Sprintf("more than %d cells in a row, or %d in all", maxRowCells, maxCells), Hint: "is this the right file, and the right separator?"}
+		}
+	}
+	return g.rows, nil
+}
+
+// gridder cuts rows. The cells of many rows share one slice.
+type gridder struct {
+	separator byte
+	rows      [][]Cell
+	cells     []Cell // of this chunk
+	start     int    // of the row in cells
+	total     int
+}
+
+// chunk is the number of cells for which memory is taken at once.
+const chunk = 8192
+
+func (g *gridder) add(text string, line, column int) {
+	if len(g.cells)-g.start > maxRowCells {
+		return // the row is refused at its end
+	}
+	if len(g.cells) == cap(g.cells) {
+		row := g.cells[g.start:]
+		g.cells, g.start = append(make([]Cell, 0, chunk), row...), 0
+	}
+	g.cells = append(g.cells, Cell{Text: text, Line: line, Column: column})
+}
+
+// endRow takes the cells since the last row as a row, without the empty ones at
+// its end, and reports whether the limits are kept.
+func (g *gridder) endRow() bool {
+	row := g.cells[g.start:len(g.cells):len(g.cells)]
+	g.total += len(row)
+	g.start = len(g.cells)
+	fine := len(row) <= maxRowCells && g.total <= maxCells
+	for len(row) > 0 && row[len(row)-1].Text == "" {
+		row = row[:len(row)-1]
+	}
+	g.rows = append(g.rows, row)
+	return fine
+}
+
+// plainRow cuts a line without quotes.
+func (g *gridder) plainRow(s string, line int) {
+	column := 1 // of s[i]
+	for i := 0; i <= len(s); {
+		if g.separator == ' ' {
+			n := 0
+			for i+n < len(s) && (s[i+n] == ' ' || s[i+n] == '\t') {
+				n++
+			}
+			i, column = i+n, column+n
+			if i == len(s) {
+				return
+			}
+		}
+		end := i
+		for end < len(s) && s[end] != g.separator && (g.separator != ' ' || s[end] != '\t') {
+			end++
+		}
+		cell := s[i:end]
+		text := tidy(cell)
+		g.add(text, line, column+leading(cell))
+		if len(g.cells)-g.start > maxRowCells {
+			return
+		}
+		column += utf8.RuneCountInString(cell) + 1
+		i = end + 1
+		if g.separator != ' ' && end == len(s) {
+			return
+		}
+	}
+}
+
+// quotedRow cuts a row some of whose cells are quoted, perhaps over several
+// lines. It gives the start of the next row and the number of lines.
+func (g *gridder) quotedRow(text string, i, line int) (next, lines int) {
+	separator := string(g.separator)
+	column, lines := 1, 1
+	for i < len(text) {
 		if separator == blanks {
 			for i < len(text) && (text[i] == ' ' || text[i] == '\t') {
 				i++
@@ -56,46 +142,32 @@ func grid(text, separator string) ([][]Cell, error) {
 				break
 			}
 		}
-		cell, next := cutCell(text[i:], separator)
-		cell.Line, cell.Column = line, column+leading(text[i:i+next])
-		raw := text[i : i+next]
+		cell, length := cutCell(text[i:], separator)
+		raw := text[i : i+length]
+		if separator != blanks || cell.Text != "" {
+			g.add(cell.Text, line+lines-1, column+leading(raw))
+		}
 		if n := strings.Count(raw, "\n"); n > 0 {
-			line += n
+			lines += n
 			column = utf8.RuneCountInString(raw[strings.LastIndexByte(raw, '\n')+1:]) + 1
 		} else {
 			column += utf8.RuneCountInString(raw)
 		}
-		i += next
-		atEnd := i == len(text) || text[i] == '\n'
-		if separator != blanks || cell.Text != "" {
-			row = append(row, cell)
-			cells++
+		i += length
+		if i == len(text) || text[i] == '\n' {
+			break
 		}
-		if len(row) > maxRowCells || cells > maxCells {
-			return nil, &place.Error{Line: line, What: fmt.Sprintf("more than %d cells in a row, or %d in all", maxRowCells, maxCells), Hint: "is this the right file, and the right separator?"}
-		}
-		switch {
-		case atEnd:
-			endRow()
-			i++
-			line++
-			column = 1
-		default:
-			i += 1
-			column++
-			if i == len(text) && separator != blanks {
-				endRow()
-			}
-		}
+		i++
+		column++
 	}
-	if len(row) > 0 {
-		endRow()
-	}
-	return rows, nil
+	return i + 1, lines
 }
 
 // leading counts the blanks before a cell's text.
 func leading(s string) int {
+	if s == "" || s[0] > ' ' && s[0] < 0x80 {
+		return 0
+	}
 	n := 0
 	for _, r := range s {
 		if !unicode.IsSpace(r) {
@@ -151,6 +223,15 @@ func cutCell(s, separator string) (c Cell, length int) {
 
 // tidy joins lines and blanks of a cell to single blanks.
 func tidy(s string) string {
+	for i := 0; i < len(s); i++ {
+		if s[i] <= ' ' || s[i] >= 0x80 {
+			return tidyBlanks(s)
+		}
+	}
+	return s
+}
+
+func tidyBlanks(s string) string {
 	return strings.Join(strings.Fields(s), " ")
 }
 

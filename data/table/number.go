@@ -10,15 +10,12 @@ import (
 	"phaselag/data/unit"
 )
 
-var (
-	pointNumber = regexp.MustCompile(`^[+\-−]?(\d+\.?\d*|\.\d+)([eE][+\-−]?\d+)?$`)
-	commaNumber = regexp.MustCompile(`^[+\-−]?(\d+,\d*|,\d+)([eE][+\-−]?\d+)?$`)
-	grouped     = regexp.MustCompile(`^[+\-−]?[1-9]\d{0,2}([., ]\d{3})+([.,]\d+)?$`)
-)
+// grouped is a number that may have thousands separators.
+var grouped = regexp.MustCompile(`^[+\-−]?[1-9]\d{0,2}([., ]\d{3})+([.,]\d+)?$`)
 
 // looksNumeric reports whether a cell is a number with either decimal sign.
 func looksNumeric(s string) bool {
-	return s != "" && (pointNumber.MatchString(s) || commaNumber.MatchString(s))
+	return formOf(s) != noNumber
 }
 
 // missing reports whether a cell says in words that there is no number.
@@ -57,17 +54,19 @@ func findDecimal(rows []Row, stated string) (string, error) {
 	for r := range rows {
 		for i := range rows[r].Cells {
 			c := &rows[r].Cells[i]
-			switch {
-			case commaNumber.MatchString(c.Text):
+			switch formOf(c.Text) {
+			case withComma:
 				if comma == nil {
 					comma = c
 				}
-				if grouped.MatchString(c.Text) {
+				switch {
+				case sure:
+				case grouped.MatchString(c.Text):
 					doubtful = c
-				} else {
+				default:
 					sure = true
 				}
-			case strings.Contains(c.Text, ".") && pointNumber.MatchString(c.Text):
+			case withPoint:
 				if point == nil {
 					point = c
 				}
@@ -91,6 +90,9 @@ func findDecimal(rows []Row, stated string) (string, error) {
 
 // number reads a cell: NaN where it is missing, an infinity where it says so.
 func (t *Table) number(c Cell) (float64, error) {
+	if x, ok := quick(c.Text, t.Decimal[0]); ok {
+		return x, nil
+	}
 	if missing(c.Text) {
 		return math.NaN(), nil
 	}

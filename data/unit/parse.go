@@ -113,11 +113,12 @@ func ParseNumber(text string) (float64, error) {
 	return x, nil
 }
 
+var typographic = strings.NewReplacer("−", "-", "–", "-", "﹣", "-", "－", "-",
+	"\u00a0", " ", "\u202f", " ", "\u2009", " ", "\u2007", " ", "\t", " ", "\ufeff", "")
+
 // plain replaces typographic minus signs and blanks by plain ones.
 func plain(text string) string {
-	s := strings.NewReplacer("−", "-", "–", "-", "﹣", "-", "－", "-",
-		"\u00a0", " ", "\u202f", " ", "\u2009", " ", "\u2007", " ", "\t", " ", "\ufeff", "").Replace(text)
-	return strings.TrimSpace(s)
+	return strings.TrimSpace(typographic.Replace(text))
 }
 
 // numberEnd returns the length of the decimal number at the start of s, 0 if
