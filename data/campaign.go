@@ -108,6 +108,8 @@ type Test struct {
 	// Columns says how each used column was understood, for people.
 	Columns []Column
 	Runs    []Run
+	// Signals holds what was found in the segments of a test of raw signals.
+	Signals []Signal
 	// StaticValues holds the rows of a Static test; Runs is then empty.
 	StaticValues []StaticValue
 }

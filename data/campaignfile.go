@@ -107,7 +107,7 @@ func (t *tree) uncertainty(m mapping, c *Campaign) {
 // testKeys are the keys of one test.
 var testKeys = []string{"name", "kind", "file", "files", "rows", "columns", "reading", "temperature", "frequency", "strain", "amplitude", "strain_source",
 	"control", "direction", "static_strain", "static_force", "dwell", "rate", "ramp_time", "conditioning", "deformation", "specimen", "mounting", "tested",
-	"apparatus", "leave_out", "values"}
+	"apparatus", "leave_out", "values", "signals"}
 
 func (t *tree) tests(s *source, m mapping, c *Campaign) []*plan {
 	var plans []*plan
@@ -122,9 +122,13 @@ func (t *tree) tests(s *source, m mapping, c *Campaign) []*plan {
 		p := t.test(s, k, c)
 		p.where = place.Error{File: t.file, Line: k.node.Line, Column: k.node.Column, Path: where}
 		if p.Name == "" {
-			p.Name = string(p.Kind)
+			kind := string(p.Kind)
+			if p.signals != nil {
+				kind = "waveform"
+			}
+			p.Name = kind
 			for j := 2; seen[p.Name]; j++ {
-				p.Name = fmt.Sprintf("%s %d", p.Kind, j)
+				p.Name = fmt.Sprintf("%s %d", kind, j)
 			}
 		}
 		if seen[p.Name] {
@@ -147,13 +151,17 @@ func (t *tree) test(s *source, k mapping, c *Campaign) *plan {
 	p := newPlan()
 	p.Name = k.text("name")
 	if !k.has("kind") {
-		t.fault(k.node, k.sub("kind"), "kind: frequency sweep, strain sweep, temperature sweep, relaxation or static", "the kind of test is not stated")
+		t.fault(k.node, k.sub("kind"), "kind: frequency sweep, strain sweep, temperature sweep, relaxation, waveform or static", "the kind of test is not stated")
 	}
 	kind := k.choice("kind", "", string(FrequencySweep), string(StrainSweep), string(TemperatureSweep), string(Relaxation), string(Static), "waveform")
 	if kind == "waveform" {
-		t.fault(k.at("kind"), k.sub("kind"), "evaluate the signals first and give the moduli", "raw signals are not read in this version")
+		p.signals = t.signalSettings(k)
+	} else {
+		p.Kind = Kind(kind)
+		if k.has("signals") {
+			t.fault(k.at("signals"), k.sub("signals"), "kind: waveform", "signals are analysed in a test of kind waveform only")
+		}
 	}
-	p.Kind = Kind(kind)
 	for _, key := range []string{"file", "files"} {
 		for _, n := range k.list(key) {
 			name := t.text(t.follow(n, k.sub(key)), k.sub(key))

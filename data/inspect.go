@@ -2,6 +2,7 @@ package data
 
 import (
 	"fmt"
+	"io"
 	"math"
 	"path"
 	"path/filepath"
@@ -29,6 +30,9 @@ type Inspection struct {
 	Kind    Kind
 	Runs    []Run
 	Refused error
+	// Signals holds the segments of a file of raw signals; nil otherwise. Its values
+	// and ranges are then those of its first rows.
+	Signals []Signal
 	// First holds the first lines, split into cells, of a file without headings that
 	// are understood; nil otherwise.
 	First [][]string
@@ -62,6 +66,9 @@ func Inspect(name string) ([]*Inspection, error) {
 		return nil, &place.Error{File: name, What: "is a campaign file by its name, not a table", Hint: "phaselag check shows how a campaign and its tables were understood"}
 	}
 	s := &source{}
+	if in, err := inspectSignals(s, name); err != nil || in != nil {
+		return []*Inspection{in}, err
+	}
 	content, err := s.read(name, path.Base(filepath.ToSlash(name)))
 	if err != nil {
 		return nil, err
@@ -105,13 +112,42 @@ func inspectTable(name string, t *table.Table, c *Campaign, refused error) *Insp
 			}
 		}
 		for _, a := range c.Assumptions {
-			if !contains(in.Assumptions, a) {
+			if !contains(in.Assumptions, a) && !contains(in.Assumptions, strings.TrimPrefix(a, path.Base(filepath.ToSlash(name))+": ")) {
 				in.Assumptions = append(in.Assumptions, a)
 			}
 		}
 	}
 	in.Snippet = in.snippet(t)
 	return in
+}
+
+// inspectSignals analyses a file of raw signals; nil without an error where it has
+// none. Of a table of results with a time column the moduli come first.
+func inspectSignals(s *source, name string) (in *Inspection, err error) {
+	fault := s.stream(name, name, func(r io.Reader) error {
+		st, e := table.NewStream(name, r, table.Settings{})
+		if e != nil {
+			return nil
+		}
+		cols, ok, e := signalColumnsOf(st.Table)
+		if !ok || e != nil {
+			return nil
+		}
+		for _, c := range []table.Concept{table.Frequency, table.Storage, table.Magnitude, table.Phase} {
+			if len(st.Table.FindAll(c)) > 0 {
+				return nil
+			}
+		}
+		in = inspectTable(name, st.Table, nil, nil)
+		in.Kind = "waveform"
+		in.Signals, in.Refused = analyse(st, cols, math.NaN(), &signalSettings{segments: "auto"})
+		in.Snippet = in.snippet(st.Table)
+		return nil
+	})
+	if fault != nil {
+		return nil, fault
+	}
+	return in, nil
 }
 
 // roughLines is how many lines of a file are shown that cannot be read.
@@ -200,14 +236,21 @@ func (in *Inspection) snippet(t *table.Table) string {
 	if t.UnitsLine > 0 {
 		fmt.Fprintf(&b, ", units_row: %d", t.UnitsLine)
 	}
-	b.WriteString("}\n    columns:\n")
+	b.WriteString("}\n")
+	if len(in.Signals) > 0 {
+		b.WriteString("    signals: {segments: auto, frequency: fitted}\n    temperature: 23 °C  # where no column has it\n    specimen: pair      # specimens: {pair: {shape: double shear, diameter: 25 mm, thickness: 5 mm}}\n")
+	}
+	b.WriteString("    columns:\n")
 	known := map[string]bool{}
 	for _, c := range table.Concepts() {
 		known[c] = true
 	}
 	seen := map[string]bool{}
 	lines := 0
-	for _, c := range in.Columns {
+	for i, c := range in.Columns {
+		if t.Columns[i].Derived {
+			continue
+		}
 		if !known[c.Quantity] || seen[c.Quantity] {
 			continue
 		}

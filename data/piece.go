@@ -26,13 +26,15 @@ var stiffPairs = []pair{
 	{table.Stiffness, table.LossFactor, pairs[6].complex},
 	{table.Force, table.Phase, pairs[5].complex}, // force over displacement
 	{table.Force, table.LossFactor, pairs[6].complex},
+	{table.Torque, table.Phase, pairs[5].complex}, // torque over angle
+	{table.Torque, table.LossFactor, pairs[6].complex},
 }
 
 // stiffnessColumns looks for a complex stiffness where there is no modulus. at has
 // the columns of phase and loss factor.
 func (p *plan) stiffnessColumns(t *table.Table, cols *columnSet, at map[table.Concept]int) error {
 	var trouble error
-	for _, c := range []table.Concept{table.StorageStiffness, table.LossStiffness, table.Stiffness, table.Force, table.Displacement} {
+	for _, c := range []table.Concept{table.StorageStiffness, table.LossStiffness, table.Stiffness, table.Force, table.Displacement, table.Torque, table.Angle} {
 		i, err := t.Find(c)
 		if err != nil {
 			i = -1
@@ -44,34 +46,51 @@ func (p *plan) stiffnessColumns(t *table.Table, cols *columnSet, at map[table.Co
 	}
 	for k := range stiffPairs {
 		v := &stiffPairs[k]
-		if at[v.a] < 0 || at[v.b] < 0 || v.a == table.Force && at[table.Displacement] < 0 {
+		if at[v.a] < 0 || at[v.b] < 0 || v.a == table.Force && at[table.Displacement] < 0 || v.a == table.Torque && at[table.Angle] < 0 {
 			continue
 		}
 		cols.pair, cols.a, cols.b, cols.stiff = v, at[v.a], at[v.b], true
-		if v.a == table.Force {
-			cols.force = at[table.Force]
+		if v.a == table.Force || v.a == table.Torque {
+			cols.force = at[v.a]
 		}
 		break
 	}
 	if cols.pair == nil {
 		return trouble
 	}
+	turns := cols.pair.a == table.Torque
 	cols.displacement = at[table.Displacement]
+	if turns {
+		cols.displacement = at[table.Angle]
+	}
 	p.stiff = true
-	if p.shape == nil {
+	if err := p.shaped(t, "the table has stiffness", turns); err != nil {
+		return err
+	}
+	return p.constants(t, cols, true)
+}
+
+// shaped refuses stiffness without a described specimen, or along a line for one
+// that turns, and the other way round.
+func (p *plan) shaped(t *table.Table, what string, turns bool) error {
+	switch {
+	case p.shape == nil:
 		e := p.where
-		e.What = "the table has stiffness, and the specimen's shape and dimensions are not described"
+		e.What = what + ", and the specimen's shape and dimensions are not described"
 		if p.bare {
 			e = place.Error{File: t.File, Line: t.HeaderLine, What: e.What}
 		}
 		e.Hint = "describe it in a campaign file: specimens: {pair: {shape: double shear, diameter: 25 mm, thickness: 5 mm}}; shapes: " + strings.Join(specimen.Names(), ", ")
 		return &e
-	}
-	if p.shape.Rotates() {
-		return p.fault("give the modulus, or the stiffness along a line", "a %s turns; torque over angle is not read from tables in this version", p.shape.Name())
+	case p.shape.Rotates() && !turns:
+		return p.fault("give the modulus, or torque and angle", "a %s turns, and the table has force and displacement along a line", p.shape.Name())
+	case !p.shape.Rotates() && turns:
+		return p.fault("give force and displacement, or a specimen in torsion", "a %s does not turn, and the table has torque and angle", p.shape.Name())
+	case turns && p.machine != (specimen.Machine{}):
+		return p.fault("give moduli that are corrected, and list it under corrected", "moving mass and frame stiffness of a torsion test are not taken off: its moment of inertia would be needed")
 	}
 	p.modulus = string(Shear)
-	return p.constants(t, cols, true)
+	return nil
 }
 
 // describeShape builds the specimen's shape where it will be needed: for
@@ -81,7 +100,7 @@ func (p *plan) describeShape(c *Campaign, t *table.Table) error {
 		return nil
 	}
 	needed := p.machine != specimen.Machine{}
-	for _, concept := range []table.Concept{table.Stiffness, table.StorageStiffness, table.LossStiffness, table.Force} {
+	for _, concept := range []table.Concept{table.Stiffness, table.StorageStiffness, table.LossStiffness, table.Force, table.Torque} {
 		needed = needed || len(t.FindAll(concept)) > 0
 	}
 	if !needed {

@@ -33,6 +33,8 @@ type plan struct {
 	stiff   bool             // the tables have stiffness, not modulus
 	moved   bool             // strains come from displacements
 
+	signals *signalSettings // nil: the files are tables of results
+
 	modulus string // of the points as read: "shear", "young", "" where no heading says it
 	points  []raw
 }
@@ -70,6 +72,12 @@ func (p *plan) read(s *source, c *Campaign) error {
 	blocks := 0
 	for _, f := range p.files {
 		p.Files = append(p.Files, f.written)
+		if p.signals != nil {
+			if err := p.readSignals(s, c, f); err != nil {
+				faults.Add(p.missingFile(err))
+			}
+			continue
+		}
 		content, err := s.read(f.resolved, f.written)
 		if err != nil {
 			faults.Add(p.missingFile(err))
@@ -97,8 +105,11 @@ func (p *plan) read(s *source, c *Campaign) error {
 	if len(faults) > 0 || p.Kind == Static {
 		return faults.Err()
 	}
+	if p.signals != nil {
+		p.concludeSignals(c)
+	}
 	p.reportCorrections(c)
-	if !p.amplitudeStated {
+	if !p.amplitudeStated && p.signals == nil {
 		for _, pt := range p.points {
 			if !math.IsNaN(pt.Strain) && p.Kind != Relaxation {
 				c.assume("strain amplitudes are taken as single amplitudes (zero to peak) where nothing else is said")

@@ -127,7 +127,7 @@ func TestFaults(t *testing.T) {
 		{"below zero", one("temperature: -300 °C"), sweep, "below absolute zero"},
 		{"no unit", one("frequency: 10"), sweep, "the unit is missing"},
 		{"wrong kind", "tests: [{kind: frequency sweeep, file: a.csv}]\n", sweep, "c.yaml:1:16: tests[1].kind"},
-		{"waveform", "tests: [{kind: waveform, file: a.csv}]\n", sweep, "raw signals"},
+		{"waveform", "tests: [{kind: waveform, file: a.csv}]\n", sweep, "no column for the signals"},
 		{"no file", "tests: [{kind: frequency sweep}]\n", sweep, "names no file"},
 		{"missing file", "tests: [{kind: frequency sweep, file: b.csv}]\n", sweep, "b.csv: no such file"},
 		{"not YAML", "tests: [", sweep, "not readable as YAML"},

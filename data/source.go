@@ -10,6 +10,7 @@ import (
 	"os"
 	"path"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"phaselag/data/place"
@@ -57,22 +58,55 @@ func (s *source) read(name, written string) ([]byte, error) {
 	return b, nil
 }
 
-func (s *source) load(name string) ([]byte, error) {
+// stream opens a file of any size for one pass; use does the reading. The whole
+// file is hashed, also where use stops early.
+func (s *source) stream(name, written string, use func(io.Reader) error) error {
+	f, err := s.regular(name)
+	if err != nil {
+		return err
+	}
+	defer f.Close()
+	hash := sha256.New()
+	if err := use(io.TeeReader(f, hash)); err != nil {
+		return err
+	}
+	if _, err := io.Copy(hash, f); err != nil {
+		return fileFault(name, err)
+	}
+	input := Input{File: written, SHA256: hex.EncodeToString(hash.Sum(nil))}
+	if !slices.Contains(s.list, input) {
+		s.list = append(s.list, input)
+	}
+	return nil
+}
+
+// regular opens a regular file.
+func (s *source) regular(name string) (fs.File, error) {
 	f, err := s.open(name)
 	if err != nil {
 		return nil, fileFault(name, err)
 	}
-	defer f.Close()
 	info, err := f.Stat()
+	switch {
+	case err != nil:
+		err = fileFault(name, err)
+	case info.IsDir():
+		err = &place.Error{File: name, What: "is a directory, not a file", Hint: "name the campaign file or the tables in it"}
+	case !info.Mode().IsRegular():
+		err = &place.Error{File: name, What: "is not a regular file"}
+	default:
+		return f, nil
+	}
+	f.Close()
+	return nil, err
+}
+
+func (s *source) load(name string) ([]byte, error) {
+	f, err := s.regular(name)
 	if err != nil {
-		return nil, fileFault(name, err)
+		return nil, err
 	}
-	if info.IsDir() {
-		return nil, &place.Error{File: name, What: "is a directory, not a file", Hint: "name the campaign file or the tables in it"}
-	}
-	if !info.Mode().IsRegular() {
-		return nil, &place.Error{File: name, What: "is not a regular file"}
-	}
+	defer f.Close()
 	b, err := io.ReadAll(io.LimitReader(f, maxFile+1))
 	if err != nil {
 		return nil, fileFault(name, err)

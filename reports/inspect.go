@@ -43,9 +43,14 @@ func Inspection(w io.Writer, in *data.Inspection) error {
 		return err
 	}
 	line("")
-	if in.Refused != nil {
+	switch {
+	case in.Refused != nil:
 		refusedLines(line, in)
-	} else {
+	case in.Signals != nil:
+		if err := signalLines(&b, in); err != nil {
+			return err
+		}
+	default:
 		line("taken for a %s of %d runs", in.Kind, len(in.Runs))
 		const most = 12
 		for i, r := range in.Runs {

@@ -35,6 +35,7 @@ const (
 	Torque           Concept = "torque"
 	Force            Concept = "force"
 	Displacement     Concept = "displacement"
+	Angle            Concept = "angle"     // of twist
 	Stiffness        Concept = "stiffness" // magnitude of the complex stiffness
 	StorageStiffness Concept = "storage stiffness"
 	LossStiffness    Concept = "loss stiffness"
@@ -85,9 +86,10 @@ var vocabulary = []concept{
 	{StaticForce, unit.Force, nil, []string{"staticforce", "preload", "meanforce", "staticload"}},
 	{ComplexViscosity, unit.Viscosity, []string{"η*", "|η*|"}, []string{"complexviscosity", "dynamicviscosity", "etastar"}},
 	{Stress, unit.Modulus, []string{"σ", "τ"}, []string{"stress", "stressamplitude", "oscillationstress", "sigma", "tau"}},
-	{Torque, unit.Torque, []string{"M"}, []string{"torque", "oscillationtorque"}},
-	{Force, unit.Force, []string{"F"}, []string{"force", "dynamicforce", "forceamplitude", "load"}},
-	{Displacement, unit.Length, nil, []string{"displacement", "dynamicdisplacement", "displacementamplitude", "oscillationdisplacement"}},
+	{Torque, unit.Torque, []string{"M"}, []string{"torque", "oscillationtorque", "moment", "torqueamplitude", "drehmoment"}},
+	{Force, unit.Force, []string{"F"}, []string{"force", "dynamicforce", "forceamplitude", "load", "kraft"}},
+	{Displacement, unit.Length, []string{"x"}, []string{"displacement", "dynamicdisplacement", "displacementamplitude", "oscillationdisplacement", "deflection", "travel", "weg"}},
+	{Angle, unit.Angle, nil, []string{"angle", "twist", "angleoftwist", "twistangle", "rotation", "angleamplitude", "deflectionangle", "angulardisplacement", "oscillationangle"}},
 	{Stiffness, unit.Stiffness, []string{"K*", "|K*|", "k*", "|k*|"}, []string{"stiffness", "complexstiffness", "dynamicstiffness", "springrate", "stiffnessmagnitude"}},
 	{StorageStiffness, unit.Stiffness, []string{"K'", "k'"}, []string{"storagestiffness", "elasticstiffness"}},
 	{LossStiffness, unit.Stiffness, []string{"K''", "k''"}, []string{"lossstiffness"}},
@@ -97,7 +99,7 @@ var vocabulary = []concept{
 func Concepts() []string {
 	return []string{string(Frequency), string(Temperature), string(Storage), string(Loss), string(Magnitude), string(Phase),
 		string(LossFactor), string(Strain), string(Time), string(RelaxationModulus), string(StaticModulus), string(Segment),
-		string(Stiffness), string(StorageStiffness), string(LossStiffness), string(Force), string(Displacement)}
+		string(Stiffness), string(StorageStiffness), string(LossStiffness), string(Force), string(Displacement), string(Torque), string(Angle)}
 }
 
 // Quantity says in which quantity the numbers of a concept are; "" for text.

@@ -28,6 +28,9 @@ func (t *Table) head(rows [][]Cell, s Settings) ([][]Cell, error) {
 		t.Columns[i] = understand(c.Text)
 		t.Columns[i].Line, t.Columns[i].Place = c.Line, c.Column
 	}
+	if t.Separator != blanks {
+		t.wide = keysAbove(rows[:at], len(headings))
+	}
 	rest := rows[at+1:]
 	if u := findUnits(rest, t.Columns, s); u >= 0 {
 		t.UnitsLine = rest[u][0].Line
@@ -40,7 +43,13 @@ func (t *Table) head(rows [][]Cell, s Settings) ([][]Cell, error) {
 	} else if s.UnitsRow > 0 {
 		return nil, &place.Error{Line: s.UnitsRow, What: "no row of units after the headings in this line", Hint: "correct units_row under reading, or leave it out"}
 	}
-	return rest, t.choose(s.Wants)
+	if err := t.choose(s.Wants); err != nil {
+		return nil, err
+	}
+	if t.wide == nil {
+		t.wide = t.keysInside()
+	}
+	return rest, nil
 }
 
 // headless makes columns without headings: those chosen by number.
@@ -151,7 +160,13 @@ func hasNumber(row []Cell) bool {
 func concepts(row []Cell) int {
 	seen := map[Concept]bool{}
 	for _, c := range row {
-		if u := understand(c.Text); u.Concept != "" && u.Concept != Segment {
+		u := understand(c.Text)
+		if u.Concept == "" {
+			if _, rest, ok := keyOf(c); ok {
+				u = understand(rest) // "G' (MPa) at −20 °C"
+			}
+		}
+		if u.Concept != "" && u.Concept != Segment {
 			seen[u.Concept] = true
 		}
 	}

@@ -136,6 +136,19 @@ type Column struct {
 	// Unit is valid if HasUnit; a loss factor without a unit has the unit 1.
 	Unit    unit.Unit
 	HasUnit bool
+	// Derived marks the column in which the blocks of a wide table differ; the file has
+	// no such column.
+	Derived bool
+
+	base string // the heading without what a wide table's block is of, "" if it has no such part
+}
+
+// name is what headings of the same column in several blocks have in common.
+func (col Column) name() string {
+	if col.base != "" {
+		return col.base
+	}
+	return col.Heading
 }
 
 // understand reads a heading. A unit is split off only if what is left is

@@ -100,6 +100,9 @@ func readSheet(name string, sheet workbook.Sheet, s Settings) (*Table, error) {
 	if t.Decimal, err = findDecimal(t.Rows, s.Decimal); err != nil {
 		return fail(err)
 	}
+	if err := t.unpivot(t.wide); err != nil {
+		return fail(err)
+	}
 	return t, nil
 }
 

@@ -52,6 +52,8 @@ type Table struct {
 	Columns     []Column
 	Rows        []Row    // at least one
 	Assumptions []string // what was assumed in reading, for people
+
+	wide wide
 }
 
 // Read understands the bytes of a text table. The name is used in errors, which
@@ -99,6 +101,9 @@ func read(name string, content []byte, s Settings) (*Table, error) {
 		return nil, err
 	}
 	if t.Decimal, err = findDecimal(t.Rows, s.Decimal); err != nil {
+		return nil, err
+	}
+	if err := t.unpivot(t.wide); err != nil {
 		return nil, err
 	}
 	return t, nil

@@ -18,7 +18,8 @@ func (a *app) inspectCmd() *cobra.Command {
 		Long: `inspect reads one table of results and shows its encoding, separator and decimal
 sign, where headings and units were found, every column with its heading, quantity,
 unit, first values and range, how the rows fall into runs, and the entry of a
-campaign file that reads it so. Where the file would be refused as it stands, it
+campaign file that reads it so. Raw signals (force and displacement, or torque and
+angle, against time) are analysed segment by segment. Where the file would be refused as it stands, it
 says why.`,
 		Args: exactly("FILE"),
 		RunE: func(_ *cobra.Command, args []string) error {
@@ -28,6 +29,8 @@ says why.`,
 			}
 			for i, in := range all {
 				switch f := table.Format(format); {
+				case f != table.Terminal && in.Signals != nil:
+					err = table.Write(a.out, f, reports.SignalTable(in.Signals))
 				case f != table.Terminal:
 					err = table.Write(a.out, f, reports.InspectionTable(in))
 				default:
