@@ -82,7 +82,10 @@ type Specimen struct {
 	Bulk          float64 // Pa, of bonded compression
 	ShearFactor   float64 // shear coefficient of bending
 	Bending       bool    // the bending of sheared layers is taken off
-	Measured      bool    // dimensions measured on this piece, not taken from the drawing
+	// Uncertainty holds the relative standard uncertainties of the dimensions by their
+	// names ("thickness"); nil if none is stated.
+	Uncertainty map[string]float64
+	Measured    bool // dimensions measured on this piece, not taken from the drawing
 }
 
 // Test is one entry of the campaign's list of tests.

@@ -66,9 +66,10 @@ func (t *tree) compound(m mapping, c *Campaign) (poisson float64) {
 func (t *tree) specimens(m mapping, c *Campaign) {
 	all, names := t.mapping(m.values["specimens"], "specimens")
 	for _, name := range names {
-		k, _ := t.mapping(all.values[name], all.sub(name), "shape", "diameter", "inner_diameter", "width", "length", "thickness", "poisson_ratio", "compression_coefficient", "bulk_modulus", "shear_coefficient", "bending", "measured")
+		k, _ := t.mapping(all.values[name], all.sub(name), "shape", "diameter", "inner_diameter", "width", "length", "thickness", "poisson_ratio", "compression_coefficient", "bulk_modulus", "shear_coefficient", "bending", "uncertainty", "measured")
 		c.Specimens = append(c.Specimens, Specimen{
-			Name: name, Shape: k.text("shape"),
+			Uncertainty: t.dimensional(k),
+			Name:        name, Shape: k.text("shape"),
 			Diameter: k.quantity("diameter", unit.Length, positive), Width: k.quantity("width", unit.Length, positive),
 			Length: k.quantity("length", unit.Length, positive), Thickness: k.quantity("thickness", unit.Length, positive),
 			InnerDiameter: k.quantity("inner_diameter", unit.Length, positive), Poisson: k.number("poisson_ratio"),
@@ -77,6 +78,35 @@ func (t *tree) specimens(m mapping, c *Campaign) {
 			Measured: k.flag("measured"),
 		})
 	}
+}
+
+// dimensional reads the standard uncertainties of a specimen's dimensions: relative
+// ones, or lengths beside the dimension itself.
+func (t *tree) dimensional(k mapping) map[string]float64 {
+	m, names := t.mapping(k.values["uncertainty"], k.sub("uncertainty"), "diameter", "inner_diameter", "width", "length", "thickness", "poisson_ratio", "compression_coefficient", "bulk_modulus", "shear_coefficient")
+	var out map[string]float64
+	for _, name := range names {
+		var u float64
+		if rel, err := unit.Parse(m.text(name), unit.Relative); err == nil {
+			u = rel
+		} else {
+			q := unit.Length
+			if name == "bulk_modulus" {
+				q = unit.Modulus
+			}
+			u = m.quantity(name, q, notNegative) / k.quantity(name, q, positive)
+			if math.IsNaN(u) && k.node != nil && !k.has(name) {
+				t.fault(m.at(name), m.sub(name), "state the dimension, or a relative uncertainty such as 0.5 %", "an uncertainty of a dimension that is not stated")
+			}
+		}
+		if u >= 0 {
+			if out == nil {
+				out = map[string]float64{}
+			}
+			out[strings.Replace(strings.ReplaceAll(name, "_", " "), "poisson", "Poisson", 1)] = u
+		}
+	}
+	return out
 }
 
 func (t *tree) analysis(m mapping, c *Campaign) {

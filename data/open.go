@@ -108,6 +108,9 @@ func finish(s *source, c *Campaign, plans []*plan, poisson float64, faults place
 	if faults.Err() == nil {
 		faults.Add(convert(c, plans, poisson))
 	}
+	if faults.Err() == nil {
+		faults.Add(carryGeometry(c, s.list[0].File, plans))
+	}
 	if err := faults.Err(); err != nil {
 		return nil, err
 	}

@@ -141,3 +141,51 @@ func TestStiffnessFaults(t *testing.T) {
 		t.Errorf("a bare table with stiffness: %v", err)
 	}
 }
+
+// Uncertainties of the dimensions become that of the geometry factor: in double
+// shear K = 2GA/h, so 1 % of the thickness and 0.2 mm of 25 mm in the diameter (which
+// counts twice) make √(0.01² + (2·0.008)²) = 1.887 % (JCGM 100, 5.1).
+func TestGeometryFromDimensions(t *testing.T) {
+	const text = "f / Hz,T / °C,K' / N/mm,K'' / N/mm\n1,20,100,10\n2,20,100,10\n"
+	of := func(more string) *Campaign {
+		return mustOpen(t, "specimens: {pair: {shape: double shear, diameter: 25 mm, thickness: 5 mm, uncertainty: {thickness: 1 %, diameter: 0.2 mm}}}\n"+more+"tests: [{kind: frequency sweep, file: a.csv}]\n", "a.csv", text)
+	}
+	if u := of("").Uncertainty.Geometry; math.Abs(u/math.Sqrt(1e-4+2.56e-4)-1) > 1e-12 {
+		t.Errorf("%g", u)
+	}
+	c := of("uncertainty: {geometry: 0.5 %}\n")
+	if u := c.Uncertainty.Geometry; u != 0.005 {
+		t.Errorf("stated %g", u)
+	}
+	found := false
+	for _, f := range c.Findings {
+		found = found || f.Code == "geometry-uncertainty-small"
+	}
+	if !found {
+		t.Errorf("no finding: %+v", c.Findings)
+	}
+	for _, v := range []struct{ u, want string }{{"{width: 1 %}", `has no "width"`}, {"{length: 1 mm}", "not stated"}, {"{thickness: 1 K}", "thickness"}} {
+		_, err := OpenFS(memory("c.yaml", "specimens: {pair: {shape: double shear, diameter: 25 mm, thickness: 5 mm, uncertainty: "+v.u+"}}\ntests: [{kind: frequency sweep, file: a.csv}]\n", "a.csv", text), "c.yaml")
+		if err == nil || !strings.Contains(err.Error(), v.want) {
+			t.Errorf("%s: %v, should say %q", v.u, err, v.want)
+		}
+	}
+}
+
+// Torque over angle of a specimen between parallel plates: K* = πG*R⁴/2h (closed form).
+func TestTorqueTable(t *testing.T) {
+	c, err := stiffnessCampaign(t, "{shape: parallel plates, diameter: 25 mm, thickness: 2 mm}", "", "f / Hz,torque / N·mm,angle / deg,δ / °\n1,1,0.5,5\n2,1,0.5,5\n")
+	if err != nil {
+		t.Fatal(err)
+	}
+	k := 1e-3 / (0.5 * math.Pi / 180)
+	want := k * 2 * 0.002 / (math.Pi * math.Pow(0.0125, 4))
+	p := c.Tests[0].Runs[0].Points[0]
+	if math.Abs(math.Hypot(p.Storage, p.Loss)/want-1) > 1e-12 || math.Abs(p.Loss/p.Storage-math.Tan(5*math.Pi/180)) > 1e-12 {
+		t.Errorf("%g + %gi, should be %g in magnitude", p.Storage, p.Loss, want)
+	}
+	// The strain is e^(−1/4) of that at the rim, in the logarithmic mean.
+	if rim := 0.5 * math.Pi / 180 * 0.0125 / 0.002; math.Abs(p.Strain/(rim*math.Exp(-0.25))-1) > 1e-9 {
+		t.Errorf("strain %g, at the rim %g", p.Strain, rim)
+	}
+}

@@ -47,7 +47,7 @@ func (a *answer) bootstrap(r *Result) {
 		return
 	}
 	list := a.quantities(r)
-	common := superpose.Common{Factor: a.problem.UGeometry / math.Sqrt(float64(a.problem.Factors))}
+	common := superpose.Common{Factor: commonFactor(a.problem, a.campaign.Uncertainty)}
 	if u := a.campaign.Uncertainty.TemperatureCommon; u > 0 {
 		common.Temperature = u
 	}

@@ -213,7 +213,7 @@ func (d *draft) common() {
 		name string
 		u    float64
 	}{
-		{models.ParamSpecimen, d.problem.UGeometry / math.Sqrt(float64(d.problem.Factors))},
+		{models.ParamSpecimen, commonFactor(d.problem, d.campaign.Uncertainty)},
 		{models.ParamTemperature, d.campaign.Uncertainty.TemperatureCommon},
 	} {
 		if !(v.u > 0) {

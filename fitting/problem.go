@@ -425,3 +425,17 @@ func lattice(lo, hi float64, density int) []float64 {
 	}
 	return out
 }
+
+// commonFactor is the relative standard uncertainty of the modulus that all
+// measurements share: what is left of the geometry in the mean over specimens whose
+// factors are held to mean one, and the calibrations of force and displacement, of
+// whose ratio every modulus is made.
+func commonFactor(p *superpose.Problem, u data.Uncertainty) float64 {
+	sum := p.UGeometry * p.UGeometry / float64(p.Factors)
+	for _, v := range []float64{u.Force, u.Displacement} {
+		if v > 0 {
+			sum += v * v
+		}
+	}
+	return math.Sqrt(sum)
+}

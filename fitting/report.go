@@ -216,7 +216,7 @@ func (a *answer) fill(r *Result) {
 			}
 			return root.Deviation()
 		}
-		g := a.problem.UGeometry / math.Sqrt(float64(a.problem.Factors))
+		g := commonFactor(a.problem, a.campaign.Uncertainty)
 		withScale := func(root superpose.Root, value float64) float64 { return math.Hypot(dev(root)/1e6, g*value) }
 		st, lo := s.FillerStorage/1e6, s.FillerLoss/1e6
 		if s.Form.Scaling {
