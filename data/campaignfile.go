@@ -214,7 +214,7 @@ func (t *tree) test(s *source, k mapping, c *Campaign) *plan {
 	p.frequency = k.quantity("frequency", unit.Frequency, positive)
 	p.strain = k.quantity("strain", unit.Strain, notNegative)
 	p.amplitudeStated = k.has("amplitude")
-	p.amplitude = map[string]float64{"zero to peak": 1, "peak to peak": 0.5, "rms": math.Sqrt2}[k.choice("amplitude", "zero to peak", "zero to peak", "peak to peak", "rms")]
+	p.amplitude = k.choice("amplitude", "zero to peak", "zero to peak", "peak to peak", "rms")
 	p.nominalStrain = k.choice("strain_source", "", "measured", "nominal") == "nominal"
 	p.Control = k.choice("control", "", "displacement", "force")
 	p.Direction = k.choice("direction", "", "ascending", "descending", "both")

@@ -24,8 +24,9 @@ type plan struct {
 
 	// Constants where a table has no column; NaN: not stated.
 	temperature, frequency, strain float64
-	amplitude                      float64 // factor to the single amplitude
+	amplitude                      string // "zero to peak", "peak to peak" or "rms"
 	amplitudeStated                bool
+	amplitudeRead                  bool // a heading said which
 	nominalStrain                  bool
 
 	machine specimen.Machine // what is to be taken off
@@ -52,7 +53,7 @@ type raw struct {
 
 func newPlan() *plan {
 	nan := math.NaN()
-	p := &plan{temperature: nan, frequency: nan, strain: nan, amplitude: 1}
+	p := &plan{temperature: nan, frequency: nan, strain: nan, amplitude: "zero to peak"}
 	p.Mounting = "1"
 	p.Rate, p.RampTime, p.StaticStrain, p.StaticForce, p.Dwell = nan, nan, nan, nan, nan
 	p.Conditioning = Conditioning{Strain: nan, Rest: nan}
@@ -109,7 +110,7 @@ func (p *plan) read(s *source, c *Campaign) error {
 		p.concludeSignals(c)
 	}
 	p.reportCorrections(c)
-	if !p.amplitudeStated && p.signals == nil {
+	if !p.amplitudeStated && !p.amplitudeRead && p.signals == nil {
 		for _, pt := range p.points {
 			if !math.IsNaN(pt.Strain) && p.Kind != Relaxation {
 				c.assume("strain amplitudes are taken as single amplitudes (zero to peak) where nothing else is said")

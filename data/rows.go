@@ -18,6 +18,7 @@ func (p *plan) readTable(c *Campaign, t *table.Table, written string, firstBlock
 		return 0, err
 	}
 	p.describeColumns(t, written, cols)
+	p.conflictingAmplitudes(c, t, cols, written)
 	var faults place.List
 	kept := 0
 	for _, row := range t.Rows {
@@ -110,7 +111,7 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 	}
 	pt.Temperature = get(cols.temperature, p.temperature)
 	pt.set = get(cols.set, math.NaN())
-	pt.Strain = p.amplitude * get(cols.strain, p.strain)
+	pt.Strain = p.single(t, cols.strain) * get(cols.strain, p.strain)
 	if p.Kind == Relaxation {
 		pt.Strain = get(cols.strain, p.strain)
 		pt.Time = get(cols.time, math.NaN())
@@ -124,7 +125,7 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 		}
 		a, b := get(cols.a, math.NaN()), get(cols.b, math.NaN())
 		if cols.force >= 0 {
-			a = get(cols.force, math.NaN()) / get(cols.displacement, math.NaN())
+			a = p.single(t, cols.force) * get(cols.force, math.NaN()) / (p.single(t, cols.displacement) * get(cols.displacement, math.NaN()))
 		}
 		pt.Storage, pt.Loss = cols.pair.complex(a, b)
 		pt.Reason = modulusFault(pt.Storage, pt.Loss)
@@ -132,7 +133,7 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 			p.throughShape(&pt.Point)
 		}
 		if p.shape != nil && cols.displacement >= 0 && cols.strain < 0 {
-			if x := p.amplitude * get(cols.displacement, math.NaN()); !math.IsNaN(x) && x >= 0 {
+			if x := p.single(t, cols.displacement) * get(cols.displacement, math.NaN()); !math.IsNaN(x) && x >= 0 {
 				pt.Strain = p.shape.Strain(x)
 				p.moved = true
 			}
@@ -168,6 +169,35 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 	pt.Used = pt.Reason == ""
 	p.points = append(p.points, pt)
 	return nil
+}
+
+// toSingle is the factor from each kind of amplitude to the single amplitude.
+var toSingle = map[string]float64{"zero to peak": 1, "peak to peak": 0.5, "rms": math.Sqrt2}
+
+// single is the factor to the single amplitude of a column: what the campaign file
+// says, else what the heading says.
+func (p *plan) single(t *table.Table, column int) float64 {
+	kind := p.amplitude
+	if column >= 0 && !p.amplitudeStated && t.Columns[column].Amplitude != "" {
+		kind = t.Columns[column].Amplitude
+		p.amplitudeRead = true
+	}
+	return toSingle[kind]
+}
+
+// conflictingAmplitudes doubts a campaign file that says another kind of amplitude
+// than the heading does.
+func (p *plan) conflictingAmplitudes(c *Campaign, t *table.Table, cols columnSet, written string) {
+	for _, i := range []int{cols.strain, cols.displacement} {
+		if i < 0 || !p.amplitudeStated {
+			continue
+		}
+		if said := t.Columns[i].Amplitude; said != "" && said != p.amplitude {
+			c.Findings = append(c.Findings, Finding{Code: "amplitude-contradicted", Severity: Severe, Test: p.Name, Rows: fmt.Sprintf("%s:%d", written, t.HeaderLine),
+				Evidence: fmt.Sprintf("the campaign file says amplitude: %s, the heading %q says %s", p.amplitude, clip(t.Columns[i].Heading), said),
+				Cause:    "one of the two is wrong", Remedy: fmt.Sprintf("if the heading is right, leave amplitude out; strains are wrong by a factor of %.3g otherwise", toSingle[said]/toSingle[p.amplitude])})
+		}
+	}
 }
 
 func relaxationFault(t, g float64) string {

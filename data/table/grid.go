@@ -244,7 +244,7 @@ func newlines(text string) string {
 // sniff finds the separator: the one that gives the most cells with numbers,
 // times the share of cells that have numbers, in the first lines. In doubt the
 // order is tabulator, semicolon, comma, blanks.
-func sniff(text string) string {
+func sniff(text string) (string, error) {
 	end, lines := 0, 0
 	for end < len(text) && lines < sniffedLines && end < 1<<20 {
 		if text[end] == '\n' {
@@ -253,9 +253,11 @@ func sniff(text string) string {
 		end++
 	}
 	best, bestScore := ",", 0.0
+	var trouble error // counts only where nothing else separates the text
 	for _, separator := range []string{"\t", ";", ",", blanks} {
 		rows, err := grid(text[:end], separator)
 		if err != nil {
+			trouble = err
 			continue
 		}
 		score := 0.0
@@ -266,13 +268,20 @@ func sniff(text string) string {
 					numbers++
 				}
 			}
-			if len(row) > 0 {
+			// "Step 2" and "remark 3 of 5" have numbers between blanks in any table.
+			if len(row) > 0 && (separator != blanks || numbers >= 2 && 2*numbers >= len(row)) {
 				score += float64(numbers) * float64(numbers) / float64(len(row))
 			}
+		}
+		if separator == blanks {
+			score /= 1.25
 		}
 		if score > bestScore*(1+1e-9) {
 			best, bestScore = separator, score
 		}
 	}
-	return best
+	if bestScore == 0 && trouble != nil {
+		return "", trouble
+	}
+	return best, nil
 }

@@ -1,6 +1,7 @@
 package table
 
 import (
+	"regexp"
 	"strings"
 	"unicode"
 
@@ -12,6 +13,31 @@ type meaning struct {
 	concept Concept
 	modulus string // "shear" or "young" where the name says so, else ""
 	angular bool   // an angular frequency
+	// amplitude is "zero to peak", "peak to peak" or "rms" where the name says so.
+	amplitude string
+}
+
+// amplitudes are the ways in which headings say what kind of amplitude is meant.
+var amplitudes = []struct {
+	kind    string
+	pattern *regexp.Regexp
+}{
+	{"peak to peak", regexp.MustCompile(`(?i)(\bpeak[-_ ]?(to[-_ ]?)?peak\b|\bpk[-_ ]?pk\b|\bp[-/]p\b|\bdouble amplitude\b)`)},
+	{"zero to peak", regexp.MustCompile(`(?i)(\bzero[-_ ]?to[-_ ]?peak\b|\b0[-/ ]?p\b|\bsingle amplitude\b)`)},
+	{"rms", regexp.MustCompile(`(?i)\brms\b`)},
+}
+
+// recognize understands a heading's name without its unit.
+func recognize(name string) (meaning, bool) {
+	for _, a := range amplitudes {
+		if at := a.pattern.FindStringIndex(name); at != nil {
+			rest := strings.Trim(name[:at[0]]+" "+name[at[1]:], " ,-_()")
+			m, ok := recognizeName(rest)
+			m.amplitude = a.kind
+			return m, ok
+		}
+	}
+	return recognizeName(name)
 }
 
 var primes = strings.NewReplacer(
@@ -21,8 +47,7 @@ var primes = strings.NewReplacer(
 	"Â´", "'", "Î´", "δ", "Ï‰", "ω", "Î³", "γ", "Îµ", "ε", "Î·", "η",
 )
 
-// recognize understands a heading's name without its unit.
-func recognize(name string) (meaning, bool) {
+func recognizeName(name string) (meaning, bool) {
 	s := strings.TrimSpace(primes.Replace(name))
 	if m, ok := symbol(s); ok {
 		return m, ok
@@ -131,6 +156,9 @@ type Column struct {
 	Concept Concept // "" if not understood
 	Modulus string  // "shear" or "young" where the heading says so, else ""
 	Angular bool    // the heading speaks of an angular frequency
+	// Amplitude is "zero to peak", "peak to peak" or "rms" where the heading says so,
+	// else "".
+	Amplitude string
 	// UnitText is the unit as written, "" if there is none.
 	UnitText string
 	// Unit is valid if HasUnit; a loss factor without a unit has the unit 1.
@@ -156,7 +184,7 @@ func (col Column) name() string {
 func understand(heading string) Column {
 	col := Column{Heading: heading}
 	set := func(m meaning, unitText string) Column {
-		col.Concept, col.Modulus, col.Angular = m.concept, m.modulus, m.angular
+		col.Concept, col.Modulus, col.Angular, col.Amplitude = m.concept, m.modulus, m.angular, m.amplitude
 		col.setUnit(unitText)
 		return col
 	}

@@ -85,7 +85,9 @@ func read(name string, content []byte, s Settings) (*Table, error) {
 	switch s.Separator {
 	case ",", ";", "\t", blanks, "|":
 	case "":
-		t.Separator = sniff(text)
+		if t.Separator, err = sniff(text); err != nil {
+			return nil, err
+		}
 	default:
 		return nil, &place.Error{What: fmt.Sprintf("the separator %q", clip(s.Separator)), Hint: `write separator: "," or ";", "\t", "|" or " "`}
 	}
@@ -231,7 +233,9 @@ func Rough(content []byte, lines int) (encoding, separator string, rows [][]Cell
 		return "", "", nil, err
 	}
 	text = newlines(text)
-	separator = sniff(text)
+	if separator, err = sniff(text); err != nil {
+		return "", "", nil, err
+	}
 	all, err := grid(text, separator)
 	if err != nil {
 		return "", "", nil, err

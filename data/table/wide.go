@@ -25,7 +25,7 @@ type key struct {
 }
 
 var (
-	keyPattern = regexp.MustCompile(`([+\-−]?\d+(?:[.,]\d+)?)\s*([^\s\d,;:()\[\]/]+)`)
+	keyPattern = regexp.MustCompile(`([+\-−]?\d+(?:[.,]\d+)?(?:[eE][+\-−]?\d+)?)\s*([^\s\d,;:()\[\]/]+)`)
 	keyWords   = regexp.MustCompile(`(?i)(@|\bat\b|\bbei\b|\bT\s*=|\bf\s*=|^[,;:]|[,;:]$|\(\s*\)|\[\s*\])`)
 	keyed      = []Concept{Temperature, Frequency, Strain}
 )
