@@ -73,6 +73,9 @@ func NewStream(name string, r io.Reader, s Settings) (*Stream, error) {
 	if err != nil {
 		return nil, err
 	}
+	if t.Columns[len(t.Columns)-1].Derived {
+		return nil, &place.Error{File: name, Line: t.HeaderLine, What: "signals in several blocks of columns", Hint: "write the segments below each other, with a column that numbers them"}
+	}
 	all := io.MultiReader(bytes.NewReader(head), r)
 	text := bufio.NewReaderSize(decoded(all, t.Encoding, head), longestLine)
 	return &Stream{Table: t, lines: text}, nil

@@ -237,6 +237,9 @@ func (t *Table) unpivot(w wide) error {
 			rows = append(rows, Row{Line: r.Line, Block: r.Block*len(blocks) + b, Cells: cells})
 		}
 	}
+	if len(rows) == 0 {
+		return &place.Error{Line: t.HeaderLine, What: "headings, but no number under those of the blocks"}
+	}
 	t.Columns, t.Rows = append(columns, keyColumn), rows
 	var names []string
 	for _, k := range blocks {
