@@ -13,6 +13,9 @@ import (
 	"time"
 
 	"github.com/xuri/excelize/v2"
+
+	"phaselag/data/table"
+	"phaselag/data/workbook"
 )
 
 // rowsOf is a table with numbers that no display shows in full.
@@ -198,4 +201,24 @@ func FuzzWorkbook(f *testing.F) {
 	f.Fuzz(func(t *testing.T, content []byte) {
 		_, _ = OpenFS(fstest.MapFS{"a.xlsx": {Data: content}}, "a.xlsx")
 	})
+}
+
+// BenchmarkWorkbook reads a workbook of 30 000 rows of six columns; the rows are
+// counted.
+func BenchmarkWorkbook(b *testing.B) {
+	var rows [][]any
+	for i := range 30_000 {
+		rows = append(rows, []any{math.Pow(10, float64(i%20)/10), 20 + float64(i/20%9), 0.2, 2 + 0.01*float64(i%20), 0.2, 0.1})
+	}
+	content, err := workbook.Write("Results", []string{"f / Hz", "T / °C", "strain / %", "G' / MPa", "G'' / MPa", "tan δ"}, rows)
+	if err != nil {
+		b.Fatal(err)
+	}
+	for b.Loop() {
+		tables, err := table.ReadAll("a.xlsx", content, table.Settings{})
+		if err != nil || len(tables) != 1 || len(tables[0].Rows) != 30_000 {
+			b.Fatal(err)
+		}
+	}
+	b.ReportMetric(30_000*float64(b.N)/b.Elapsed().Seconds(), "rows/s")
 }
