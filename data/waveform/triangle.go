@@ -61,7 +61,7 @@ func (a *triangle) fold() {
 	}
 	for j := range a.n {
 		v := a.panel[j*panelRows : j*panelRows+m]
-		norm := floats.Norm(v, 2)
+		norm := length(v)
 		if norm == 0 {
 			continue
 		}
@@ -78,4 +78,13 @@ func (a *triangle) fold() {
 		a.r[j*a.n+j] = beta
 	}
 	a.rows = 0
+}
+
+// length is the Euclidean norm, without the care for extreme numbers where there are
+// none.
+func length(v []float64) float64 {
+	if d := floats.Dot(v, v); d > 1e-200 && d < 1e200 {
+		return math.Sqrt(d)
+	}
+	return floats.Norm(v, 2)
 }
