@@ -40,6 +40,12 @@ var ErrFew = errors.New("no 40 branches keep the tolerance")
 // Few is the fewest branches that stay within the tolerance of a spectrum between
 // two angular frequencies, rad/s.
 func Few(s linear.Spectrum, lo, hi float64, tol Tolerance) (linear.Spectrum, Misfit, error) {
+	return FewOf(s.Modulus, lo, hi, tol)
+}
+
+// FewOf is Few for any complex modulus, or stiffness, over the angular frequency in
+// rad/s.
+func FewOf(modulus func(omega float64) complex128, lo, hi float64, tol Tolerance) (linear.Spectrum, Misfit, error) {
 	if !(lo > 0) || !(hi > lo) || math.IsInf(hi, 0) {
 		return linear.Spectrum{}, Misfit{}, errors.New("the window must run from a positive to a larger frequency")
 	}
@@ -53,7 +59,7 @@ func Few(s linear.Spectrum, lo, hi float64, tol Tolerance) (linear.Spectrum, Mis
 	points := make([]Point, n)
 	for i := range points {
 		w := lo * math.Pow(hi/lo, float64(i)/float64(n-1))
-		points[i] = Point{Omega: w, G: s.Modulus(w), Magnitude: tol.Magnitude, Phase: tol.Phase}
+		points[i] = Point{Omega: w, G: modulus(w), Magnitude: tol.Magnitude, Phase: tol.Phase}
 		if !(cmplx.Abs(points[i].G) > 0) {
 			return linear.Spectrum{}, Misfit{}, errors.New("the spectrum has no modulus in the window")
 		}
