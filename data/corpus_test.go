@@ -182,7 +182,7 @@ func (d dialect) number(x float64) string {
 	return s
 }
 
-// write writes isotherms of G' and G'' in the dialect.
+// write writes isotherms of G' and G” in the dialect.
 func (d dialect) write(f, T []float64, g [][][2]float64) []byte {
 	names, units := []string{"f", "T", "G'", "G''"}, []string{"Hz", "°C", "MPa", "MPa"}
 	heads := func(names, units []string) string {
