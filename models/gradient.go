@@ -117,6 +117,11 @@ func (g *fillerGradient) times(p complex128) {
 
 func (f *filler) gradient(freq, T, gamma float64) fillerGradient {
 	t := f.law.Terms(gamma)
+	return f.gradientOf(&t, freq, T)
+}
+
+// gradientOf is gradient where the law's terms at the strain are known.
+func (f *filler) gradientOf(t *amplitude.Terms, freq, T float64) fillerGradient {
 	phi := f.arrhenius.Factor(T)
 	lossDir := complex(amplitude.FrequencyPart(f.kappa, freq, f.f0), 1)
 	term := func(a, b, x float64) complex128 {
