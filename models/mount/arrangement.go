@@ -2,6 +2,24 @@ package mount
 
 import "math"
 
+// stretch returns the height of the leaf's pads over their unloaded one.
+func (a *Arrangement) stretch() float64 {
+	if a.Stretch == 0 {
+		return 1
+	}
+	return a.Stretch
+}
+
+// clone copies the tree.
+func (a Arrangement) clone() Arrangement {
+	members := a.Members
+	a.Members = nil
+	for _, c := range members {
+		a.Members = append(a.Members, c.clone())
+	}
+	return a
+}
+
 // leaves returns the places of the tree that hold an element, in the order of
 // the file. The same order holds for all slices of this file.
 func (a *Arrangement) leaves() []*Arrangement {

@@ -28,10 +28,15 @@
 //
 //   - A shear pad has a thickness and either an area, or a diameter, or a length
 //     (along the shear) and a width. bending: true subtracts the bending of a
-//     thick pad and needs the sides or the diameter. compression_coefficient (k
-//     of 1+2kS²) and bulk_modulus are used where an inclined pair presses the pad.
+//     thick pad and needs the sides or the diameter.
 //   - A compression pad is a pad moved along its normal. It needs its section and
-//     a compression_coefficient.
+//     its factor, the k of E_c = E0(1+2kS²): factor: 0.6 (compression_coefficient
+//     is the same key), or factor_from_hardness: 60 IRHD from a handbook table;
+//     hardness_table names the table (Lindley, the only one that has k). The bulk
+//     modulus, bulk_modulus: 1150 MPa or bulk_from_hardness: 60 IRHD, may be left
+//     out. The same keys serve pads of an inclined pair.
+//   - A compression strip is long: length and width, the short side. A compression
+//     ring has outer_diameter, inner_diameter and thickness, its height.
 //   - An axial bush has inner_diameter, outer_diameter and length.
 //   - A measured element has the stiffness of a part at one condition; part says
 //     whether the number is the magnitude (the default) or the storage part.
@@ -39,6 +44,11 @@
 //   - arrangement is an element's name, {parallel: [...]}, {series: [...]} or
 //     {inclined_pair: name, angle: 30 deg}, nested as wanted. The angle is that
 //     between the pads' normal and the vertical.
+//   - load has the mass, and static_force on all mounts together if it is not the
+//     mass's weight. With static_modulus (shear), or static_modulus_from_hardness:
+//     60 IRHD and a hardness_table (Lindley or Gent), the static compression of pressed
+//     pads is solved for and their dynamic stiffness is the tangent there;
+//     otherwise it is that of the unloaded pad ([Mount.Loaded] does the same later).
 //   - count mounts carry the load side by side. A force of excitation acts on all
 //     of them together.
 //   - part_factor multiplies the stiffness: what parts were found to have beyond

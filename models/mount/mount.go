@@ -8,6 +8,7 @@ type Mount struct {
 	Count       int    // mounts side by side; 1 if not stated
 	Direction   string // as written; "" if not stated
 	Mass        float64
+	StaticForce float64 // N, static load on all mounts together; 0 or NaN: the weight of Mass
 	Excitation  Excitation
 	PartFactor  float64 // 1 if not stated
 	PartFactorU float64 // its relative standard uncertainty, NaN if not stated
@@ -46,7 +47,10 @@ type Arrangement struct {
 	Element int     // index into Mount.Elements, of a Single or InclinedPair
 	Angle   float64 // rad, between the pads' normal and the vertical, of an InclinedPair
 	// Across is true for an InclinedPair that is moved horizontally.
-	Across  bool
+	Across bool
+	// Stretch is the height of a pressed pad under the static load over its
+	// unloaded one, of a Single or InclinedPair; 0 means unloaded. Loaded sets it.
+	Stretch float64
 	Members []Arrangement // of Parallel and Series, at least one
 }
 

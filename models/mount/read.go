@@ -110,6 +110,10 @@ type reader struct {
 	// across: the direction is horizontal; upright: it is vertical.
 	across, upright bool
 	pressed         []bool // by element: an inclined pair uses it
+	// notes are assumptions that the keys themselves make, in the order of the file.
+	notes []string
+	// unloaded is the end of the assumption on a pressed pad that has no static load.
+	unloaded string
 }
 
 func (r *reader) fault(n *yaml.Node, path, what, hint string) {

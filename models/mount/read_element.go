@@ -3,6 +3,7 @@ package mount
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"gopkg.in/yaml.v3"
 
@@ -58,19 +59,27 @@ func (r *reader) oneElement(e entry) Element {
 	}
 	switch r.text(shape) {
 	case "shear pad":
-		r.foreign(keys, "a bush", "inner_diameter", "outer_diameter")
+		r.foreign(keys, "a bush or a ring", "inner_diameter", "outer_diameter")
 		el.Pad = r.pad(e, keys)
-	case "compression pad":
-		r.foreign(keys, "a bush", "inner_diameter", "outer_diameter")
+	case "compression pad", "compression strip":
+		r.foreign(keys, "a bush or a ring", "inner_diameter", "outer_diameter")
 		r.foreign(keys, "a shear pad", "bending")
 		el.Pad = r.pad(e, keys)
 		el.Pad.Pressed = true
+		if el.Pad.Strip = r.text(shape) == "compression strip"; el.Pad.Strip {
+			r.strip(e, keys, el.Pad)
+		}
 		r.press(el, e.key, "a compression pad's stiffness depends")
+	case "compression ring":
+		r.foreign(keys, "a pad", "area", "length", "width", "diameter")
+		r.foreign(keys, "a shear pad", "bending")
+		el.Pad = r.ring(e, keys)
+		r.press(el, e.key, "a ring's stiffness depends")
 	case "axial bush":
-		r.foreign(keys, "a pad", "area", "thickness", "width", "diameter", "bending", "compression_coefficient", "bulk_modulus")
+		r.foreign(keys, "a pad", "area", "thickness", "width", "diameter", "bending", "compression_coefficient", "factor", "factor_from_hardness", "bulk_modulus", "bulk_from_hardness", "hardness_table")
 		el.Bush = r.bush(e, keys)
 	default:
-		r.fault(shape.value, shape.path, "unknown shape "+kind(shape.value), "known are shear pad, compression pad and axial bush; anything else can be entered as measured")
+		r.fault(shape.value, shape.path, "unknown shape "+kind(shape.value), "known are "+strings.Join(shapes, ", ")+"; anything else can be entered as measured")
 	}
 	return el
 }
@@ -78,8 +87,12 @@ func (r *reader) oneElement(e entry) Element {
 // elementKeys are the keys of an element that is not measured.
 var elementKeys = []string{
 	"shape", "area", "thickness", "length", "width", "diameter", "inner_diameter", "outer_diameter",
-	"bending", "compression_coefficient", "bulk_modulus", "measured", "strain_per_displacement",
+	"bending", "compression_coefficient", "factor", "factor_from_hardness", "bulk_modulus", "bulk_from_hardness", "hardness_table",
+	"measured", "strain_per_displacement",
 }
+
+// shapes are the shapes of elements that are not measured.
+var shapes = []string{"shear pad", "compression pad", "compression strip", "compression ring", "axial bush"}
 
 // foreign reports keys of another shape.
 func (r *reader) foreign(keys map[string]entry, owner string, names ...string) {
@@ -113,15 +126,14 @@ func (r *reader) bush(e entry, keys map[string]entry) *Bush {
 // pad reads a pad.
 func (r *reader) pad(e entry, keys map[string]entry) *Pad {
 	p := &Pad{
-		Area:        r.amount(keys, "area", unit.Area, false),
-		Thickness:   r.amount(keys, "thickness", unit.Length, false),
-		Length:      r.amount(keys, "length", unit.Length, false),
-		Width:       r.amount(keys, "width", unit.Length, false),
-		Diameter:    r.amount(keys, "diameter", unit.Length, false),
-		Bulk:        r.amount(keys, "bulk_modulus", unit.Modulus, false),
-		Bending:     r.flag(keys, "bending"),
-		Compression: r.number(keys, "compression_coefficient"),
+		Area:      r.amount(keys, "area", unit.Area, false),
+		Thickness: r.amount(keys, "thickness", unit.Length, false),
+		Length:    r.amount(keys, "length", unit.Length, false),
+		Width:     r.amount(keys, "width", unit.Length, false),
+		Diameter:  r.amount(keys, "diameter", unit.Length, false),
+		Bending:   r.flag(keys, "bending"),
 	}
+	p.Compression, p.Bulk = r.rubber(e, keys)
 	has := func(key string) bool { _, ok := keys[key]; return ok }
 	if !has("thickness") {
 		r.fault(e.value, join(e.path, "thickness"), "missing", "the thickness of one rubber layer, for example 12 mm")
@@ -212,7 +224,7 @@ func (r *reader) press(e Element, at *yaml.Node, why string) {
 	case math.IsNaN(e.Pad.ShapeFactor()):
 		r.fault(at, path, why+" on the pad's section", "state the diameter, or length and width")
 	case math.IsNaN(e.Pad.Compression):
-		r.fault(at, path+".compression_coefficient", "missing", "k of E_c = 3G(1+2kS²): 1 for unfilled rubber, less for filled, about 0.6 at 60 IRHD")
+		r.fault(at, path+".compression_coefficient", "missing", "k of E_c = 3G(1+2kS²): 1 for unfilled rubber, less for filled, about 0.6 at 60 IRHD; or factor_from_hardness: 60 IRHD")
 	}
 }
 
@@ -226,9 +238,11 @@ func (r *reader) assume(m *Mount) {
 		case e.Bush != nil:
 			add("%s: a long bush; its ends are left out", e.Name)
 		case e.Pad != nil && e.Pad.Pressed:
-			add("%s: bonded compression; the influence of the load is left out", e.Name)
-		case e.Pad != nil && !e.Pad.Bending:
+			add("%s: bonded compression%s", e.Name, r.unloaded)
+		case e.Pad != nil && !e.Pad.Bending && !(i < len(r.pressed) && r.pressed[i]):
 			add("%s: simple shear; bending and the influence of the load are left out", e.Name)
+		case e.Pad != nil && i < len(r.pressed) && r.pressed[i]:
+			add("%s: shear and bonded compression%s", e.Name, r.unloaded)
 		case e.Pad != nil:
 			add("%s: the influence of the load is left out", e.Name)
 		}
@@ -237,6 +251,7 @@ func (r *reader) assume(m *Mount) {
 			add("%s: incompressible rubber in compression", e.Name)
 		}
 	}
+	m.Assumptions = append(m.Assumptions, r.notes...)
 	if math.IsNaN(m.PartFactorU) {
 		add("the factor from specimen to part is %g, without an uncertainty", m.PartFactor)
 	}

@@ -18,7 +18,7 @@ const deepest = 32
 // gathered.
 func (r *reader) mount(n *yaml.Node) *Mount {
 	m := &Mount{
-		Count: 1, Mass: math.NaN(), PartFactor: 1, PartFactorU: math.NaN(),
+		Count: 1, Mass: math.NaN(), StaticForce: math.NaN(), PartFactor: 1, PartFactorU: math.NaN(),
 		Excitation: Excitation{Displacement: math.NaN(), Force: math.NaN()},
 		Tolerance:  Tolerance{Hardness: math.NaN()},
 	}
@@ -49,10 +49,7 @@ func (r *reader) mount(n *yaml.Node) *Mount {
 			m.Count = int(x)
 		}
 	}
-	if e, ok := keys["load"]; ok {
-		load := r.mapping(e.value, e.path, "mass")
-		m.Mass = r.amount(load, "mass", unit.Mass, false)
-	}
+	static, stated := r.load(m, keys)
 	if e, ok := keys["excitation"]; ok {
 		shake := r.mapping(e.value, e.path, "displacement", "force")
 		m.Excitation.Displacement = r.amount(shake, "displacement", unit.Length, true)
@@ -74,8 +71,12 @@ func (r *reader) mount(n *yaml.Node) *Mount {
 			}
 		}
 	}
-	r.assume(m)
-	return m
+	rested := m
+	if len(r.faults) == 0 {
+		rested = r.rest(m, static, stated, keys["load"])
+	}
+	r.assume(rested)
+	return rested
 }
 
 // partFactor reads a number, or a number with its standard uncertainty.

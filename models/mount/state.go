@@ -13,7 +13,10 @@ type Material func(hertz, kelvin, strain float64) complex128
 // State is a mount at one condition.
 type State struct {
 	// Stiffness is that of all mounts together, part factor included, N/m.
-	Stiffness    complex128
+	Stiffness complex128
+	// Uncorrected is the same without the influence of the static load on the
+	// pressed pads, at the same moduli; equal to Stiffness where no load is stated.
+	Uncorrected  complex128
 	Displacement float64 // m, single amplitude
 	Force        float64 // N, single amplitude, on all mounts together
 	Leaves       []Leaf
@@ -127,6 +130,7 @@ func (m *Mount) settle(material Material, hertz, kelvin, displacement, force flo
 			return State{}, errors.New("mount: the compound has no modulus at this condition")
 		}
 		if change <= balanceTolerance {
+			s.Uncorrected = whole * m.uncorrected(k, nodes, s.Leaves)
 			s.Force = s.Displacement * cmplx.Abs(s.Stiffness)
 			for i, r := range ratio {
 				l := &s.Leaves[i]
@@ -142,6 +146,24 @@ func (m *Mount) settle(material Material, hertz, kelvin, displacement, force flo
 		}
 	}
 	return State{}, ErrNoBalance
+}
+
+// uncorrected returns the stiffness of one mount at the moduli of its leaves with
+// all pads at their unloaded height; loaded is that under the static load.
+func (m *Mount) uncorrected(loaded complex128, nodes []*Arrangement, leaves []Leaf) complex128 {
+	same := true
+	k := make([]complex128, len(nodes))
+	for i, a := range nodes {
+		same = same && a.stretch() == 1
+		free := *a
+		free.Stretch = 1
+		k[i], _ = m.stiffness(&free, &leaves[i])
+	}
+	if same {
+		return loaded
+	}
+	k0, _ := m.Arrangement.join(k)
+	return k0
 }
 
 // refer fills in a measured element's modulus at its reference condition.
@@ -164,7 +186,7 @@ func (m *Mount) stiffness(a *Arrangement, l *Leaf) (k, slope complex128) {
 	case e.Bush != nil:
 		return e.Bush.Axial(l.Modulus), e.Bush.Axial(1)
 	case a.Kind == Single && e.Pad.Pressed:
-		return e.Pad.Press(l.Modulus)
+		return e.Pad.PressAt(l.Modulus, a.stretch())
 	case a.Kind == Single:
 		return e.Pad.Shear(l.Modulus), e.Pad.Shear(1)
 	}
@@ -172,7 +194,7 @@ func (m *Mount) stiffness(a *Arrangement, l *Leaf) (k, slope complex128) {
 	// each pad by x·cos and shears it by x·sin; a horizontal one the other way
 	// round.
 	normal, along := a.components()
-	press, pressSlope := e.Pad.Press(l.Modulus)
+	press, pressSlope := e.Pad.PressAt(l.Modulus, a.stretch())
 	n2, a2 := complex(2*normal*normal, 0), complex(2*along*along, 0)
 	return n2*press + a2*e.Pad.Shear(l.Modulus), n2*pressSlope + a2*e.Pad.Shear(1)
 }
@@ -191,10 +213,10 @@ func (m *Mount) strain(a *Arrangement, displacement float64) float64 {
 	perThickness := displacement / e.Pad.Thickness
 	switch {
 	case a.Kind == Single && e.Pad.Pressed:
-		return perThickness * math.Sqrt(e.Pad.stiffening())
+		return perThickness * math.Sqrt(e.Pad.stiffening(a.stretch()))
 	case a.Kind == Single:
 		return perThickness
 	}
 	normal, along := a.components()
-	return perThickness * math.Sqrt(along*along+normal*normal*e.Pad.stiffening())
+	return perThickness * math.Sqrt(along*along+normal*normal*e.Pad.stiffening(a.stretch()))
 }
