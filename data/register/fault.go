@@ -14,8 +14,9 @@ var (
 	ErrDuplicate = errors.New("a batch is registered once")
 	ErrCorrected = errors.New("an entry is corrected once")
 	ErrNotFound  = errors.New("not in the register")
-	ErrDamaged   = errors.New("the register is damaged here")
-	ErrNewer     = errors.New("the register is newer than this program")
+	ErrDamaged   = errors.New("it is damaged")
+	ErrOther     = errors.New("the export is of another register")
+	ErrNewer     = errors.New("it was made by a newer program")
 )
 
 const restore = "the sound entries can still be read: export them and import them into a new register, " +

@@ -105,7 +105,7 @@ func (postgresKind) judge(err error) verdict {
 	// Classes of PostgreSQL's error codes, appendix A of its manual.
 	switch class := e.Code[:2]; {
 	case e.Code == "XX001" || e.Code == "XX002":
-		return verdict{what: "the database is damaged", hint: restore, damaged: true}
+		return verdict{what: "its structure does not hold together", hint: restore, damaged: true}
 	case class == "08" || class == "57":
 		return verdict{what: "the server ended the connection", hint: "look whether the server runs, then try again", unreached: true}
 	case class == "53":

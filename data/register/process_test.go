@@ -63,7 +63,6 @@ func TestKilledInTheMiddle(t *testing.T) {
 			}
 			lives++
 		}
-		r = open(t, where)
 		confirmed(t, r, batches)
 		all, damaged, err := r.List(context.Background(), Query{})
 		if err != nil {

@@ -172,7 +172,7 @@ func (sqliteKind) judge(err error) verdict {
 	case codes.SQLITE_NOTADB:
 		return verdict{what: "is no register, or its beginning is destroyed", hint: "restore it from a backup, or import an export into a new register", damaged: true}
 	case codes.SQLITE_CORRUPT:
-		return verdict{what: "the file is damaged", hint: restore, damaged: true}
+		return verdict{what: "its structure does not hold together", hint: restore, damaged: true}
 	case codes.SQLITE_BUSY, codes.SQLITE_LOCKED:
 		return verdict{what: "another program has been writing for ten seconds", hint: "try again; a register on a network drive belongs into PostgreSQL"}
 	case codes.SQLITE_READONLY, codes.SQLITE_PERM:
