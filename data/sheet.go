@@ -1,7 +1,11 @@
 package data
 
 import (
+	"bytes"
 	"fmt"
+	"image"
+	_ "image/jpeg" // logos
+	_ "image/png"
 	"path"
 	"path/filepath"
 	"slices"
@@ -40,8 +44,11 @@ type SheetCondition struct{ Frequency, Temperature, Strain float64 }
 var SheetSections = []string{"identity", "properties", "constants", "temperature dependence", "figures", "shift factors", "strain dependence", "typical values",
 	"not told", "method", "findings", "assumptions", "provenance", "signatures"}
 
-// maxLogo bounds a logo file.
-const maxLogo = 2 << 20
+// maxLogo bounds a logo file in bytes, maxPixels its picture.
+const (
+	maxLogo   = 2 << 20
+	maxPixels = 4000
+)
 
 // OpenSheet reads a settings file of datasheets (YAML). Errors are *place.Error or a
 // place.List of them.
@@ -97,10 +104,16 @@ func readSheet(s *source, name string, content []byte) (*Sheet, error) {
 			t.fault(m.at("logo"), "logo", "the logo is named relative to the settings file", "%v", err)
 		case len(b) > maxLogo:
 			t.fault(m.at("logo"), "logo", "", "larger than %d MB", maxLogo>>20)
-		case strings.HasPrefix(string(b), "\x89PNG\r\n\x1a\n"), strings.HasPrefix(string(b), "\xff\xd8\xff"):
-			out.Logo = b
 		default:
-			t.fault(m.at("logo"), "logo", "export the logo as PNG or JPEG", "%q is neither PNG nor JPEG", clip(file))
+			config, _, err := image.DecodeConfig(bytes.NewReader(b))
+			switch {
+			case err != nil:
+				t.fault(m.at("logo"), "logo", "export the logo as PNG or JPEG", "%q is neither PNG nor JPEG", clip(file))
+			case config.Width > maxPixels || config.Height > maxPixels || config.Width < 1 || config.Height < 1:
+				t.fault(m.at("logo"), "logo", "", "the logo has %d × %d pixels; at most %d each way", config.Width, config.Height, maxPixels)
+			default:
+				out.Logo = b
+			}
 		}
 	}
 	if err := t.faults.Err(); err != nil {

@@ -1,6 +1,9 @@
 package data
 
 import (
+	"bytes"
+	"image"
+	"image/png"
 	"math"
 	"os"
 	"path/filepath"
@@ -17,7 +20,11 @@ func TestSheet(t *testing.T) {
 		}
 		return p
 	}
-	write("logo.png", "\x89PNG\r\n\x1a\n")
+	var logo bytes.Buffer
+	if err := png.Encode(&logo, image.NewGray(image.Rect(0, 0, 8, 4))); err != nil {
+		t.Fatal(err)
+	}
+	write("logo.png", logo.String())
 	write("logo.svg", "<svg/>")
 	s, err := OpenSheet(write("a.yaml", `title: HM-60
 laboratory: |
@@ -33,7 +40,7 @@ paper: letter
 	if err != nil {
 		t.Fatal(err)
 	}
-	if !s.InchPound || !s.Letter || len(s.Logo) != 8 || len(s.Sections) != 4 || len(s.Signatories) != 2 || s.Conditions[1].Strain != 0.005 || !math.IsNaN(s.Conditions[0].Strain) {
+	if !s.InchPound || !s.Letter || len(s.Logo) != logo.Len() || len(s.Sections) != 4 || len(s.Signatories) != 2 || s.Conditions[1].Strain != 0.005 || !math.IsNaN(s.Conditions[0].Strain) {
 		t.Errorf("%+v", s)
 	}
 	for _, v := range []struct{ text, want string }{

@@ -17,8 +17,12 @@ import (
 const Caution = "The numbers hold for the tested batch, in the state and at the conditions named, and within the domain named. They are no specification of other batches or parts. Design of supports that people depend on stays with a qualified engineer and the codes in force."
 
 // Datasheet writes the datasheet as a document, for PDF and HTML. The date of
-// the document is date, or where that is zero the last day of testing.
-func Datasheet(r *fitting.Result, date time.Time) figure.Document {
+// the document is date, or where that is zero the last day of testing. A nil set is
+// the program's own choice of sections, units and paper.
+func Datasheet(r *fitting.Result, date time.Time, set *data.Sheet) figure.Document {
+	if set == nil {
+		set = &data.Sheet{}
+	}
 	h := r.Campaign
 	name := h.Compound.Name
 	if name == "" {
@@ -31,52 +35,78 @@ func Datasheet(r *fitting.Result, date time.Time) figure.Document {
 		Title:    name + ": dynamic properties",
 		Subtitle: h.Name,
 		Running:  strings.Trim(name+", batch "+h.Compound.Batch, ", "),
-		Author:   h.Laboratory, Subject: "Dynamic properties of a vulcanised compound", Date: date,
+		Author:   h.Laboratory, Subject: "Dynamic properties of a vulcanised compound", Date: date, Logo: flat(set.Logo),
 	}
 	if h.Compound.Batch == "" {
 		d.Running = name
 	}
+	if set.Title != "" {
+		d.Title = set.Title
+	}
+	if set.Laboratory != "" {
+		d.Author, _, _ = strings.Cut(set.Laboratory, "\n")
+	}
+	if set.Letter {
+		d.Paper = figure.Letter
+	}
+	d.Lead = lead(r)
+	sections := sheetSections(r, set)
+	order := set.Sections
+	if order == nil {
+		order = data.SheetSections
+	}
+	for _, key := range order {
+		if s, ok := sections[key]; ok && len(s.Blocks) > 0 {
+			d.Sections = append(d.Sections, s)
+		}
+	}
+	return d
+}
+
+// sheetSections makes every section that the result has something for, by the names
+// of data.SheetSections.
+func sheetSections(r *fitting.Result, set *data.Sheet) map[string]figure.Section {
 	figs := map[string]figure.Picture{}
 	for _, f := range figures(r) {
 		figs[f.name] = figure.Picture{Figure: f.figure, Caption: f.caption}
 	}
-	picture := func(name string) []figure.Block {
-		if p, ok := figs[name]; ok {
-			return []figure.Block{p}
+	pictures := func(names ...string) []figure.Block {
+		var out []figure.Block
+		for _, name := range names {
+			if p, ok := figs[name]; ok {
+				out = append(out, p)
+			}
 		}
-		return nil
+		return out
 	}
-	d.Lead = lead(r)
-	d.Sections = append(d.Sections, figure.Section{Heading: "Identity, state and conditions", Blocks: identity(r)})
+	out := map[string]figure.Section{
+		"identity":          {Heading: "Identity, state and conditions", Blocks: identity(r, set)},
+		"figures":           {Heading: "Figures", Blocks: pictures("isotherms", "master-curve", "wicket", "phase-against-modulus", "relaxation")},
+		"strain dependence": {Heading: "Strain dependence", Blocks: pictures("strain-dependence")},
+		"method":            {Heading: "Method", Blocks: method(r, set)},
+		"typical values":    typical(r, set),
+		"findings":          {Heading: "Findings", Blocks: findingBlocks(r.Findings)},
+		"assumptions":       {Heading: "Assumptions", Blocks: assumptionBlocks(r)},
+		"provenance":        {Heading: "Provenance", Blocks: provenance(r)},
+		"signatures":        {Heading: "Signatures", Blocks: signatures(set)},
+	}
 	if r.Compound != nil {
-		d.Sections = append(d.Sections, properties(r), constants(r))
+		out["properties"], out["constants"] = properties(r, set), constants(r)
 	}
 	if len(r.Fixed) > 0 {
-		blocks := picture("temperature-dependence")
+		blocks := pictures("temperature-dependence")
 		if r.Compound == nil {
 			blocks = append(blocks, figure.GridOf(FixedFrequency(r), "Means at one temperature and frequency, as measured"))
 		}
-		d.Sections = append(d.Sections, figure.Section{Heading: "Temperature dependence", Blocks: blocks})
-	}
-	var pictures []figure.Block
-	for _, n := range []string{"isotherms", "master-curve", "shift-factors", "wicket", "phase-against-modulus", "strain-dependence", "relaxation"} {
-		pictures = append(pictures, picture(n)...)
-	}
-	if len(pictures) > 0 {
-		d.Sections = append(d.Sections, figure.Section{Heading: "Figures", Blocks: pictures})
+		out["temperature dependence"] = figure.Section{Heading: "Temperature dependence", Blocks: blocks}
 	}
 	if len(r.Shifts) > 0 {
-		d.Sections = append(d.Sections, figure.Section{Heading: "Shift factors", Blocks: shiftBlocks(r)})
+		out["shift factors"] = figure.Section{Heading: "Shift factors", Blocks: append(pictures("shift-factors"), shiftBlocks(r)...)}
 	}
 	if list := NotDetermined(r); len(list) > 0 {
-		d.Sections = append(d.Sections, figure.Section{Heading: "What the measurements do not tell", Blocks: []figure.Block{figure.List{Items: list}}})
+		out["not told"] = figure.Section{Heading: "What the measurements do not tell", Blocks: []figure.Block{figure.List{Items: list}}}
 	}
-	d.Sections = append(d.Sections,
-		figure.Section{Heading: "Findings", Blocks: findingBlocks(r.Findings)},
-		figure.Section{Heading: "Assumptions", Blocks: assumptionBlocks(r)},
-		figure.Section{Heading: "Provenance", Blocks: provenance(r)},
-	)
-	return d
+	return out
 }
 
 // lead says in front what matters most.
@@ -131,13 +161,22 @@ func statedNumber(x float64, format string) string {
 	return fmt.Sprintf(format, x)
 }
 
-func identity(r *fitting.Result) []figure.Block {
+func identity(r *fitting.Result, set *data.Sheet) []figure.Block {
 	h, c := r.Campaign, r.Campaign.Compound
+	laboratory := stated(h.Laboratory)
+	if set.Laboratory != "" {
+		laboratory = strings.Join(strings.Fields(strings.ReplaceAll(strings.TrimSpace(set.Laboratory), "\n", ", ")), " ")
+	}
 	facts := []figure.Fact{
 		{Name: "Compound", Value: stated(c.Name)}, {Name: "Polymer (ISO 1629)", Value: stated(c.Polymer)}, {Name: "Batch", Value: stated(c.Batch)},
 		{Name: "Hardness", Value: stated(c.Hardness)}, {Name: "Density", Value: statedNumber(float64(c.Density), "%.4g g/cm³")},
-		{Name: "Laboratory", Value: stated(h.Laboratory)}, {Name: "Operator", Value: stated(h.Operator)},
+		{Name: "Laboratory", Value: laboratory}, {Name: "Operator", Value: stated(h.Operator)},
 		{Name: "Vulcanised", Value: stated(h.Vulcanised)}, {Name: "Tested", Value: stated(c.Tested)},
+	}
+	for _, v := range []figure.Fact{{Name: "Customer", Value: set.Customer}, {Name: "Order", Value: set.Order}} {
+		if v.Value != "" {
+			facts = append(facts, v)
+		}
 	}
 	modulus := "shear modulus G"
 	if h.Modulus == string(data.Young) {
@@ -200,16 +239,27 @@ func domainText(c *models.Compound) string {
 	return text
 }
 
-func properties(r *fitting.Result) figure.Section {
+func properties(r *fitting.Result, set *data.Sheet) figure.Section {
 	t := propertiesAt(r, sheetFrequencies)
+	caption := "Dynamic properties at standard temperatures (ISO 23529, ASTM D1349) inside the domain, with half-widths of 95 % intervals"
 	// The modulus, the strain and the domain are the same in every row.
+	drop := map[string]bool{"modulus": true, "strain_amplitude_percent": true, "domain": true}
+	var outside []string
+	if len(set.Conditions) > 0 {
+		t, outside = atConditions(r.Compound, set.Conditions)
+		caption = "Dynamic properties at the laboratory’s standard conditions, with half-widths of 95 % intervals"
+		delete(drop, "strain_amplitude_percent")
+	}
+	if set.InchPound {
+		t = inchPound(t)
+	}
 	var keep []int
 	for j, c := range t.Columns {
-		if c.Key != "modulus" && c.Key != "strain_amplitude_percent" && c.Key != "domain" {
+		if !drop[c.Key] {
 			keep = append(keep, j)
 		}
 	}
-	g := figure.GridOf(t, "Dynamic properties at standard temperatures (ISO 23529, ASTM D1349) inside the domain, with half-widths of 95 % intervals")
+	g := figure.GridOf(t, caption)
 	var grid figure.Grid
 	grid.Caption = g.Caption
 	for _, j := range keep {
@@ -225,18 +275,29 @@ func properties(r *fitting.Result) figure.Section {
 		grid.Rows = append(grid.Rows, out)
 	}
 	text := "No strain amplitude was stated with the measurements."
-	if own := float64(r.Compound.Domain.OwnStrain); !math.IsNaN(own) {
+	if own := float64(r.Compound.Domain.OwnStrain); len(set.Conditions) > 0 {
+		text = strings.Join(outside, " ")
+	} else if !math.IsNaN(own) {
 		text = fmt.Sprintf("At the isotherms’ own strain amplitude of %.3g %%.", own)
 	}
 	if !finite(r.Uncertainty.Phase) {
 		text += " The common uncertainty of the phase was not stated: the intervals of loss modulus and loss factor are those of repeatability."
 	}
 	text += " More frequencies stand in tables/properties.csv; phaselag modulus answers at any condition inside the domain."
-	blocks := []figure.Block{grid, figure.Paragraph{Text: text, Small: true}}
+	if set.InchPound {
+		text += " Figures, constants and the compound file are in SI units."
+	}
+	blocks := []figure.Block{grid, figure.Paragraph{Text: strings.TrimSpace(text), Small: true}}
 	if len(r.Compound.Static) > 0 {
 		s := figure.Grid{Caption: "Static moduli, from static and relaxation tests only", Columns: []figure.GridColumn{{Heading: "Source"}, {Heading: "T", Unit: "°C"}, {Heading: "Strain", Unit: "%"}, {Heading: "Time", Unit: "s"}, {Heading: "Modulus", Unit: "MPa"}, {Heading: "± 95 %", Unit: "MPa"}}}
+		k := 1.0
+		degrees := func(c float64) float64 { return c }
+		if set.InchPound {
+			k, degrees = 1e6/psi, fahrenheit
+			s.Columns[1].Unit, s.Columns[4].Unit, s.Columns[5].Unit = "°F", "psi", "psi"
+		}
 		for _, v := range r.Compound.Static {
-			s.Rows = append(s.Rows, []string{v.Source, optional(float64(v.TemperatureC)), optional(float64(v.Strain)), optional(float64(v.Time)), short(v.Modulus), optional(roundTo(float64(v.U95), 2))})
+			s.Rows = append(s.Rows, []string{v.Source, optional(degrees(float64(v.TemperatureC))), optional(float64(v.Strain)), optional(float64(v.Time)), short(k * v.Modulus), optional(roundTo(k*float64(v.U95), 2))})
 		}
 		blocks = append(blocks, s)
 	}

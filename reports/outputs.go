@@ -5,6 +5,7 @@ import (
 	"strconv"
 	"time"
 
+	"phaselag/data"
 	"phaselag/fitting"
 	"phaselag/reports/figure"
 	"phaselag/reports/html"
@@ -25,7 +26,7 @@ func outputs(r *fitting.Result) ([]file, error) {
 		}
 		out = append(out, file{"compound.yaml", y}, file{"compound.json", j})
 	}
-	doc := Datasheet(r, sourceDate())
+	doc := Datasheet(r, sourceDate(), nil)
 	p, err := pdf.Bytes(doc)
 	if err != nil {
 		return nil, err
@@ -57,4 +58,16 @@ func sourceDate() time.Time {
 		return time.Time{}
 	}
 	return time.Unix(s, 0).UTC()
+}
+
+// Sheets makes the datasheet alone, as PDF and as HTML, with a laboratory's settings.
+func Sheets(r *fitting.Result, set *data.Sheet) (asPDF, asHTML []byte, err error) {
+	doc := Datasheet(r, sourceDate(), set)
+	if asPDF, err = pdf.Bytes(doc); err != nil {
+		return nil, nil, err
+	}
+	if asHTML, err = html.Bytes(doc); err != nil {
+		return nil, nil, err
+	}
+	return asPDF, asHTML, nil
 }

@@ -20,9 +20,20 @@ type Document struct {
 	// The zero time stands for 1 January 2000, so that nothing depends on a
 	// clock.
 	Date     time.Time
+	Paper    Paper
+	Logo     []byte  // PNG; nil: none
 	Lead     []Block // in front of the first section
 	Sections []Section
 }
+
+// Paper is a size of paper.
+type Paper int
+
+// The papers; A4 is the zero value.
+const (
+	A4 Paper = iota
+	Letter
+)
 
 // Section is a heading with what stands below it. Two levels are used; deeper
 // ones look like the second.

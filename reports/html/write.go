@@ -3,6 +3,7 @@ package html
 import (
 	"bytes"
 	_ "embed" // style and template
+	"encoding/base64"
 	"fmt"
 	"html/template"
 	"io"
@@ -42,7 +43,11 @@ func Bytes(d figure.Document) ([]byte, error) {
 		Lead     []block
 		Sections []section
 		Running  string
+		Logo     template.URL
 	}{Doc: d, Style: template.CSS(style), Running: d.Running}
+	if d.Logo != nil {
+		data.Logo = template.URL("data:image/png;base64," + base64.StdEncoding.EncodeToString(d.Logo))
+	}
 	if data.Running == "" {
 		data.Running = d.Title
 	}

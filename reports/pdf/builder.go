@@ -1,6 +1,7 @@
 package pdf
 
 import (
+	"bytes"
 	"fmt"
 
 	"codeberg.org/go-pdf/fpdf"
@@ -13,6 +14,7 @@ type builder struct {
 	pdf     *fpdf.Fpdf
 	text    setter
 	doc     figure.Document
+	page    sheet
 	pages   int
 	y       float64 // mm from the top: where the next thing begins
 	figures int     // numbered so far
@@ -42,8 +44,8 @@ func (b *builder) newPage() {
 	if foot == "" {
 		foot = b.doc.Title
 	}
-	b.rule(283, 0xBBBBBB)
-	b.running(foot, fmt.Sprintf("page %d of %d", n, b.pages), 284.5)
+	b.rule(b.page.height-14, 0xBBBBBB)
+	b.running(foot, fmt.Sprintf("page %d of %d", n, b.pages), b.page.height-12.5)
 	b.y = top
 }
 
@@ -55,17 +57,17 @@ func (b *builder) running(start, end string, y float64) {
 	if len(l) > 1 {
 		first.spans = append(first.spans[:len(first.spans):len(first.spans)], span{text: "…"})
 	}
-	b.text.draw(first, runStyle, left, y)
+	b.text.draw(first, runStyle, b.page.left, y)
 	if end != "" {
 		l := b.text.lines(end, runStyle, measure)[0]
-		b.text.draw(l, runStyle, right-l.width, y)
+		b.text.draw(l, runStyle, b.page.right-l.width, y)
 	}
 }
 
 func (b *builder) rule(y float64, c figure.Colour) {
 	b.stroke(c)
 	b.pdf.SetLineWidth(0.15)
-	b.pdf.Line(left, y, right, y)
+	b.pdf.Line(b.page.left, y, b.page.right, y)
 }
 
 func (b *builder) stroke(c figure.Colour) {
@@ -81,7 +83,7 @@ func (b *builder) fill(c figure.Colour) {
 // need begins a new page where less than h mm are left, unless the page is
 // still empty.
 func (b *builder) need(h float64) {
-	if b.y+h > bottom+1e-6 && b.y > top {
+	if b.y+h > b.page.bottom+1e-6 && b.y > top {
 		b.newPage()
 	}
 }
@@ -91,22 +93,45 @@ func (b *builder) title() {
 		return
 	}
 	b.y = 18
+	b.logo()
 	for _, l := range b.text.lines(b.doc.Title, titleStyle, measure) {
-		b.text.draw(l, titleStyle, left, b.y)
+		b.text.draw(l, titleStyle, b.page.left, b.y)
 		b.y += titleStyle.height()
 	}
 	if b.doc.Subtitle != "" {
 		st := style{size: 11, colour: 0x555555}
 		for _, l := range b.text.lines(b.doc.Subtitle, st, measure) {
-			b.text.draw(l, st, left, b.y)
+			b.text.draw(l, st, b.page.left, b.y)
 			b.y += st.height()
 		}
 	}
 	b.y += 1.5
 	b.stroke(0x12344D)
 	b.pdf.SetLineWidth(0.5)
-	b.pdf.Line(left, b.y, right, b.y)
+	b.pdf.Line(b.page.left, b.y, b.page.right, b.y)
 	b.y += 4
+}
+
+// logoHeight is the height of a logo, mm; it is at most four times as wide.
+const logoHeight = 14.0
+
+// logo sets the laboratory's sign in the upper right corner, above the title.
+func (b *builder) logo() {
+	if b.doc.Logo == nil {
+		return
+	}
+	options := fpdf.ImageOptions{ImageType: "PNG"}
+	info := b.pdf.RegisterImageOptionsReader("logo", options, bytes.NewReader(b.doc.Logo))
+	if b.pdf.Err() || info == nil || !(info.Height() > 0) {
+		return // Bytes reports the library's error
+	}
+	height := logoHeight
+	width := info.Width() / info.Height() * height
+	if most := 4 * logoHeight; width > most {
+		width, height = most, height*most/width
+	}
+	b.pdf.ImageOptions("logo", b.page.right-width, 9, width, height, false, options, 0, "")
+	b.y = 9 + height + 3
 }
 
 func (b *builder) section(s figure.Section, level int) {
@@ -127,7 +152,7 @@ func (b *builder) section(s figure.Section, level int) {
 		b.pdf.SetFont(family, "", 9)
 		b.pdf.Bookmark(printable(figure.Plain(s.Heading)), min(level, 1), b.y)
 		for _, l := range lines {
-			b.text.draw(l, st, left, b.y)
+			b.text.draw(l, st, b.page.left, b.y)
 			b.y += st.height()
 		}
 		b.y += 2
@@ -167,7 +192,7 @@ func (b *builder) blocks(list []figure.Block) {
 		case figure.List:
 			b.list(k)
 		case figure.Facts:
-			b.facts(k.Items, left, measure)
+			b.facts(k.Items, b.page.left, measure)
 			b.y += blockGap
 		case figure.Grid:
 			b.grid(k)
@@ -209,7 +234,7 @@ func (b *builder) paragraph(p figure.Paragraph) {
 	if len(words) == 0 {
 		return
 	}
-	b.flow(b.text.wrap(words, st, measure), st, left)
+	b.flow(b.text.wrap(words, st, measure), st, b.page.left)
 	b.y += blockGap
 }
 
@@ -225,12 +250,12 @@ func (b *builder) list(k figure.List) {
 		lines := b.text.lines(item, bodyStyle, measure-indent)
 		b.need(float64(min(2, len(lines))) * bodyStyle.height())
 		if k.Numbered {
-			b.text.draw(b.text.lines(fmt.Sprintf("%d.", i+1), bodyStyle, measure)[0], bodyStyle, left, b.y)
+			b.text.draw(b.text.lines(fmt.Sprintf("%d.", i+1), bodyStyle, measure)[0], bodyStyle, b.page.left, b.y)
 		} else {
 			b.fill(figure.Black)
-			b.pdf.Circle(left+2, b.y+bodyStyle.height()/2, 0.5, "F")
+			b.pdf.Circle(b.page.left+2, b.y+bodyStyle.height()/2, 0.5, "F")
 		}
-		b.flow(lines, bodyStyle, left+indent)
+		b.flow(lines, bodyStyle, b.page.left+indent)
 		b.y += 0.6
 	}
 	b.y += blockGap - 0.6

@@ -26,24 +26,24 @@ func (b *builder) calloutHeight(c figure.Callout) float64 {
 // callout sets a bar in the colour of the grade, with the text beside it; a
 // long one runs over pages and the bar with it.
 func (b *builder) callout(c figure.Callout) {
-	if h := b.calloutHeight(c); h < bottom-top {
+	if h := b.calloutHeight(c); h < b.page.bottom-top {
 		b.need(h)
 	}
 	width := measure - calloutInset - 2
 	start, page := b.y, b.pdf.PageNo()
 	bar := func(from, to float64) {
 		b.fill(c.Grade.Colour())
-		b.pdf.Rect(left, from, 1.2, to-from, "F")
+		b.pdf.Rect(b.page.left, from, 1.2, to-from, "F")
 	}
 	b.y += calloutPad
 	step := func(lines []line, st style) {
 		for _, l := range lines {
-			if b.y+st.height() > bottom {
+			if b.y+st.height() > b.page.bottom {
 				bar(start, b.y)
 				b.newPage()
 				start, page = b.y, b.pdf.PageNo()
 			}
-			b.text.draw(l, st, left+calloutInset, b.y)
+			b.text.draw(l, st, b.page.left+calloutInset, b.y)
 			b.y += st.height()
 		}
 	}
@@ -52,13 +52,13 @@ func (b *builder) callout(c figure.Callout) {
 		step(b.text.lines(c.Text, bodyStyle, width), bodyStyle)
 	}
 	if len(c.Facts) > 0 {
-		b.facts(c.Facts, left+calloutInset, width)
+		b.facts(c.Facts, b.page.left+calloutInset, width)
 		if b.pdf.PageNo() != page { // facts went on by themselves
 			start = top
 		}
 	}
 	b.y += calloutPad
-	bar(start, min(b.y, bottom))
+	bar(start, min(b.y, b.page.bottom))
 	b.y += blockGap
 }
 

@@ -127,14 +127,14 @@ func (b *builder) grid(g figure.Grid) {
 		caption = b.text.wrap(append(words, b.text.words(g.Caption, captionStyle, false)...), captionStyle, measure)
 	}
 	b.need(float64(len(caption))*captionStyle.height() + headHeight + 3*(cellStyle.height()+2*rowPad))
-	b.flow(caption, captionStyle, left)
+	b.flow(caption, captionStyle, b.page.left)
 	if caption != nil {
 		b.y++
 	}
 	heading := func() {
 		b.fill(0xEDF1F4)
-		b.pdf.Rect(left, b.y, total, headHeight, "F")
-		x := left
+		b.pdf.Rect(b.page.left, b.y, total, headHeight, "F")
+		x := b.page.left
 		for j, c := range g.Columns {
 			y := b.y + rowPad
 			for _, part := range [2]struct {
@@ -160,7 +160,7 @@ func (b *builder) grid(g figure.Grid) {
 		b.gridRow(g, row, widths, after, total, heading)
 	}
 	if len(g.Rows) == 0 {
-		b.text.draw(b.text.lines("no rows", unitStyle, measure)[0], unitStyle, left+cellPad, b.y+rowPad)
+		b.text.draw(b.text.lines("no rows", unitStyle, measure)[0], unitStyle, b.page.left+cellPad, b.y+rowPad)
 		b.y += cellStyle.height() + 2*rowPad
 	}
 	b.tableRule(total, 0x667788)
@@ -170,7 +170,7 @@ func (b *builder) grid(g figure.Grid) {
 func (b *builder) tableRule(width float64, c figure.Colour) {
 	b.stroke(c)
 	b.pdf.SetLineWidth(0.15)
-	b.pdf.Line(left, b.y, left+width, b.y)
+	b.pdf.Line(b.page.left, b.y, b.page.left+width, b.y)
 }
 
 // gridRow sets one row. A row goes to the next page as a whole, unless it is
@@ -190,16 +190,16 @@ func (b *builder) gridRow(g figure.Grid, row []string, widths, after []float64, 
 		b.newPage()
 		heading()
 	}
-	if whole := float64(rows)*h + 2*rowPad; b.y+whole > bottom && (whole < (bottom-top)/2 || b.y+2*h+2*rowPad > bottom) {
+	if whole := float64(rows)*h + 2*rowPad; b.y+whole > b.page.bottom && (whole < (b.page.bottom-top)/2 || b.y+2*h+2*rowPad > b.page.bottom) {
 		turn()
 	}
 	b.y += rowPad
 	for i := range rows {
-		if b.y+h+rowPad > bottom+1e-6 {
+		if b.y+h+rowPad > b.page.bottom+1e-6 {
 			turn()
 			b.y += rowPad
 		}
-		x := left
+		x := b.page.left
 		for j, w := range widths {
 			if i < len(cells[j]) {
 				l := cells[j][i]

@@ -8,10 +8,13 @@ import (
 
 const captionGap = 1.0
 
+// shortest is the height of the text on the shortest paper, mm.
+const shortest = 279.4 - 20 - top
+
 // scale returns the magnification that lets a figure fit a width and a page.
 func scale(f figure.Figure, width float64) float64 {
 	w, h := f.Size()
-	return min(1, width/w, (bottom-top-30)/h)
+	return min(1, width/w, (shortest-30)/h)
 }
 
 // share returns the width of each of n pictures in a row.
@@ -51,7 +54,7 @@ func (b *builder) row(r figure.Row) {
 		tallest = max(tallest, h*scale(p.Figure, width))
 	}
 	for i, p := range r.Pictures {
-		x := left + float64(i)*(width+4)
+		x := b.page.left + float64(i)*(width+4)
 		s := scale(p.Figure, width)
 		w, _ := p.Figure.Size()
 		drawFigure(b.pdf, p.Figure, x+(width-w*s)/2, b.y, s)

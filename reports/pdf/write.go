@@ -32,19 +32,30 @@ func Bytes(d figure.Document) ([]byte, error) {
 	return out.Bytes(), nil
 }
 
-// A4 and its margins in mm.
+// sheet is a size of paper and its margins in mm.
+type sheet struct{ width, height, left, right, bottom float64 }
+
+// The measure is that of A4 on every paper.
 const (
-	pageWidth, pageHeight = 210.0, 297.0
-	left, right           = 20.0, 190.0
-	top, bottom           = 22.0, 277.0
-	measure               = right - left
+	top     = 22.0
+	measure = 170.0
 )
+
+func paper(p figure.Paper) sheet {
+	w, h := 210.0, 297.0
+	if p == figure.Letter {
+		w, h = 215.9, 279.4
+	}
+	left := (w - measure) / 2
+	return sheet{width: w, height: h, left: left, right: left + measure, bottom: h - 20}
+}
 
 // set builds the document, telling its pages that there are so many.
 func set(d figure.Document, pages int) *builder {
-	pdf := fpdf.NewCustom(&fpdf.InitType{OrientationStr: "P", UnitStr: "mm", Size: fpdf.SizeType{Wd: pageWidth, Ht: pageHeight}})
+	page := paper(d.Paper)
+	pdf := fpdf.NewCustom(&fpdf.InitType{OrientationStr: "P", UnitStr: "mm", Size: fpdf.SizeType{Wd: page.width, Ht: page.height}})
 	pdf.SetAutoPageBreak(false, 0)
-	pdf.SetMargins(left, top, pageWidth-right)
+	pdf.SetMargins(page.left, top, page.width-page.right)
 	pdf.SetCatalogSort(true)
 	pdf.SetCreationDate(d.When())
 	pdf.SetModificationDate(d.When())
@@ -55,7 +66,7 @@ func set(d figure.Document, pages int) *builder {
 	pdf.SetSubject(figure.Plain(d.Subject), true)
 	pdf.SetLang("en")
 	addFonts(pdf)
-	b := &builder{pdf: pdf, text: setter{pdf}, doc: d, pages: pages}
+	b := &builder{pdf: pdf, page: page, text: setter{pdf}, doc: d, pages: pages}
 	b.newPage()
 	b.title()
 	b.blocks(d.Lead)
