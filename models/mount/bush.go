@@ -2,24 +2,54 @@ package mount
 
 import "math"
 
-// Bush is a rubber tube bonded to an inner and an outer sleeve and moved along
-// its axis,
+// Bush is a rubber tube bonded to an inner and an outer sleeve. It is moved along
+// its axis (axial), turned about it (torsional), moved across it (radial) or
+// tilted about its middle (conical). Stiffness is in N/m, of a turned or tilted
+// bush in N·m/rad.
 //
-//	K* = 2πG*·L/ln(b/a),
+// Axial and torsional stiffness are exact for a long tube, with what the free ends
+// do left out:
 //
-// exact for a long tube with free ends neglected. The shear strain
-// x/(r·ln(b/a)) falls from the inner to the outer sleeve; the strain at which a
-// modulus that falls with strain is taken is the energy-weighted one
+//	axial      K = 2πGL/ln(b/a),              γ(r) = x/(r·ln(b/a))
+//	torsional  K = 4πGL/(1/a² − 1/b²),        γ(r) = 2θ/(r²(1/a² − 1/b²))
 //
-//	γ = ∫γ(r)²dV / ∫γ(r)dV = x/(b−a),
+// and the strains at which the modulus is taken (equivalent.go) are closed forms,
 //
-// which stores the right energy for a modulus that falls like 1/γ (derived, our
-// own rule).
+//	axial      γ_eq = x/(√(ab)·ln(b/a))
+//	torsional  ln γ_eq = ln[2θ/(1/a²−1/b²)] − 2·(ln a/a² − ln b/b²)/(1/a² − 1/b²) − 1.
+//
+// Radial and conical stiffness: radial.go.
 type Bush struct {
 	Inner  float64 // a, m, radius of the inner sleeve
 	Outer  float64 // b, m, radius inside the outer sleeve
 	Length float64 // L, m
+	Way    Way     // how it is moved
 }
+
+// Way is how a bush is moved.
+type Way int
+
+// The ways; [Torsional] and [Conical] are rotations.
+const (
+	Axial Way = iota
+	Torsional
+	Radial
+	Conical
+)
+
+// ways are their names in mount files.
+var ways = []string{"axial", "torsional", "radial", "conical"}
+
+// String returns the name in mount files.
+func (w Way) String() string {
+	if w < 0 || int(w) >= len(ways) {
+		return "unknown"
+	}
+	return ways[w]
+}
+
+// Rotates says whether the stiffness is in N·m/rad.
+func (w Way) Rotates() bool { return w == Torsional || w == Conical }
 
 // Axial returns the stiffness along the axis in N/m at the shear modulus g.
 func (b Bush) Axial(g complex128) complex128 {
@@ -27,24 +57,42 @@ func (b Bush) Axial(g complex128) complex128 {
 }
 
 // Torsion returns the stiffness in torsion about the axis in N·m/rad at the
-// shear modulus g, 4πGL/(1/a² − 1/b²), exact for a long tube.
+// shear modulus g.
 func (b Bush) Torsion(g complex128) complex128 {
-	return g * complex(4*math.Pi*b.Length/(1/(b.Inner*b.Inner)-1/(b.Outer*b.Outer)), 0)
+	return g * complex(4*math.Pi*b.Length/b.inverseSquares(), 0)
 }
 
-// Radial returns the bounds of the radial stiffness in N/m at the shear modulus
-// g of an incompressible rubber: of a tube so short that its ends move freely
-// (plane stress), and of one so long that nothing moves along it (plane
-// strain),
-//
-//	short: K = GL·80π(a²+b²)/[25(a²+b²)ln(b/a) − 9(b²−a²)]
-//	long:  K = GL· 4π(a²+b²)/[  (a²+b²)ln(b/a) −  (b²−a²)]
-//
-// after Adkins and Gent (1954); value from memory, confirmed by solving both
-// plane problems. A real bush lies between; it should be entered as measured.
-func (b Bush) Radial(g complex128) (short, long complex128) {
-	sum, difference := b.Inner*b.Inner+b.Outer*b.Outer, b.Outer*b.Outer-b.Inner*b.Inner
-	l := math.Log(b.Outer / b.Inner)
-	gl := g * complex(b.Length, 0)
-	return gl * complex(80*math.Pi*sum/(25*sum*l-9*difference), 0), gl * complex(4*math.Pi*sum/(sum*l-difference), 0)
+// inverseSquares returns 1/a² − 1/b².
+func (b Bush) inverseSquares() float64 { return 1/(b.Inner*b.Inner) - 1/(b.Outer*b.Outer) }
+
+// Stiffness returns the stiffness in the bush's way of moving at the shear modulus g;
+// that of a radial or conical bush is between the bounds (radial.go).
+func (b Bush) Stiffness(g complex128) complex128 {
+	switch b.Way {
+	case Torsional:
+		return b.Torsion(g)
+	case Radial:
+		return b.RadialBetween(g)
+	case Conical:
+		return b.ConicalBetween(g)
+	}
+	return b.Axial(g)
+}
+
+// strainPer returns γ_eq for a displacement of 1 m or an angle of 1 rad.
+func (b Bush) strainPer() float64 {
+	switch b.Way {
+	case Torsional:
+		// In units of a, for the sake of extreme dimensions.
+		r := b.Outer / b.Inner
+		d := 1 - 1/(r*r)
+		return math.Exp(math.Log(2/d) + 2*math.Log(r)/(r*r)/d - 1)
+	case Radial:
+		return b.acrossStrain(b.pressure())
+	case Conical:
+		// γ = z·θ·(that across), z² the weight along the axis: ln z has the mean
+		// ln(L/2) − 1/3.
+		return b.acrossStrain(b.tiltPressure()) * b.Length / 2 * math.Exp(-1.0/3)
+	}
+	return 1 / (math.Sqrt(b.Inner*b.Outer) * math.Log(b.Outer/b.Inner))
 }

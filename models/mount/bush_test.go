@@ -36,7 +36,7 @@ func TestBushStrain(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	near(t, "strain", s.Leaves[0].Strain, x/0.008, 1e-12)
+	near(t, "strain", s.Leaves[0].Strain, x/(math.Sqrt(0.010*0.018)*math.Log(1.8)), 1e-12)
 	energy, n := 0.0, 2000
 	for i := range n {
 		r := b.Inner + (float64(i)+0.5)/float64(n)*(b.Outer-b.Inner)

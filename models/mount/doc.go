@@ -3,7 +3,7 @@
 //
 // A mount is a tree: elements (a pad, a bush, or a part whose stiffness was
 // measured) joined in parallel, in series or as an inclined pair. Everything is
-// SI: m, N, N/m, Pa, kg, rad; amplitudes are single amplitudes (zero to peak);
+// SI: m, N, N/m, N·m/rad, Pa, kg, rad; amplitudes are single amplitudes (zero to peak);
 // "not stated" is NaN. Stiffness is complex, K* = K' + iK”, with K”/K' the loss
 // factor.
 //
@@ -37,7 +37,11 @@
 //     out. The same keys serve pads of an inclined pair.
 //   - A compression strip is long: length and width, the short side. A compression
 //     ring has outer_diameter, inner_diameter and thickness, its height.
-//   - An axial bush has inner_diameter, outer_diameter and length.
+//   - A bush has inner_diameter, outer_diameter, length and a direction: axial,
+//     torsional, radial or conical; without its own, that of the mount. An axial bush
+//     is the same with the direction said. Torsional and conical mounts have a
+//     stiffness in N·m/rad, excitation: {angle: 0.5 deg} or {torque: 5 N·m}, and no
+//     load ([Mount.Twisted]).
 //   - A measured element has the stiffness of a part at one condition; part says
 //     whether the number is the magnitude (the default) or the storage part.
 //     Without loss_factor or loss_angle its phase is the compound's there.

@@ -19,8 +19,8 @@ type Mount struct {
 // Excitation is what shakes the mount, single amplitude; NaN where not stated.
 // At most one of the two is stated.
 type Excitation struct {
-	Displacement float64 // m
-	Force        float64 // N, on all mounts together
+	Displacement float64 // m; of a mount that rotates rad
+	Force        float64 // N, on all mounts together; of a mount that rotates N·m
 }
 
 // Tolerance is the spread of production.

@@ -109,6 +109,7 @@ type reader struct {
 	names  []string // of the elements
 	// across: the direction is horizontal; upright: it is vertical.
 	across, upright bool
+	direction       string // as written
 	pressed         []bool // by element: an inclined pair uses it
 	// notes are assumptions that the keys themselves make, in the order of the file.
 	notes []string

@@ -57,7 +57,11 @@ func (r *reader) oneElement(e entry) Element {
 		r.fault(e.value, join(e.path, "shape"), "missing", "shape: shear pad, or measured: {stiffness: 420 N/mm, ...}")
 		return el
 	}
-	switch r.text(shape) {
+	what := r.text(shape)
+	if what != "bush" {
+		r.foreign(keys, "a bush", "direction")
+	}
+	switch what {
 	case "shear pad":
 		r.foreign(keys, "a bush or a ring", "inner_diameter", "outer_diameter")
 		el.Pad = r.pad(e, keys)
@@ -66,7 +70,7 @@ func (r *reader) oneElement(e entry) Element {
 		r.foreign(keys, "a shear pad", "bending")
 		el.Pad = r.pad(e, keys)
 		el.Pad.Pressed = true
-		if el.Pad.Strip = r.text(shape) == "compression strip"; el.Pad.Strip {
+		if el.Pad.Strip = what == "compression strip"; el.Pad.Strip {
 			r.strip(e, keys, el.Pad)
 		}
 		r.press(el, e.key, "a compression pad's stiffness depends")
@@ -78,6 +82,10 @@ func (r *reader) oneElement(e entry) Element {
 	case "axial bush":
 		r.foreign(keys, "a pad", "area", "thickness", "width", "diameter", "bending", "compression_coefficient", "factor", "factor_from_hardness", "bulk_modulus", "bulk_from_hardness", "hardness_table")
 		el.Bush = r.bush(e, keys)
+	case "bush":
+		r.foreign(keys, "a pad", "area", "thickness", "width", "diameter", "bending", "compression_coefficient", "factor", "factor_from_hardness", "bulk_modulus", "bulk_from_hardness", "hardness_table")
+		el.Bush = r.bush(e, keys)
+		el.Bush.Way = r.way(e, keys)
 	default:
 		r.fault(shape.value, shape.path, "unknown shape "+kind(shape.value), "known are "+strings.Join(shapes, ", ")+"; anything else can be entered as measured")
 	}
@@ -88,11 +96,11 @@ func (r *reader) oneElement(e entry) Element {
 var elementKeys = []string{
 	"shape", "area", "thickness", "length", "width", "diameter", "inner_diameter", "outer_diameter",
 	"bending", "compression_coefficient", "factor", "factor_from_hardness", "bulk_modulus", "bulk_from_hardness", "hardness_table",
-	"measured", "strain_per_displacement",
+	"direction", "measured", "strain_per_displacement",
 }
 
 // shapes are the shapes of elements that are not measured.
-var shapes = []string{"shear pad", "compression pad", "compression strip", "compression ring", "axial bush"}
+var shapes = []string{"shear pad", "compression pad", "compression strip", "compression ring", "axial bush", "bush"}
 
 // foreign reports keys of another shape.
 func (r *reader) foreign(keys map[string]entry, owner string, names ...string) {
@@ -103,7 +111,28 @@ func (r *reader) foreign(keys map[string]entry, owner string, names ...string) {
 	}
 }
 
-// bush reads an axial bush.
+// way reads how a bush is moved: its own direction, or the mount's.
+func (r *reader) way(e entry, keys map[string]entry) Way {
+	const hint = "direction: axial, torsional, radial or conical"
+	word := r.direction
+	d, own := keys["direction"]
+	if own {
+		word = r.text(d)
+	}
+	for i, w := range ways {
+		if w == word {
+			return Way(i)
+		}
+	}
+	if own {
+		r.fault(d.value, d.path, "unknown direction "+kind(d.value), hint)
+	} else {
+		r.fault(e.value, join(e.path, "direction"), "missing: a bush has a stiffness for each direction", hint)
+	}
+	return Axial
+}
+
+// bush reads the dimensions of a bush.
 func (r *reader) bush(e entry, keys map[string]entry) *Bush {
 	b := &Bush{
 		Inner:  r.amount(keys, "inner_diameter", unit.Length, false) / 2,
@@ -235,6 +264,14 @@ func (r *reader) assume(m *Mount) {
 		switch {
 		case e.Measured != nil && math.IsNaN(e.Measured.LossFactor):
 			add("%s: the loss factor at the measured condition is the compound's", e.Name)
+		case e.Bush != nil && e.Bush.Way == Radial:
+			short, long := e.Bush.Radial(1)
+			own := e.Bush.RadialBetween(1)
+			add("%s: radial stiffness of the bush's length between that of a short (%.3g times) and of a long bush (%.3g times), by the pressure in a thin wall: a convention; measure it where it matters", e.Name, real(short/own), real(long/own))
+		case e.Bush != nil && e.Bush.Way == Conical:
+			short, long := e.Bush.Conical(1)
+			own := e.Bush.ConicalBetween(1)
+			add("%s: conical stiffness of radial strips, about, between that of a short (%.3g times) and of a long bush (%.3g times): a convention; measure it where it matters", e.Name, real(short/own), real(long/own))
 		case e.Bush != nil:
 			add("%s: a long bush; its ends are left out", e.Name)
 		case e.Pad != nil && e.Pad.Pressed:

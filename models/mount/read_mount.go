@@ -31,6 +31,7 @@ func (r *reader) mount(n *yaml.Node) *Mount {
 	}
 	if e, ok := keys["direction"]; ok {
 		m.Direction = r.text(e)
+		r.direction = m.Direction
 		r.across, r.upright = m.Direction == "horizontal", m.Direction == "vertical"
 	}
 	if e, ok := keys["elements"]; ok {
@@ -50,14 +51,7 @@ func (r *reader) mount(n *yaml.Node) *Mount {
 		}
 	}
 	static, stated := r.load(m, keys)
-	if e, ok := keys["excitation"]; ok {
-		shake := r.mapping(e.value, e.path, "displacement", "force")
-		m.Excitation.Displacement = r.amount(shake, "displacement", unit.Length, true)
-		m.Excitation.Force = r.amount(shake, "force", unit.Force, true)
-		if len(shake) > 1 {
-			r.fault(e.value, e.path, "displacement and force at the same time", "state the one that is held; the other follows")
-		}
-	}
+	r.excitation(m, keys)
 	if e, ok := keys["part_factor"]; ok {
 		r.partFactor(m, e, keys)
 	}
@@ -70,6 +64,9 @@ func (r *reader) mount(n *yaml.Node) *Mount {
 				m.Tolerance.Scale = u.Symbol
 			}
 		}
+	}
+	if len(r.faults) == 0 {
+		r.oneMotion(m, keys)
 	}
 	rested := m
 	if len(r.faults) == 0 {

@@ -61,12 +61,16 @@ var ErrNoMass = errors.New("mount: no mass is stated")
 // Respond gives every steady response at a frequency in Hz and a temperature in K,
 // smallest amplitude first.
 func (m *Mount) Respond(material Material, hertz, kelvin float64, d Drive) ([]Response, error) {
+	if m.Rotates() {
+		return nil, ErrRotates
+	}
 	if !(m.Mass > 0) {
 		return nil, ErrNoMass
 	}
+	p := m.prepare(kelvin)
 	a := math.Pow(2*math.Pi*hertz, 2) * m.Mass
 	answer := func(x float64) (Response, error) {
-		s, err := m.Displaced(material, hertz, kelvin, x)
+		s, err := p.displaced(material, hertz, x)
 		if err != nil {
 			return Response{}, err
 		}
@@ -82,7 +86,7 @@ func (m *Mount) Respond(material Material, hertz, kelvin float64, d Drive) ([]Re
 	}
 	// h(x) changes its sign at every answer.
 	h := func(x float64) float64 {
-		s, err := m.Displaced(material, hertz, kelvin, x)
+		s, err := p.displaced(material, hertz, x)
 		if err != nil {
 			return math.NaN()
 		}
@@ -95,7 +99,7 @@ func (m *Mount) Respond(material Material, hertz, kelvin float64, d Drive) ([]Re
 		}
 		return math.Log(x * cmplx.Abs(s.Stiffness-complex(a, 0)) / drive)
 	}
-	small, err := m.Displaced(material, hertz, kelvin, 1e-9)
+	small, err := p.displaced(material, hertz, 1e-9)
 	if err != nil {
 		return nil, err
 	}
@@ -141,11 +145,15 @@ func bisect(h func(float64) float64, lo, hi float64) float64 {
 // Natural gives the undamped natural frequencies, Hz, of the mass on the mounts between
 // two frequencies at an amplitude across the mounts in m.
 func (m *Mount) Natural(material Material, lo, hi, kelvin, x float64) ([]float64, error) {
+	if m.Rotates() {
+		return nil, ErrRotates
+	}
 	if !(m.Mass > 0) {
 		return nil, ErrNoMass
 	}
+	p := m.prepare(kelvin)
 	h := func(f float64) float64 {
-		s, err := m.Displaced(material, f, kelvin, x)
+		s, err := p.displaced(material, f, x)
 		if err != nil || !(real(s.Stiffness) > 0) {
 			return math.NaN()
 		}

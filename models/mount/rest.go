@@ -95,6 +95,9 @@ func (m *Mount) load() float64 {
 // series it is taken as rigid, which changes no other's load; beside parallel
 // members it is an error.
 func (m *Mount) Loaded(static StaticModulus) (*Rest, error) {
+	if m.Rotates() {
+		return nil, ErrRotates
+	}
 	force := m.load()
 	if math.IsNaN(force) {
 		return nil, ErrNoLoad
@@ -176,7 +179,7 @@ func (m *Mount) carry(a *Arrangement, static StaticModulus, x float64) (force, t
 	case e.Measured != nil:
 		return 0, math.Inf(1), 1
 	case e.Bush != nil:
-		k := real(e.Bush.Axial(complex(static.Shear, 0)))
+		k := real(e.Bush.Stiffness(complex(static.Shear, 0)))
 		return k * x, k, 1
 	case a.Kind == Single && e.Pad.Pressed:
 		return e.Pad.squeeze(static.pressed(), x)

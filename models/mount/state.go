@@ -73,18 +73,49 @@ const (
 // repetition until no displacement changes by more than 1e-12 of itself. It
 // converges as long as no modulus falls faster than its amplitude rises.
 func (m *Mount) Displaced(material Material, hertz, kelvin, displacement float64) (State, error) {
-	return m.settle(material, hertz, kelvin, displacement, math.NaN())
+	if m.Rotates() {
+		return State{}, ErrRotates
+	}
+	return m.prepare(kelvin).displaced(material, hertz, displacement)
 }
 
 // Forced returns the mount's state under a force amplitude in N on all mounts
 // together; the displacement is found in the same repetition.
 func (m *Mount) Forced(material Material, hertz, kelvin, force float64) (State, error) {
-	return m.settle(material, hertz, kelvin, math.NaN(), force)
+	if m.Rotates() {
+		return State{}, ErrRotates
+	}
+	return m.prepare(kelvin).forced(material, hertz, force)
 }
 
-func (m *Mount) settle(material Material, hertz, kelvin, displacement, force float64) (State, error) {
+// prepared is a mount with what does not depend on amplitude and frequency.
+type prepared struct {
+	*Mount
+	nodes  []*Arrangement
+	per    []float64 // strain per displacement
+	kelvin []float64 // temperature of every leaf
+}
+
+func (m *Mount) prepare(kelvin float64) *prepared {
+	p := &prepared{Mount: m, nodes: m.Arrangement.leaves()}
+	for _, a := range p.nodes {
+		p.per = append(p.per, m.strainPer(a))
+		p.kelvin = append(p.kelvin, kelvin)
+	}
+	return p
+}
+
+func (m *prepared) displaced(material Material, hertz, displacement float64) (State, error) {
+	return m.settle(material, hertz, displacement, math.NaN())
+}
+
+func (m *prepared) forced(material Material, hertz, force float64) (State, error) {
+	return m.settle(material, hertz, math.NaN(), force)
+}
+
+func (m *prepared) settle(material Material, hertz, displacement, force float64) (State, error) {
 	s := State{Displacement: displacement, Force: force}
-	nodes := m.Arrangement.leaves()
+	nodes := m.nodes
 	s.Leaves = make([]Leaf, len(nodes))
 	shares := make([]float64, len(nodes)) // |x_i/x|
 	for i := range nodes {
@@ -103,8 +134,8 @@ func (m *Mount) settle(material Material, hertz, kelvin, displacement, force flo
 		for i := range s.Leaves {
 			l := &s.Leaves[i]
 			l.Displacement = s.Displacement * shares[i]
-			l.Strain = m.strain(nodes[i], l.Displacement)
-			l.Modulus = material(hertz, kelvin, l.Strain)
+			l.Strain = m.per[i] * l.Displacement
+			l.Modulus = material(hertz, m.kelvin[i], l.Strain)
 			stiffness[i], slope[i] = m.stiffness(nodes[i], l)
 			l.Stiffness = stiffness[i]
 		}
@@ -184,7 +215,7 @@ func (m *Mount) stiffness(a *Arrangement, l *Leaf) (k, slope complex128) {
 	}
 	switch {
 	case e.Bush != nil:
-		return e.Bush.Axial(l.Modulus), e.Bush.Axial(1)
+		return e.Bush.Stiffness(l.Modulus), e.Bush.Stiffness(1)
 	case a.Kind == Single && e.Pad.Pressed:
 		return e.Pad.PressAt(l.Modulus, a.stretch())
 	case a.Kind == Single:
@@ -199,24 +230,22 @@ func (m *Mount) stiffness(a *Arrangement, l *Leaf) (k, slope complex128) {
 	return n2*press + a2*e.Pad.Shear(l.Modulus), n2*pressSlope + a2*e.Pad.Shear(1)
 }
 
-// strain returns the shear strain amplitude that stores the same energy,
-// ½Gγ² = stored energy density: x/t in shear, (x/t)·√(E_c/G) in bonded
-// compression without the part that the bulk stores (derived, our own rule).
-func (m *Mount) strain(a *Arrangement, displacement float64) float64 {
+// strainPer returns the energy-equivalent shear strain of a leaf (equivalent.go) for a
+// displacement of 1 m or an angle of 1 rad.
+func (m *Mount) strainPer(a *Arrangement) float64 {
 	e := m.Elements[a.Element]
-	if e.Measured != nil {
-		return displacement * e.Measured.StrainPerDisplacement
-	}
-	if e.Bush != nil {
-		return displacement / (e.Bush.Outer - e.Bush.Inner)
-	}
-	perThickness := displacement / e.Pad.Thickness
 	switch {
+	case e.Measured != nil:
+		return e.Measured.StrainPerDisplacement
+	case e.Bush != nil:
+		return e.Bush.strainPer()
 	case a.Kind == Single && e.Pad.Pressed:
-		return perThickness * math.Sqrt(e.Pad.stiffening(a.stretch()))
+		return math.Sqrt(e.Pad.stiffening(a.stretch())) / e.Pad.Thickness
+	case a.Kind == Single && e.Pad.Bending:
+		return e.Pad.bentStrain() / e.Pad.Thickness
 	case a.Kind == Single:
-		return perThickness
+		return 1 / e.Pad.Thickness
 	}
 	normal, along := a.components()
-	return perThickness * math.Sqrt(along*along+normal*normal*e.Pad.stiffening(a.stretch()))
+	return math.Sqrt(along*along+normal*normal*e.Pad.stiffening(a.stretch())) / e.Pad.Thickness
 }
