@@ -106,7 +106,7 @@ qualified engineer and the codes in force.`,
 	}
 	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error { return usageError{err} })
 	root.CompletionOptions.HiddenDefaultCmd = true
-	root.AddCommand(a.inspectCmd(), a.checkCmd(), a.characterizeCmd(), a.modulusCmd(), a.stiffnessCmd(), a.responseCmd(), a.exportCmd(), a.datasheetCmd())
+	root.AddCommand(a.inspectCmd(), a.checkCmd(), a.characterizeCmd(), a.modulusCmd(), a.stiffnessCmd(), a.responseCmd(), a.exportCmd(), a.datasheetCmd(), a.batchCmd())
 	return root
 }
 
