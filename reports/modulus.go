@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"phaselag/fitting"
@@ -102,10 +103,13 @@ func propertiesAt(r *fitting.Result, frequencies []float64) table.Table {
 	return t
 }
 
-// Footnotes replaces the reasons in the last column of a table of answers by
+// Footnotes replaces the reasons in the column "domain" of a table of answers by
 // numbers, for a terminal, and gives the reasons as lines of at most 80 columns.
 func Footnotes(t table.Table) (table.Table, []string) {
-	last := len(t.Columns) - 1
+	last := slices.IndexFunc(t.Columns, func(c table.Column) bool { return c.Key == "domain" })
+	if last < 0 {
+		return t, nil
+	}
 	numbers := map[string]int{}
 	var lines []string
 	rows := make([][]table.Cell, len(t.Rows))

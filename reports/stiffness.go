@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"math/cmplx"
+	"slices"
 
 	"phaselag/models"
 	"phaselag/models/mount"
@@ -48,9 +49,13 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 	}}
 	t.Assumptions = append(t.Assumptions, m.Assumptions...)
 	t.Assumptions = append(t.Assumptions, partCaution)
-	if math.IsNaN(m.Tolerance.Hardness) {
-		t.Assumptions = append(t.Assumptions, "no production tolerance is stated: the intervals are those of the tested batch")
+	soft, hard, spread := production(c, m)
+	t.Assumptions = append(t.Assumptions, spread)
+	if soft < hard {
+		t.Columns = append(t.Columns,
+			table.Column{Key: "magnitude_softest_N_per_mm", Heading: "softest", Unit: "N/mm", Digits: 3}, table.Column{Key: "magnitude_hardest_N_per_mm", Heading: "hardest", Unit: "N/mm", Digits: 3})
 	}
+	t.Assumptions = append(t.Assumptions, unstatedParts(c, m)...)
 	ref, err := mountAt(c, m, reference)
 	if err != nil {
 		return table.Table{}, 0, fmt.Errorf("reference condition: %w", err)
@@ -75,7 +80,11 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 				for range 10 {
 					row = append(row, table.Number(math.NaN()))
 				}
-				t.Rows = append(t.Rows, append(row, table.Text(out.Error())))
+				row = append(row, table.Text(out.Error()))
+				for len(row) < len(t.Columns) {
+					row = append(row, table.Number(math.NaN()))
+				}
+				t.Rows = append(t.Rows, row)
 				continue
 			}
 			domain = "extrapolated: " + out.Quantities[0]
@@ -100,9 +109,32 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 			per(half(func(v complex128) float64 { return (real(k)*real(v) + imag(k)*imag(v)) / mag }, own*mag)),
 			table.Number(half(func(v complex128) float64 { return (imag(v) - eta*real(v)) / real(k) }, 0)))
 		ratio, ratioU := s.ratio(c, ref)
-		t.Rows = append(t.Rows, append(row, table.Number(ratio), table.Number(ratioU), table.Text(domain)))
+		row = append(row, table.Number(ratio), table.Number(ratioU), table.Text(domain))
+		for _, factor := range []float64{soft, hard} {
+			if soft == hard {
+				break
+			}
+			end, err := mountAt(c, scaled(m, factor), q)
+			if err != nil {
+				return table.Table{}, 0, err
+			}
+			row = append(row, per(cmplx.Abs(end.value)))
+		}
+		t.Rows = append(t.Rows, row)
 	}
 	return t, outside, nil
+}
+
+// unstatedParts says what a designer would expect the numbers to hold and they do not.
+func unstatedParts(c *models.Compound, m *mount.Mount) []string {
+	var out []string
+	if math.IsNaN(m.Mass) {
+		out = append(out, "no static load is stated: what it does to the stiffness is left out")
+	}
+	if !slices.Contains(c.Uncertainty.Parameters, models.ParamPhase) {
+		out = append(out, "the common uncertainty of the phase was not stated with the measurements: the intervals of loss and loss factor are those of repeatability")
+	}
+	return out
 }
 
 // partCaution goes with every stiffness.
