@@ -57,6 +57,8 @@
 //     of them together.
 //   - part_factor multiplies the stiffness: what parts were found to have beyond
 //     the specimens. It is a number, or a number with its standard uncertainty.
+//   - thermal_resistance, 2 K/W, is that of the rubber of one mount to its
+//     surroundings, or stands in the elements; [Mount.Heated] uses it.
 //   - tolerance is the production spread; nothing merges it with the
 //     uncertainty of the tests.
 package mount

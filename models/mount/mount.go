@@ -13,6 +13,9 @@ type Mount struct {
 	PartFactor  float64 // 1 if not stated
 	PartFactorU float64 // its relative standard uncertainty, NaN if not stated
 	Tolerance   Tolerance
+	// Resistance is the thermal resistance in K/W of the rubber of one mount to its
+	// surroundings; 0 if not stated.
+	Resistance  float64
 	Assumptions []string // what was taken as given, in the order of the file
 }
 
@@ -60,4 +63,7 @@ type Element struct {
 	Pad      *Pad
 	Bush     *Bush
 	Measured *Measured
+	// Resistance is the element's own thermal resistance in K/W, in one mount; 0 if not
+	// stated.
+	Resistance float64
 }

@@ -42,7 +42,7 @@ func (r *reader) oneElement(e entry) Element {
 		}
 	}
 	if measured {
-		el.Measured = r.measured(e)
+		el.Measured, el.Resistance = r.measured(e)
 		return el
 	}
 	keys := r.mapping(e.value, e.path, elementKeys...)
@@ -57,6 +57,7 @@ func (r *reader) oneElement(e entry) Element {
 		r.fault(e.value, join(e.path, "shape"), "missing", "shape: shear pad, or measured: {stiffness: 420 N/mm, ...}")
 		return el
 	}
+	el.Resistance = r.resistance(keys)
 	what := r.text(shape)
 	if what != "bush" {
 		r.foreign(keys, "a bush", "direction")
@@ -96,7 +97,7 @@ func (r *reader) oneElement(e entry) Element {
 var elementKeys = []string{
 	"shape", "area", "thickness", "length", "width", "diameter", "inner_diameter", "outer_diameter",
 	"bending", "compression_coefficient", "factor", "factor_from_hardness", "bulk_modulus", "bulk_from_hardness", "hardness_table",
-	"direction", "measured", "strain_per_displacement",
+	"direction", "thermal_resistance", "measured", "strain_per_displacement",
 }
 
 // shapes are the shapes of elements that are not measured.
@@ -189,17 +190,18 @@ func (r *reader) pad(e entry, keys map[string]entry) *Pad {
 	return p
 }
 
-// measured reads a measured part.
-func (r *reader) measured(e entry) *Measured {
-	keys := r.mapping(e.value, e.path, "measured", "strain_per_displacement")
-	m := &Measured{StrainPerDisplacement: r.amount(keys, "strain_per_displacement", unit.StrainPerLength, false)}
+// measured reads a measured part and its thermal resistance.
+func (r *reader) measured(e entry) (m *Measured, resistance float64) {
+	keys := r.mapping(e.value, e.path, "measured", "strain_per_displacement", "thermal_resistance")
+	resistance = r.resistance(keys)
+	m = &Measured{StrainPerDisplacement: r.amount(keys, "strain_per_displacement", unit.StrainPerLength, false)}
 	if _, ok := keys["strain_per_displacement"]; !ok {
 		r.fault(e.value, join(e.path, "strain_per_displacement"), "missing", "the shear strain for a displacement, for example 4 %/mm; for a pad in shear it is 1/thickness")
 	}
 	at := keys["measured"]
 	in := r.mapping(at.value, at.path, "stiffness", "part", "loss_factor", "loss_angle", "frequency", "temperature", "amplitude", "static_load", "u")
 	if in == nil {
-		return m
+		return m, resistance
 	}
 	m.Stiffness = r.amount(in, "stiffness", unit.Stiffness, false)
 	m.LossFactor = r.number(in, "loss_factor")
@@ -240,7 +242,7 @@ func (r *reader) measured(e entry) *Measured {
 			r.fault(p.value, p.path, fmt.Sprintf("want magnitude or storage, not %q", part), "")
 		}
 	}
-	return m
+	return m, resistance
 }
 
 // press checks that an element can be pressed; it says why it must be.

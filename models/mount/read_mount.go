@@ -22,7 +22,7 @@ func (r *reader) mount(n *yaml.Node) *Mount {
 		Excitation: Excitation{Displacement: math.NaN(), Force: math.NaN()},
 		Tolerance:  Tolerance{Hardness: math.NaN()},
 	}
-	keys := r.mapping(n, "", "mount", "elements", "arrangement", "count", "direction", "load", "excitation", "part_factor", "tolerance")
+	keys := r.mapping(n, "", "mount", "elements", "arrangement", "count", "direction", "load", "excitation", "part_factor", "tolerance", "thermal_resistance")
 	if keys == nil {
 		return m
 	}
@@ -65,6 +65,15 @@ func (r *reader) mount(n *yaml.Node) *Mount {
 			}
 		}
 	}
+	if e, ok := keys["thermal_resistance"]; ok {
+		m.Resistance = r.resistance(keys)
+		for _, el := range m.Elements {
+			if el.Resistance > 0 {
+				r.fault(e.key, e.path, "beside that of "+el.Name, "state it for the mount or for its elements")
+				break
+			}
+		}
+	}
 	if len(r.faults) == 0 {
 		r.oneMotion(m, keys)
 	}
@@ -74,6 +83,15 @@ func (r *reader) mount(n *yaml.Node) *Mount {
 	}
 	r.assume(rested)
 	return rested
+}
+
+// resistance reads a thermal resistance, 0 if there is none.
+func (r *reader) resistance(keys map[string]entry) float64 {
+	x := r.amount(keys, "thermal_resistance", unit.ThermalResistance, false)
+	if math.IsNaN(x) {
+		return 0
+	}
+	return x
 }
 
 // partFactor reads a number, or a number with its standard uncertainty.
