@@ -19,8 +19,12 @@ var (
 	ErrNewer     = errors.New("it was made by a newer program")
 )
 
-const restore = "the sound entries can still be read: export them and import them into a new register, " +
-	"then import a backup to fill the gaps"
+// Hints for a damaged register.
+const (
+	restore = "the sound entries can still be read: export them and import them into a new register, " +
+		"then import a backup's export to fill the gaps"
+	lostAll = "restore it from a backup, or import an export into a new register"
+)
 
 // fault puts an error of the database into words. what says what was being done.
 func (r *Register) fault(what string, err error) error {

@@ -3,6 +3,7 @@ package register
 import (
 	"context"
 	"fmt"
+	"slices"
 
 	"phaselag/data/place"
 )
@@ -11,52 +12,65 @@ import (
 // entry that is not there is [ErrNotFound], a damaged one [ErrDamaged].
 func (r *Register) Get(ctx context.Context, id int64) (*Entry, error) {
 	what := fmt.Sprintf("entry %d", id)
-	g := gathering{seen: map[int64]*head{}}
-	err := r.gather(ctx, &g, "SELECT "+headColumns+" FROM register_entry WHERE id = ? OR corrects = ? AND corrects <> 0 ORDER BY id", id, id)
+	g, err := r.some(ctx, "reading "+what,
+		"SELECT "+headColumns+" FROM register_entry WHERE id = ? OR corrects = ? AND corrects <> 0 ORDER BY id", id, id)
 	if err != nil {
-		return nil, r.fault("reading "+what, err)
+		return nil, err
 	}
-	h, there := g.seen[id]
-	if !there {
-		last := r.numbers(ctx, "SELECT coalesce(max(id), 0) FROM register_entry")
-		hint := "the register is empty"
-		if len(last) > 0 && last[0] > 0 {
-			hint = fmt.Sprintf("the last entry is %d", last[0])
-		}
-		return nil, r.refusal(what, hint, ErrNotFound)
-	}
-	if h == nil {
-		for _, d := range g.damaged {
-			if d.ID == id {
-				return nil, r.refusal(what+": "+d.What, restore, ErrDamaged)
-			}
+	for _, h := range g.sound {
+		if h.ID == id {
+			return r.entry(ctx, h)
 		}
 	}
-	for _, other := range g.sound {
-		if other.Corrects == id {
-			h.CorrectedBy = other.ID
+	for _, d := range g.damaged {
+		if d.ID == id {
+			return nil, r.refusal(what+": "+d.What, restore, ErrDamaged)
 		}
 	}
-	return r.entry(ctx, h)
+	hint := "the register is empty"
+	if last := r.numbers(ctx, "SELECT coalesce(max(id), 0) FROM register_entry"); len(last) > 0 && last[0] > 0 {
+		hint = fmt.Sprintf("the last entry is %d", last[0])
+	}
+	return nil, r.refusal(what, hint, ErrNotFound)
 }
 
 // GetBatch returns the entry that counts for a batch: the one that no other
 // corrects.
 func (r *Register) GetBatch(ctx context.Context, batch string) (*Entry, error) {
-	g := gathering{seen: map[int64]*head{}}
-	err := r.gather(ctx, &g, `SELECT `+headColumns+` FROM register_entry e WHERE batch = ?
+	what := "batch " + quoted(batch)
+	g, err := r.some(ctx, "reading "+what,
+		`SELECT `+headColumns+` FROM register_entry e WHERE batch = ?
 		AND NOT EXISTS (SELECT 1 FROM register_entry c WHERE c.corrects = e.id AND c.corrects <> 0) ORDER BY id`, batch)
 	if err != nil {
-		return nil, r.fault("reading batch "+quoted(batch), err)
+		return nil, err
 	}
-	if n := len(g.sound); n > 0 {
-		return r.entry(ctx, g.sound[n-1])
+	for _, h := range slices.Backward(g.sound) {
+		if h.Batch == batch && h.CorrectedBy == 0 {
+			return r.entry(ctx, h)
+		}
 	}
-	if len(g.damaged) > 0 {
-		d := g.damaged[0]
-		return nil, r.refusal(fmt.Sprintf("entry %d, batch %s: %s", d.ID, quoted(batch), d.What), restore, ErrDamaged)
+	for _, d := range g.damaged {
+		if d.Batch == batch {
+			return nil, r.refusal(fmt.Sprintf("entry %d, %s: %s", d.ID, what, d.What), restore, ErrDamaged)
+		}
 	}
-	return nil, r.refusal("batch "+quoted(batch), r.near(ctx, batch), ErrNotFound)
+	return nil, r.refusal(what, r.near(ctx, batch), ErrNotFound)
+}
+
+// some gathers the rows that a query finds, or all rows where the way to them is
+// damaged.
+func (r *Register) some(ctx context.Context, doing, q string, args ...any) (*gathering, error) {
+	g := &gathering{seen: map[int64]*head{}}
+	err := r.gather(ctx, g, q, args...)
+	switch {
+	case err != nil && r.kind.judge(err).damaged:
+		g.sound, g.damaged, err = r.heads(ctx)
+		return g, err
+	case err != nil:
+		return nil, r.fault(doing, err)
+	}
+	g.link()
+	return g, nil
 }
 
 // near says which batch may have been meant.
@@ -88,6 +102,9 @@ func (r *Register) entry(ctx context.Context, h *head) (*Entry, error) {
 		return nil, err
 	}
 	var values []Value
+	if wrong == "" {
+		wrong = h.decode()
+	}
 	if wrong == "" {
 		if values, wrong, err = r.values(ctx, h); err != nil {
 			return nil, err

@@ -13,7 +13,7 @@ import (
 
 // head is an entry's row.
 type head struct {
-	Summary
+	Summary          // Inputs after decode
 	inputs    string // the JSON text that is stored
 	valuesSum string
 	sum       string // of the row, as stored
@@ -84,12 +84,19 @@ func readHead(rows *sql.Rows) (h *head, wrong string, err error) {
 	if !sound || h.rowSum() != h.sum {
 		return h, "the row does not match its SHA-256", nil
 	}
-	if h.inputs != "[]" {
-		if err := json.Unmarshal([]byte(h.inputs), &h.Inputs); err != nil {
-			return h, "the list of its inputs is unreadable", nil
-		}
-	}
 	return h, "", nil
+}
+
+// decode reads the list of inputs, which takes as long as all the rest of a row
+// and is left until the row is wanted.
+func (h *head) decode() (wrong string) {
+	if h.inputs == "[]" {
+		return ""
+	}
+	if err := json.Unmarshal([]byte(h.inputs), &h.Inputs); err != nil {
+		return "the list of its inputs is unreadable"
+	}
+	return ""
 }
 
 // heads reads all rows in order of their numbers: the sound ones with
@@ -111,11 +118,7 @@ func (r *Register) heads(ctx context.Context) ([]*head, []Damage, error) {
 	}
 	slices.SortFunc(g.sound, func(a, b *head) int { return cmp.Compare(a.ID, b.ID) })
 	slices.SortStableFunc(g.damaged, func(a, b Damage) int { return cmp.Compare(a.ID, b.ID) })
-	for _, h := range g.sound {
-		if old := g.seen[h.Corrects]; old != nil {
-			old.CorrectedBy = h.ID
-		}
-	}
+	g.link()
 	return g.sound, g.damaged, nil
 }
 
@@ -129,6 +132,15 @@ type gathering struct {
 func (g *gathering) harm(id int64, batch, what string) {
 	g.damaged = append(g.damaged, Damage{id, batch, what})
 	g.seen[id] = nil
+}
+
+// link tells corrected entries by which.
+func (g *gathering) link() {
+	for _, h := range g.sound {
+		if old := g.seen[h.Corrects]; old != nil {
+			old.CorrectedBy = h.ID
+		}
+	}
 }
 
 func (r *Register) gather(ctx context.Context, g *gathering, q string, args ...any) error {
@@ -167,5 +179,5 @@ func legible(s string) string {
 func (r *Register) fail(what string, err error) error {
 	v := r.kind.judge(err)
 	return &place.Error{File: r.where, What: what + ": " + v.what, Err: fmt.Errorf("%w (%w)", ErrDamaged, err),
-		Hint: "nothing of it is readable; restore it from a backup, or import an export into a new register"}
+		Hint: "nothing of it is readable; " + lostAll}
 }

@@ -127,6 +127,9 @@ func (x *exported) entry(folder string) (*Entry, error) {
 func (x *exported) read(name string, most int64) ([]byte, error) {
 	fault := func(err error) error { return &place.Error{File: path.Join(x.folder, name), Err: err} }
 	f, err := x.fs.Open(name)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil, &place.Error{File: path.Join(x.folder, name), What: "is missing", Err: err}
+	}
 	if err != nil {
 		return nil, fault(err)
 	}

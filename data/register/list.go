@@ -38,15 +38,15 @@ func (r *Register) List(ctx context.Context, q Query) ([]Summary, []Damage, erro
 	}
 	out := make([]Summary, 0, len(heads))
 	for _, h := range heads {
-		if q.Thorough || len(heads) <= ThroughUpTo {
-			wrong, err := r.through(ctx, h)
-			if err != nil {
+		wrong := h.decode()
+		if wrong == "" && (q.Thorough || len(heads) <= ThroughUpTo) {
+			if wrong, err = r.through(ctx, h); err != nil {
 				return nil, nil, err
 			}
-			if wrong != "" {
-				damaged = append(damaged, Damage{h.ID, h.Batch, wrong})
-				continue
-			}
+		}
+		if wrong != "" {
+			damaged = append(damaged, Damage{h.ID, h.Batch, wrong})
+			continue
 		}
 		out = append(out, h.Summary)
 	}

@@ -4,12 +4,15 @@ import (
 	"cmp"
 	"context"
 	"embed"
+	"errors"
 	"fmt"
 	"io/fs"
 	"path"
 	"slices"
 	"strconv"
 	"strings"
+
+	"phaselag/data/place"
 )
 
 //go:embed schema
@@ -66,7 +69,12 @@ func (r *Register) take(ctx context.Context, all []step) error {
 	for {
 		done, err := r.takeOne(ctx, all)
 		if err != nil {
-			return r.fault("opening the register", err)
+			err = r.fault("opening the register", err)
+			var e *place.Error
+			if errors.As(err, &e) && e.Hint == restore { // but here nothing can be read
+				e.Hint = lostAll
+			}
+			return err
 		}
 		if done {
 			return nil

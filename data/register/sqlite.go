@@ -99,7 +99,7 @@ func connectSQLite(path string) (*Register, error) {
 		full = "/" + full // C:/… of Windows
 	}
 	settings := url.Values{
-		"_pragma": {"busy_timeout(10000)", "journal_mode(wal)", "synchronous(full)", "foreign_keys(1)", "trusted_schema(0)"},
+		"_pragma": {"busy_timeout(10000)", "journal_mode(wal)", "synchronous(full)", "foreign_keys(1)", "trusted_schema(0)", "temp_store(memory)", "cache_size(-65536)"},
 		"_txlock": {"immediate"},
 	}
 	u := url.URL{Scheme: "file", Path: full, RawQuery: settings.Encode()}
@@ -170,7 +170,7 @@ func (sqliteKind) judge(err error) verdict {
 	}
 	switch e.Code() & 0xff { // the low byte is the kind of error
 	case codes.SQLITE_NOTADB:
-		return verdict{what: "is no register, or its beginning is destroyed", hint: "restore it from a backup, or import an export into a new register", damaged: true}
+		return verdict{what: "is no register, or its beginning is destroyed", hint: lostAll, damaged: true}
 	case codes.SQLITE_CORRUPT:
 		return verdict{what: "its structure does not hold together", hint: restore, damaged: true}
 	case codes.SQLITE_BUSY, codes.SQLITE_LOCKED:

@@ -38,4 +38,5 @@ CREATE TABLE register_value (
 	PRIMARY KEY (entry, position)
 );
 
-CREATE INDEX register_value_name ON register_value (name, condition, entry);
+-- Whole rows by name, so that a trend reads only what it shows.
+CREATE INDEX register_value_name ON register_value (name, condition, entry) INCLUDE (position, value, u95, unit, mark);

@@ -38,4 +38,5 @@ CREATE TABLE register_value (
 	PRIMARY KEY (entry, position)
 ) STRICT, WITHOUT ROWID;
 
-CREATE INDEX register_value_name ON register_value (name, condition, entry);
+-- Whole rows by name, so that a trend reads only what it shows.
+CREATE INDEX register_value_name ON register_value (name, condition, entry, position, value, u95, unit, mark);
