@@ -163,6 +163,10 @@ type Point struct {
 	// StatedLossFactor is the file's own loss factor where the moduli were
 	// taken from other columns; NaN where there is none. For the check only.
 	StatedLossFactor float64
+	// StatedViscosity is the file's own magnitude of the complex viscosity, Pa·s, NaN
+	// where there is none. |η*| = |G*|/ω tells a frequency in Hz from one in rad/s. For
+	// the check only.
+	StatedViscosity float64
 
 	Used   bool
 	Reason string // why it is left out, "" if Used

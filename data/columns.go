@@ -16,7 +16,7 @@ type columnSet struct {
 	force, displacement                  int // amplitudes
 	stiff                                bool
 	pair                                 *pair
-	lossFactor, phase                    int // stated beside the pair
+	lossFactor, phase, viscosity         int // stated beside the pair
 	set                                  int // temperature as it was set
 	segments                             []int
 	filters                              []int
@@ -24,7 +24,7 @@ type columnSet struct {
 
 // columnsOf finds the columns that the kind of test needs.
 func (p *plan) columnsOf(t *table.Table) (cols columnSet, err error) {
-	cols = columnSet{frequency: -1, temperature: -1, strain: -1, time: -1, a: -1, b: -1, force: -1, displacement: -1, lossFactor: -1, phase: -1, set: -1}
+	cols = columnSet{frequency: -1, temperature: -1, strain: -1, time: -1, a: -1, b: -1, force: -1, displacement: -1, lossFactor: -1, phase: -1, viscosity: -1, set: -1}
 	for _, f := range p.rows {
 		i := headingColumn(t, f.heading)
 		if i < 0 {
@@ -52,6 +52,9 @@ func (p *plan) columnsOf(t *table.Table) (cols columnSet, err error) {
 	cols.segments = t.FindAll(table.Segment)
 	if i, err := t.Find(table.SetTemperature); err == nil && cols.temperature >= 0 {
 		cols.set = i
+	}
+	if i, err := t.Find(table.ComplexViscosity); err == nil {
+		cols.viscosity = i
 	}
 	if p.Kind == "" {
 		p.Kind = p.kindOf(t)
@@ -244,7 +247,7 @@ func (p *plan) modulusOf(t *table.Table, i int) error {
 func (p *plan) describeColumns(t *table.Table, written string, cols columnSet) {
 	for i, col := range t.Columns {
 		usedHere := false
-		for _, j := range []int{cols.frequency, cols.temperature, cols.strain, cols.time, cols.a, cols.b, cols.force, cols.displacement, cols.lossFactor, cols.phase, cols.set} {
+		for _, j := range []int{cols.frequency, cols.temperature, cols.strain, cols.time, cols.a, cols.b, cols.force, cols.displacement, cols.lossFactor, cols.phase, cols.viscosity, cols.set} {
 			usedHere = usedHere || i == j
 		}
 		if usedHere {

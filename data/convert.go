@@ -79,6 +79,7 @@ func (p *plan) scale(factor float64) {
 	for i := range p.points {
 		p.points[i].Storage *= factor
 		p.points[i].Loss *= factor
+		p.points[i].StatedViscosity *= factor
 	}
 	for i := range p.StaticValues {
 		p.StaticValues[i].Modulus *= factor

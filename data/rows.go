@@ -102,7 +102,7 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 	pt := raw{block: firstBlock + row.Block}
 	pt.File, pt.Row = written, row.Line
 	pt.Frequency, pt.Temperature, pt.Strain, pt.Time = math.NaN(), math.NaN(), math.NaN(), math.NaN()
-	pt.Loss, pt.StatedLossFactor, pt.MassShare, pt.FrameShare = math.NaN(), math.NaN(), math.NaN(), math.NaN()
+	pt.Loss, pt.StatedLossFactor, pt.StatedViscosity, pt.MassShare, pt.FrameShare = math.NaN(), math.NaN(), math.NaN(), math.NaN(), math.NaN()
 	var faults place.List
 	get := func(column int, constant float64) float64 {
 		v, err := p.cell(t, row, column, constant)
@@ -147,6 +147,9 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 			pt.StatedLossFactor = get(cols.lossFactor, math.NaN())
 		} else if cols.phase >= 0 {
 			pt.StatedLossFactor = tangent(get(cols.phase, math.NaN()))
+		}
+		if cols.viscosity >= 0 {
+			pt.StatedViscosity = get(cols.viscosity, math.NaN())
 		}
 	}
 	if pt.Reason == "" && (math.IsNaN(pt.Temperature) || math.IsInf(pt.Temperature, 0)) {

@@ -270,7 +270,7 @@ func analyse(st *table.Stream, cols signalColumns, frequency float64, set *signa
 func (p *plan) signalPoint(g *Signal) raw {
 	nan := math.NaN()
 	pt := raw{Point: Point{File: g.File, Row: g.Row, Frequency: g.Result.Frequency, Temperature: g.Temperature, Strain: nan, Time: nan,
-		Storage: nan, Loss: nan, MassShare: nan, FrameShare: nan, StatedLossFactor: nan}, set: nan}
+		Storage: nan, Loss: nan, MassShare: nan, FrameShare: nan, StatedLossFactor: nan, StatedViscosity: nan}, set: nan}
 	if g.Err != nil {
 		pt.Frequency = nan
 		pt.Reason = "segment not usable: " + g.Err.Error()
