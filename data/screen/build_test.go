@@ -15,10 +15,29 @@ import (
 // campaign makes what the reader would make of a simulated laboratory's files.
 func campaign(t *testing.T, truth demo.Truth, plan demo.Plan, seed uint64) *data.Campaign {
 	t.Helper()
-	files := demo.Campaign(truth, plan, seed)
-	c := &data.Campaign{Modulus: data.Shear, Uncertainty: data.Uncertainty{Phase: 1e-3}}
+	return read(t, plan, demo.Campaign(truth, plan, seed))
+}
+
+// read makes what the reader would make of a simulated laboratory's files, which
+// may have been spoiled.
+func read(t *testing.T, plan demo.Plan, files demo.Files) *data.Campaign {
+	t.Helper()
+	nan := math.NaN()
+	c := &data.Campaign{Modulus: data.Shear, Uncertainty: data.Uncertainty{Phase: 1e-3, TemperatureScatter: plan.Errors.TemperatureScatter}}
+	for _, s := range plan.Specimens {
+		c.Specimens = append(c.Specimens, data.Specimen{
+			Name: s.Name, Shape: "double shear", Diameter: s.Diameter / 1000, Width: nan, Length: nan, Thickness: s.Thickness / 1000,
+			InnerDiameter: nan, Poisson: nan, Coefficient: nan, Bulk: nan, ShearFactor: nan,
+		})
+	}
 	for _, p := range plan.Tests {
-		test := data.Test{Name: p.Name, Kind: data.Kind(p.Kind), Files: []string{p.File}, Specimen: p.Specimen}
+		test := data.Test{Name: p.Name, Kind: data.Kind(p.Kind), Files: []string{p.File}, Specimen: p.Specimen, Mounting: "1", Tested: p.Tested, Deformation: data.SimpleShear}
+		if p.Mounting != "" {
+			test.Mounting = p.Mounting
+		}
+		if p.Conditioning != "" {
+			test.Conditioning = data.Conditioning{Cycles: 6, Strain: 0.2, Rest: 3600}
+		}
 		if p.Kind == demo.Static {
 			c.Tests = append(c.Tests, test)
 			continue
@@ -81,6 +100,7 @@ func points(t *testing.T, p demo.Test, table []byte) (list []data.Point) {
 			File: p.File, Row: line, Used: true,
 			Frequency: x[0], Temperature: x[1] + 273.15, Strain: x[2] / 100, Time: math.NaN(),
 			Storage: x[3] * 1e6, Loss: math.NaN(), StatedLossFactor: math.NaN(),
+			StatedViscosity: math.NaN(), MassShare: math.NaN(), FrameShare: math.NaN(),
 		}
 		if p.Kind == demo.Relaxation {
 			q.Time, q.Frequency = x[0], math.NaN()
