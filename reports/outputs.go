@@ -8,7 +8,6 @@ import (
 	"phaselag/data"
 	"phaselag/fitting"
 	"phaselag/reports/figure"
-	"phaselag/reports/html"
 	"phaselag/reports/pdf"
 )
 
@@ -31,7 +30,7 @@ func outputs(r *fitting.Result) ([]file, error) {
 	if err != nil {
 		return nil, err
 	}
-	h, err := html.Bytes(doc)
+	h, err := htmlSheet(r, doc, nil)
 	if err != nil {
 		return nil, err
 	}
@@ -66,7 +65,7 @@ func Sheets(r *fitting.Result, set *data.Sheet) (asPDF, asHTML []byte, err error
 	if asPDF, err = pdf.Bytes(doc); err != nil {
 		return nil, nil, err
 	}
-	if asHTML, err = html.Bytes(doc); err != nil {
+	if asHTML, err = htmlSheet(r, doc, set); err != nil {
 		return nil, nil, err
 	}
 	return asPDF, asHTML, nil

@@ -35,7 +35,9 @@ func Write(w io.Writer, d figure.Document) error {
 }
 
 // Bytes returns d as one HTML file.
-func Bytes(d figure.Document) ([]byte, error) {
+func Bytes(d figure.Document) ([]byte, error) { return render(d, nil) }
+
+func render(d figure.Document, live *Live) ([]byte, error) {
 	m := &maker{}
 	data := struct {
 		Doc      figure.Document
@@ -44,7 +46,13 @@ func Bytes(d figure.Document) ([]byte, error) {
 		Sections []section
 		Running  string
 		Logo     template.URL
+		Policy   string // of the script; "" for none
+		Live     template.HTML
 	}{Doc: d, Style: template.CSS(style), Running: d.Running}
+	if live != nil {
+		data.Style += template.CSS(live.Style)
+		data.Policy, data.Live = live.policy(), live.elements()
+	}
 	if d.Logo != nil {
 		data.Logo = template.URL("data:image/png;base64," + base64.StdEncoding.EncodeToString(d.Logo))
 	}
