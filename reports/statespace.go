@@ -101,6 +101,9 @@ func StateSpaceModel(c *models.Compound, m *mount.Mount, kelvin, displacement, l
 	}
 	sort.Slice(order, func(a, b int) bool { return few.Times[order[a]] < few.Times[order[b]] })
 	out := &StateSpace{Phaselag: "state-space 1", Mount: m.Name, Compound: c.Compound.Name, Input: Port{"displacement", "m"}, Output: Port{"force", "N"}, Order: n}
+	if m.Rotates() {
+		out.Input, out.Output = Port{"angle", "rad"}, Port{"torque", "N·m"}
+	}
 	out.Valid.TemperatureC, out.Valid.DisplacementMM, out.Valid.FrequencyHz = celsius(kelvin), 1e3*displacement, [2]float64{lo, hi}
 	out.A, out.B, out.C = make([][]float64, n), make([][]float64, n), [][]float64{make([]float64, n)}
 	d := few.Equilibrium

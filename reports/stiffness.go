@@ -16,7 +16,7 @@ import (
 type StiffnessQuery struct {
 	Frequency    float64 // Hz
 	Temperature  float64 // K
-	Displacement float64 // m, single amplitude; NaN: the mount file's excitation
+	Displacement float64 // m, of a mount that rotates rad, single amplitude; NaN: the mount file's excitation
 }
 
 // OwnStrainNote says at which amplitude answers are given when none was asked
@@ -36,14 +36,15 @@ func OwnStrainNote(c *models.Compound) string {
 // own uncertainty are added for the stiffness and cancel in the ratio to the
 // reference condition.
 func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery, reference StiffnessQuery, extrapolate bool) (t table.Table, outside int, err error) {
+	u := unitsOf(m)
 	t = table.Table{Name: "stiffness 1", Columns: []table.Column{
 		{Key: "frequency_Hz", Heading: "f", Unit: "Hz"}, {Key: "temperature_C", Heading: "T", Unit: "°C"},
-		{Key: "displacement_amplitude_mm", Heading: "x", Unit: "mm"}, {Key: "direction"}, {Key: "static_load_N", Heading: "load", Unit: "N"},
+		{Key: u.amplitudeKey, Heading: u.amplitude, Unit: u.travel}, {Key: "direction"}, {Key: "static_load_N", Heading: "load", Unit: "N"},
 		{Key: "strain_amplitude_percent", Heading: "strain", Unit: "%", Digits: 3},
-		{Key: "storage_N_per_mm", Heading: "K'", Unit: "N/mm", Interval: "storage_U95_N_per_mm"}, {Key: "loss_N_per_mm", Heading: "K''", Unit: "N/mm", Interval: "loss_U95_N_per_mm"},
-		{Key: "magnitude_N_per_mm", Heading: "|K*|", Unit: "N/mm", Interval: "magnitude_U95_N_per_mm"}, {Key: "loss_factor", Heading: "η", Interval: "loss_factor_U95"},
-		{Key: "storage_U95_N_per_mm", Heading: "± K'", Unit: "N/mm"}, {Key: "loss_U95_N_per_mm", Heading: "± K''", Unit: "N/mm"},
-		{Key: "magnitude_U95_N_per_mm", Heading: "± |K*|", Unit: "N/mm"}, {Key: "loss_factor_U95", Heading: "± η"},
+		{Key: "storage_" + u.key, Heading: "K'", Unit: u.stiffness, Interval: "storage_U95_" + u.key}, {Key: "loss_" + u.key, Heading: "K''", Unit: u.stiffness, Interval: "loss_U95_" + u.key},
+		{Key: "magnitude_" + u.key, Heading: "|K*|", Unit: u.stiffness, Interval: "magnitude_U95_" + u.key}, {Key: "loss_factor", Heading: "η", Interval: "loss_factor_U95"},
+		{Key: "storage_U95_" + u.key, Heading: "± K'", Unit: u.stiffness}, {Key: "loss_U95_" + u.key, Heading: "± K''", Unit: u.stiffness},
+		{Key: "magnitude_U95_" + u.key, Heading: "± |K*|", Unit: u.stiffness}, {Key: "loss_factor_U95", Heading: "± η"},
 		{Key: "ratio_to_reference", Heading: "ratio", Interval: "ratio_U95"}, {Key: "ratio_U95", Heading: "± ratio"},
 		{Key: "domain"},
 	}}
@@ -53,7 +54,7 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 	t.Assumptions = append(t.Assumptions, spread)
 	if soft < hard {
 		t.Columns = append(t.Columns,
-			table.Column{Key: "magnitude_softest_N_per_mm", Heading: "softest", Unit: "N/mm", Digits: 3}, table.Column{Key: "magnitude_hardest_N_per_mm", Heading: "hardest", Unit: "N/mm", Digits: 3})
+			table.Column{Key: "magnitude_softest_" + u.key, Heading: "softest", Unit: u.stiffness, Digits: 3}, table.Column{Key: "magnitude_hardest_" + u.key, Heading: "hardest", Unit: u.stiffness, Digits: 3})
 	}
 	t.Assumptions = append(t.Assumptions, unstatedParts(c, m)...)
 	ref, err := mountAt(c, m, reference)
@@ -70,8 +71,8 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 			return table.Table{}, 0, err
 		}
 		row := []table.Cell{
-			table.Number(q.Frequency), table.Number(celsius(q.Temperature)), table.Number(1e3 * s.state.Displacement),
-			table.Text(m.Direction), table.Number(m.Mass * standardGravity), table.Number(100 * s.maxStrain()),
+			table.Number(q.Frequency), table.Number(celsius(q.Temperature)), table.Number(u.perRad * s.state.Displacement),
+			table.Text(m.Direction), table.Number(loadOf(m)), table.Number(100 * s.maxStrain()),
 		}
 		domain := "inside"
 		if out := s.inside(c); out != nil {
@@ -102,7 +103,7 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 			return s.half(c, f, rel)
 		}
 		own := s.ownU
-		per := func(x float64) table.Cell { return table.Number(x / 1e3) }
+		per := func(x float64) table.Cell { return table.Number(x * u.scale) }
 		row = append(row, per(real(k)), per(imag(k)), per(mag), table.Number(eta),
 			per(half(func(v complex128) float64 { return real(v) }, own*real(k))),
 			per(half(func(v complex128) float64 { return imag(v) }, own*imag(k))),
@@ -128,13 +129,36 @@ func StiffnessTable(c *models.Compound, m *mount.Mount, queries []StiffnessQuery
 // unstatedParts says what a designer would expect the numbers to hold and they do not.
 func unstatedParts(c *models.Compound, m *mount.Mount) []string {
 	var out []string
-	if math.IsNaN(m.Mass) {
+	if math.IsNaN(loadOf(m)) && !m.Rotates() {
 		out = append(out, "no static load is stated: what it does to the stiffness is left out")
 	}
 	if !slices.Contains(c.Uncertainty.Parameters, models.ParamPhase) {
 		out = append(out, "the common uncertainty of the phase was not stated with the measurements: the intervals of loss and loss factor are those of repeatability")
 	}
 	return out
+}
+
+// partUnits is how the numbers of a mount are shown: those of one that rotates are an
+// angle and N·m/rad.
+type partUnits struct {
+	amplitude, amplitudeKey, travel string
+	stiffness, key                  string
+	perRad, scale                   float64 // from SI
+}
+
+func unitsOf(m *mount.Mount) partUnits {
+	if m.Rotates() {
+		return partUnits{"angle", "angle_amplitude_deg", "°", "N·m/rad", "Nm_per_rad", 180 / math.Pi, 1}
+	}
+	return partUnits{"x", "displacement_amplitude_mm", "mm", "N/mm", "N_per_mm", 1e3, 1e-3}
+}
+
+// loadOf is the static load on all mounts together in N, NaN if not stated.
+func loadOf(m *mount.Mount) float64 {
+	if m.StaticForce > 0 {
+		return m.StaticForce
+	}
+	return m.Mass * standardGravity
 }
 
 // partCaution goes with every stiffness.
@@ -160,13 +184,17 @@ func mountAt(c *models.Compound, m *mount.Mount, q StiffnessQuery) (*mountState,
 	}
 	var s mount.State
 	var err error
+	moved, forced := m.Displaced, m.Forced
+	if m.Rotates() {
+		moved, forced = m.Twisted, m.Torqued
+	}
 	switch {
 	case !math.IsNaN(q.Displacement):
-		s, err = m.Displaced(material, q.Frequency, q.Temperature, q.Displacement)
+		s, err = moved(material, q.Frequency, q.Temperature, q.Displacement)
 	case !math.IsNaN(m.Excitation.Displacement):
-		s, err = m.Displaced(material, q.Frequency, q.Temperature, m.Excitation.Displacement)
+		s, err = moved(material, q.Frequency, q.Temperature, m.Excitation.Displacement)
 	case !math.IsNaN(m.Excitation.Force):
-		s, err = m.Forced(material, q.Frequency, q.Temperature, m.Excitation.Force)
+		s, err = forced(material, q.Frequency, q.Temperature, m.Excitation.Force)
 	default:
 		return nil, errors.New("no amplitude: state `excitation:` in the mount file, or --amplitude")
 	}
@@ -260,38 +288,4 @@ func (s *mountState) ratio(c *models.Compound, ref *mountState) (ratio, half flo
 	}
 	ratio = cmplx.Abs(s.value) / cmplx.Abs(ref.value)
 	return ratio, ratio * c.Quantile() * c.Deviation(g)
-}
-
-// StaticTable gives the static stiffness of a mount from the compound's static
-// and relaxation tests; it has no rows where there are none or where an element
-// was measured.
-func StaticTable(c *models.Compound, m *mount.Mount) (table.Table, error) {
-	t := table.Table{Name: "static-stiffness 1", Columns: []table.Column{
-		{Key: "source"}, {Key: "temperature_C", Heading: "T", Unit: "°C"}, {Key: "time_s", Heading: "t", Unit: "s"}, {Key: "strain_percent", Heading: "strain", Unit: "%"},
-		{Key: "stiffness_N_per_mm", Heading: "K static", Unit: "N/mm", Interval: "stiffness_U95_N_per_mm"}, {Key: "stiffness_U95_N_per_mm", Heading: "± K static", Unit: "N/mm"},
-		{Key: "deflection_mm", Heading: "deflection", Unit: "mm"},
-	}}
-	for _, e := range m.Elements {
-		if e.Measured != nil {
-			t.Assumptions = append(t.Assumptions, "no static stiffness: the dynamic measurement of element "+e.Name+" does not tell it")
-			return t, nil
-		}
-	}
-	for _, v := range c.Static {
-		g := complex(v.Modulus*1e6, 0)
-		s, err := m.Displaced(func(_, _, _ float64) complex128 { return g }, 1, 293.15, 1e-6)
-		if err != nil {
-			return table.Table{}, err
-		}
-		k := real(s.Stiffness)
-		deflection := math.NaN()
-		if m.Mass > 0 {
-			deflection = 1e3 * m.Mass * standardGravity / k
-		}
-		t.Rows = append(t.Rows, []table.Cell{
-			table.Text(v.Source), num(v.TemperatureC), num(v.Time), num(v.Strain),
-			table.Number(k / 1e3), table.Number(k / 1e3 * float64(v.U95) / v.Modulus), table.Number(deflection),
-		})
-	}
-	return t, nil
 }

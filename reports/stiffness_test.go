@@ -111,7 +111,7 @@ func TestStiffnessOutside(t *testing.T) {
 	if _, _, err := StiffnessTable(c, readMount(t, "elements:\n  pad: {shape: shear pad, area: 1200 mm2, thickness: 12 mm}\n"), []StiffnessQuery{ref}, ref, false); err == nil {
 		t.Error("no amplitude, and no error")
 	}
-	static, err := StaticTable(c, m)
+	static, err := StaticTable(c, m, StaticChoice{})
 	if err != nil || len(static.Rows) != 2 {
 		t.Fatalf("%v: %v", err, static.Rows)
 	}

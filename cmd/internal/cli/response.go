@@ -19,6 +19,7 @@ type responseOptions struct {
 	force, base, amplitude string
 	isolation              string
 	extrapolate            bool
+	static                 staticOptions
 	format                 string
 }
 
@@ -55,6 +56,7 @@ that people depend on stays with a qualified engineer and the codes in force.`,
 	cmd.Flags().StringVar(&o.amplitude, "amplitude", "", "amplitude held across the mounts")
 	cmd.Flags().StringVar(&o.isolation, "isolation", "", "isolation wished for, for example 80%: the natural frequency and stiffness it takes")
 	cmd.Flags().BoolVar(&o.extrapolate, "extrapolate", false, "answer outside the domain, marked")
+	o.static.flags(cmd)
 	formatFlag(cmd, &o.format)
 	return cmd
 }
@@ -131,6 +133,17 @@ func (a *app) response(o responseOptions) error {
 	}
 	if q.Drive, err = o.drive(m); err != nil {
 		return err
+	}
+	choice, err := o.static.choice(c)
+	if err != nil {
+		return err
+	}
+	m, notes, err := reports.UnderLoad(c, m, choice)
+	if err != nil {
+		return err
+	}
+	for _, n := range notes {
+		a.note(n)
 	}
 	r, err := reports.Respond(c, m, q)
 	if err != nil {

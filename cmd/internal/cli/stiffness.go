@@ -18,6 +18,7 @@ type stiffnessOptions struct {
 	frequency, temperature, amplitude string
 	reference                         [2]string
 	extrapolate                       bool
+	static                            staticOptions
 	format                            string
 }
 
@@ -47,8 +48,51 @@ that people depend on stays with a qualified engineer and the codes in force.`,
 	cmd.Flags().StringVar(&o.reference[0], "reference-frequency", "", "frequency of the reference condition (default: that of a measured element, else the first listed)")
 	cmd.Flags().StringVar(&o.reference[1], "reference-temperature", "", "temperature of the reference condition (default: that of a measured element, else the compound's reference temperature)")
 	cmd.Flags().BoolVar(&o.extrapolate, "extrapolate", false, "answer outside the domain, marked")
+	o.static.flags(cmd)
 	formatFlag(cmd, &o.format)
 	return cmd
+}
+
+// staticOptions choose where a static modulus comes from if no test has it.
+type staticOptions struct {
+	model, table string
+}
+
+func (o *staticOptions) flags(cmd *cobra.Command) {
+	cmd.Flags().StringVar(&o.model, "static-model", "", "static modulus from the model's relaxation at this time where no test has it, marked: 1h")
+	cmd.Flags().StringVar(&o.table, "hardness-table", "", "static modulus from a handbook table where neither test nor model has it: Lindley or Gent")
+}
+
+func (o staticOptions) choice(c *models.Compound) (out reports.StaticChoice, err error) {
+	if o.model != "" {
+		if out.ModelTime, err = unit.Parse(o.model, unit.Time); err != nil {
+			return out, hintedAt("--static-model", err)
+		}
+		if !(out.ModelTime > 0) {
+			return out, usagef("--static-model must be a time greater than zero")
+		}
+	}
+	if o.table != "" {
+		out.Table = mount.Table(o.table)
+		if out.Table != mount.Lindley && out.Table != mount.Gent {
+			return out, usagef("--hardness-table is Lindley or Gent")
+		}
+		if out.Hardness, err = unit.Parse(c.Compound.Hardness, unit.Hardness); err != nil {
+			return out, usagef("--hardness-table needs the compound's hardness, which is not stated")
+		}
+	}
+	return out, nil
+}
+
+// amplitudes reads displacements, or angles of a mount that rotates.
+func amplitudes(m *mount.Mount, text string) ([]float64, error) {
+	if text == "" {
+		return []float64{math.NaN()}, nil
+	}
+	if m.Rotates() {
+		return list("amplitude", text, unit.Angle)
+	}
+	return list("amplitude", text, unit.Length)
 }
 
 func (a *app) stiffness(o stiffnessOptions) error {
@@ -59,17 +103,23 @@ func (a *app) stiffness(o stiffnessOptions) error {
 	if err != nil {
 		return err
 	}
-	x := []float64{math.NaN()}
-	if o.amplitude != "" {
-		if x, err = list("amplitude", o.amplitude, unit.Length); err != nil {
-			return err
-		}
-	}
 	c, err := models.Open(o.file)
 	if err != nil {
 		return err
 	}
 	m, err := mount.Open(o.mount)
+	if err != nil {
+		return err
+	}
+	x, err := amplitudes(m, o.amplitude)
+	if err != nil {
+		return err
+	}
+	choice, err := o.static.choice(c)
+	if err != nil {
+		return err
+	}
+	m, notes, err := reports.UnderLoad(c, m, choice)
 	if err != nil {
 		return err
 	}
@@ -89,12 +139,15 @@ func (a *app) stiffness(o stiffnessOptions) error {
 	if err != nil {
 		return err
 	}
-	t.Assumptions = append(t.Assumptions, fmt.Sprintf("ratios are to %.4g Hz and %.4g °C", ref.Frequency, ref.Temperature-273.15))
+	t.Assumptions = append(append(t.Assumptions, notes...), fmt.Sprintf("ratios are to %.4g Hz and %.4g °C", ref.Frequency, ref.Temperature-273.15))
 	if err := a.answer(t, o.format); err != nil {
 		return err
 	}
 	if table.Format(o.format) == table.Terminal {
-		if err := a.static(c, m); err != nil {
+		if err := a.static(c, m, choice); err != nil {
+			return err
+		}
+		if err := a.heat(c, m, q); err != nil {
 			return err
 		}
 	}
@@ -104,8 +157,21 @@ func (a *app) stiffness(o stiffnessOptions) error {
 	return nil
 }
 
-func (a *app) static(c *models.Compound, m *mount.Mount) error {
-	s, err := reports.StaticTable(c, m)
+// heat writes how warm the mount gets, where its file has a thermal resistance.
+func (a *app) heat(c *models.Compound, m *mount.Mount, q []reports.StiffnessQuery) error {
+	t, err := reports.HeatTable(c, m, q)
+	if err != nil || len(t.Rows) == 0 {
+		return err
+	}
+	for _, note := range t.Assumptions {
+		a.note(note)
+	}
+	fmt.Fprintln(a.out)
+	return table.Write(a.out, table.Terminal, t)
+}
+
+func (a *app) static(c *models.Compound, m *mount.Mount, choice reports.StaticChoice) error {
+	s, err := reports.StaticTable(c, m, choice)
 	if err != nil {
 		return err
 	}
