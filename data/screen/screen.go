@@ -16,6 +16,7 @@ func Check(c *data.Campaign) []data.Finding {
 		units, statedLossFactor, swapped, duplicates,
 		temperatures, strains, falling, fewPoints,
 		drifts, repeats, softerWhenColder, overlap,
+		massNotCorrected, frameNotCorrected,
 		onlyOne, unstated,
 	} {
 		list = append(list, check(c)...)

@@ -15,7 +15,8 @@ func TestGoodLaboratoriesAreClean(t *testing.T) {
 	for seed := uint64(1); seed <= 20; seed++ {
 		clean(t, "HM-60", Check(campaign(t, demo.HM60(), demo.HM60Plan(), seed)))
 		clean(t, "gum", Check(campaign(t, demo.Gum(), demo.HM60Plan(), seed)))
-		clean(t, "narrow", Check(campaign(t, demo.Narrow(), demo.NarrowPlan(), seed)))
+		// Its glass of 60 MPa is one that no rubber has.
+		clean(t, "narrow", Check(campaign(t, demo.Narrow(), demo.NarrowPlan(), seed)), "frame-not-corrected")
 		clean(t, "liquid", Check(campaign(t, demo.Liquid(), demo.LiquidPlan(), seed)))
 		clean(t, "no superposition", Check(campaign(t, demo.Complex(), demo.IsothermPlan(), seed)))
 	}
