@@ -149,7 +149,7 @@ func Certificate(r *Release, set *data.Sheet, date time.Time) figure.Document {
 		if l.Reason != "" {
 			decision += ": " + l.Reason
 		}
-		grid.Rows = append(grid.Rows, []string{l.Property, l.Condition, value, plainUnit(l.Unit), span(l.Lower, l.Upper), span(l.AcceptLower, l.AcceptUpper), percentText(l.Conformity), decision})
+		grid.Rows = append(grid.Rows, []string{l.Property, l.Condition, value, plainUnit(l.Unit), span(l.Lower, l.Upper), span(l.AcceptLower, l.AcceptUpper), conforms(l.Conformity), decision})
 	}
 	notes := append([]string{sentence(ruleText(r.Specification))}, r.Notes...)
 	d.Sections = []figure.Section{
@@ -186,8 +186,8 @@ func span(lo, hi float64) string {
 	return short(lo) + " to " + short(hi)
 }
 
-// percentText is a probability for people, not rounded to certainty.
-func percentText(p float64) string {
+// conforms is a probability for people, not rounded to certainty.
+func conforms(p float64) string {
 	switch {
 	case math.IsNaN(p):
 		return "–"
