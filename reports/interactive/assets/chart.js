@@ -113,7 +113,11 @@ const phaselagChart = (() => {
     // mark shows the point that is read (with a text) and the typed one (without).
     function mark(list, active) {
       marks.replaceChildren();
-      for (const line of layer.querySelectorAll(".curve")) line.classList.toggle("active", active !== null && Number(line.dataset.curve) === active);
+      for (const line of layer.querySelectorAll(".curve")) {
+        const on = active !== null && Number(line.dataset.curve) === active;
+        line.classList.toggle("active", on);
+        if (on && line !== layer.lastChild) layer.append(line); // on top of the others
+      }
       if (drawn === null) return;
       const { sx, sy, right, bottom } = drawn;
       for (const m of list) {

@@ -116,10 +116,17 @@ const phaselagModel = (() => {
       return { value: w.value, rows: rows.map((row) => row(w)) };
     }
 
+    // deviation is ‖Lᵀg‖, gathered row by row as L is stored.
+    const u = new Float64Array(L.length);
     function deviation(g) {
-      const u = new Array(g.length).fill(0);
-      g.forEach((gi, i) => L[i].forEach((l, j) => { u[j] += l * gi; }));
-      return Math.sqrt(u.reduce((sum, x) => sum + x * x, 0));
+      u.fill(0);
+      for (let i = 0; i < L.length; i++) {
+        const row = L[i], gi = g[i];
+        for (let j = 0; j <= i; j++) u[j] += row[j] * gi;
+      }
+      let sum = 0;
+      for (let j = 0; j < u.length; j++) sum += u[j] * u[j];
+      return Math.sqrt(sum);
     }
 
     // answer has moduli and half-widths without a look at the domain.

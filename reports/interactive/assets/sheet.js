@@ -54,6 +54,7 @@
     refused.textContent = text ? text + (result.hint ? "; " + result.hint : "") : "";
     note.textContent = "";
     if (got.q) typed = { q: got.q, answer: text ? null : result };
+    else if (typed) typed.answer = null;
     if (text) return;
     find("at").textContent = `At ${say(got.q)}:`;
     for (const [i, row] of rows.entries()) {
@@ -84,15 +85,15 @@
       held: (q) => `at ${significant(q.frequency, 0)} Hz`,
     },
   };
-  let mode = modes.frequency, curves = [], active = null;
+  let mode = modes.frequency, curves = [], active = null, drawnFor = "";
   const shown = new Set(data.curves.keys());
   const readout = find("readout");
 
-  // points of a curve, 30 a decade and both ends, as far as the model answers.
+  // points of a curve, 16 a decade and both ends, as far as the model answers.
   function sample(index) {
     const T = data.curves[index].temperature_C, [lo, hi] = mode.limits(T), out = [];
     if (!(lo < hi)) return out;
-    const n = Math.max(8, Math.ceil(30 * Math.log10(hi / lo)));
+    const n = Math.max(8, Math.ceil(16 * Math.log10(hi / lo)));
     for (let i = 0; i <= n; i++) {
       const x = i === 0 ? lo : i === n ? hi : lo * (hi / lo) ** (i / n);
       const m = compound.modulus(mode.at(T, x));
@@ -114,7 +115,17 @@
     return log ? [lo / 1.1, hi * 1.1] : [Math.max(0, lo - 0.06 * (hi - lo)), hi + 0.06 * (hi - lo)];
   }
 
+  // held is what the curves hang on beside their temperatures.
+  const held = () => { const q = mode.at(0, 1); return mode === modes.frequency ? q.strain : q.frequency; };
+
+  // follow takes over what was typed: new curves where they change, else the cross alone.
+  function follow() {
+    if (String(held()) !== drawnFor) draw();
+    else mark();
+  }
+
   function draw() {
+    drawnFor = String(held());
     curves = [];
     const missing = [];
     for (const [index, c] of data.curves.entries()) {
@@ -126,7 +137,7 @@
     const q = curves.length > 0 ? mode.at(data.curves[curves[0].index].temperature_C, curves[0].points[0].x) : { frequency: 10, strain: NaN };
     find("held").textContent = [`Curves ${mode.held(q)} with 95 % bands`, missing.length > 0 ? `outside the domain here: ${missing.join(", ")}` : ""].filter(Boolean).join("; ").replace("  ", " ") + ".";
     for (const [i, row] of rows.entries()) {
-      const log = mode === modes.frequency && row.unit !== "";
+      const log = row.unit !== "";
       charts[i].draw({
         x: { range: mode.range(), log: mode.log, label: mode.label },
         y: { range: yRange(row, log), log, label: row.unit === "" ? row.name : `${row.name} (${row.unit})` },
@@ -155,7 +166,7 @@
   function mark() {
     readout.textContent = active === null ? readout.dataset.idle : `${say(active.q)}: ` + rows.map((row) => {
       const p = printed(active.m, row);
-      return `${row.short} ${p.value} ± ${p.half}${row.unit ? " " + row.unit : ""}`;
+      return `${row.short} ${p.value} ± ${p.half}${row.unit ? " " + row.unit : ""}`.replace(/ /g, "\u00a0");
     }).join("; ");
     for (const [i, row] of rows.entries()) {
       const list = [];
@@ -198,7 +209,7 @@
       inputs.temperature.value = g(compound.celsius(active.q.temperature)) + " °C";
       if (inputs.strain) inputs.strain.value = Number.isNaN(active.q.strain) ? "" : g(Number((100 * active.q.strain).toPrecision(12))) + " %";
       answer();
-      mark();
+      follow();
     },
     leave: () => { active = null; mark(); },
   };
@@ -224,8 +235,8 @@
   for (const radio of root.querySelectorAll('input[name="live-mode"]')) {
     radio.addEventListener("change", () => { mode = modes[radio.value]; active = null; draw(); });
   }
-  find("form").addEventListener("submit", (event) => { event.preventDefault(); answer(); draw(); });
-  for (const input of Object.values(inputs)) if (input) input.addEventListener("input", () => { answer(); draw(); });
+  find("form").addEventListener("submit", (event) => { event.preventDefault(); answer(); follow(); });
+  for (const input of Object.values(inputs)) if (input) input.addEventListener("input", () => { answer(); follow(); });
 
   // A start inside the domain: 10 Hz at the reference temperature where it is.
   const start = { frequency: 10, temperature: data.compound.reference_temperature_C + zeroC, strain: NaN };
