@@ -66,6 +66,6 @@ func markup(c *models.Compound) ([]byte, error) {
 		Symbol string
 		Sweeps bool // the amplitude can be drawn
 		Strain bool // an amplitude can be asked for
-	}{symbol(c), c.Amplitude.Law != models.AmplitudeNone && c.Domain.Strain != nil && c.Domain.Strain[0] > 0, c.Domain.Strain != nil})
+	}{symbol(c), c.Amplitude.Law != models.AmplitudeNone && c.Domain.Strain != nil && c.Domain.Strain[0] > 0 && c.Domain.Strain[1] > c.Domain.Strain[0], c.Domain.Strain != nil})
 	return b.Bytes(), err
 }

@@ -81,10 +81,10 @@ func TestNothingSlipsIntoTheScript(t *testing.T) {
 // driver acts on the page in a frame of a width in CSS pixels and notes what is seen.
 const driver = `
 const found = { typed: [], read: [], keys: [], widths: [], clipped: [] };
-async function frame(width, act) {
+async function frame(width, act, path = "/sheet") {
   const f = document.createElement("iframe");
   f.style = "border:0;width:" + width + "px;height:1200px";
-  f.src = "/sheet";
+  f.src = path;
   const loaded = new Promise((done) => { f.onload = done; });
   document.body.append(f);
   await loaded;
