@@ -37,3 +37,10 @@ func byFrequency(points []data.Point) []data.Point {
 	slices.SortStableFunc(points, func(a, b data.Point) int { return cmp.Compare(a.Frequency, b.Frequency) })
 	return points
 }
+
+// byStrain returns the points with a known strain sorted by it.
+func byStrain(points []data.Point) []data.Point {
+	points = slices.DeleteFunc(slices.Clone(points), func(p data.Point) bool { return !(p.Strain > 0) })
+	slices.SortStableFunc(points, func(a, b data.Point) int { return cmp.Compare(a.Strain, b.Strain) })
+	return points
+}

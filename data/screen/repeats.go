@@ -7,9 +7,8 @@ import (
 	"phaselag/data"
 )
 
-// What repeats may differ by: 3 % of the modulus and 1° of the loss angle; five
-// times as much is severe. Two specimens of 1.5 % uncertainty of geometry stay
-// below.
+// What repeats may differ by: 3 % of the modulus and 1° of the loss angle, or what
+// temperature and geometry explain if that is more; five times 3 % or 1° is severe.
 const (
 	repeatModulus = 0.03
 	repeatAngle   = 1.0
@@ -17,24 +16,24 @@ const (
 
 // repeats finds runs of one kind at one condition that disagree: by more than
 // 3 % of the modulus or 1° of the loss angle, in the median over what they have
-// in common. Two runs repeat each other when they are runs of the same kind,
+// in common, and more than
+//
+//	√2·√((3·u_g)² + (4·u_T·d ln|G*|/dT)²),     √2·4·u_T·dδ/dT,
+//
+// with the stated scatter of temperature u_T (0.3 K where none is), and between
+// different specimens or mountings the stated uncertainty of geometry u_g (1.5 %). Two
+// runs repeat each other when they are runs of the same kind,
 // their temperatures are within half a kelvin and their strains within 5 %; the
 // points compared agree in frequency (1 %), or in time, or in the strain of a
 // strain sweep. Of a temperature sweep nothing repeats.
 func repeats(c *data.Campaign) (list []data.Finding) {
-	type run struct {
-		test string
-		kind data.Kind
-		data.Run
-		points []data.Point
-	}
-	var runs []run
-	for _, t := range c.Tests {
+	var runs []pass
+	for i, t := range c.Tests {
 		if t.Kind == data.TemperatureSweep || t.Kind == data.Static {
 			continue
 		}
-		for _, r := range t.Runs {
-			runs = append(runs, run{t.Name, t.Kind, r, used(r)})
+		for j, r := range t.Runs {
+			runs = append(runs, pass{t, i, j, r, used(r)})
 		}
 	}
 	type disagreement struct {
@@ -47,28 +46,37 @@ func repeats(c *data.Campaign) (list []data.Finding) {
 	pairs := map[string]int{}
 	for i, b := range runs {
 		for _, a := range runs[:i] {
-			if a.kind != b.kind || !(math.Abs(a.Temperature-b.Temperature) <= 0.5) ||
-				!alike(a.Frequency, b.Frequency, 0.01) || !alike(a.Strain, b.Strain, 0.05) {
+			test := b.test.Name
+			if a.test.Kind != b.test.Kind || !(math.Abs(a.run.Temperature-b.run.Temperature) <= 0.5) ||
+				!alike(a.run.Frequency, b.run.Frequency, 0.01) || !alike(a.run.Strain, b.run.Strain, 0.05) {
 				continue
 			}
-			ratios, turns, common := compare(a.kind, a.points, b.points)
+			ratios, turns, common := compare(a.test.Kind, a.relevant, b.relevant)
 			if len(ratios) == 0 {
 				continue
 			}
-			pairs[b.test]++
+			pairs[test]++
 			d := disagreement{ratio: median(ratios) - 1, turn: median(turns)}
-			if math.Abs(d.ratio) <= repeatModulus && !(math.Abs(d.turn) > repeatAngle) {
+			size, turn := temperatureSlope(runs, a)
+			geometry := 0.0
+			if a.test.Specimen != b.test.Specimen || a.test.Mounting != b.test.Mounting {
+				geometry = geometryUncertainty(c)
+			}
+			kelvin := 4 * temperatureScatter(c)
+			modulusBar := math.Max(repeatModulus, math.Sqrt2*math.Hypot(3*geometry, kelvin*size))
+			angleBar := math.Max(repeatAngle, math.Sqrt2*kelvin*turn)
+			if math.Abs(d.ratio) <= modulusBar && !(math.Abs(d.turn) > angleBar) {
 				continue
 			}
-			d.text = fmt.Sprintf("%s against %s: |%s*| %+.2g %%", b.Name, a.Name, symbol(c), 100*d.ratio)
+			d.text = fmt.Sprintf("%s against %s: |%s*| %+.2g %%", b.run.Name, a.run.Name, symbol(c), 100*d.ratio)
 			if !math.IsNaN(d.turn) {
 				d.text += fmt.Sprintf(", loss angle %+.2g°", d.turn)
 			}
-			if len(found[b.test]) == 0 {
-				tests = append(tests, b.test)
+			if len(found[test]) == 0 {
+				tests = append(tests, test)
 			}
-			found[b.test] = append(found[b.test], d)
-			points[b.test] = append(points[b.test], common...)
+			found[test] = append(found[test], d)
+			points[test] = append(points[test], common...)
 		}
 	}
 	for _, test := range tests {
@@ -122,4 +130,13 @@ func compare(kind data.Kind, a, b []data.Point) (ratios, turns []float64, common
 		}
 	}
 	return ratios, turns, common
+}
+
+// geometryUncertainty returns the stated relative standard uncertainty of a specimen's
+// geometry, 1.5 % where none is.
+func geometryUncertainty(c *data.Campaign) float64 {
+	if u := c.Uncertainty.Geometry; u > 0 {
+		return u
+	}
+	return 0.015
 }

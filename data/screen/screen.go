@@ -13,11 +13,12 @@ import (
 func Check(c *data.Campaign) []data.Finding {
 	var list []data.Finding
 	for _, check := range []func(*data.Campaign) []data.Finding{
-		units, statedLossFactor, swapped, duplicates,
-		temperatures, strains, falling, fewPoints,
-		drifts, repeats, softerWhenColder, overlap,
-		massNotCorrected, frameNotCorrected,
-		onlyOne, unstated,
+		units, statedLossFactor, viscosities, swapped, duplicates, copies, outOfOrder,
+		conflictingModuli, conflictingAmplitudes, headingAgainstDeformation,
+		temperatures, strains, beyondLinear, falling, fewPoints,
+		drifts, trends, contactLost, selfHeating, firstRunSoftening, repeats, outlyingRepeats,
+		softerWhenColder, overlap, massNotCorrected, frameNotCorrected,
+		onlyOne, unstated, deformationUnstated,
 	} {
 		list = append(list, check(c)...)
 	}

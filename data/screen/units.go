@@ -3,6 +3,7 @@ package screen
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"phaselag/data"
 )
@@ -15,6 +16,51 @@ const (
 	highestModulus = 10e9
 	lowestModulus  = 10e3
 )
+
+// What a rubber shows from its softest to its glass, E or G (common practice, no
+// source).
+const (
+	leastExpected    = 0.1e6
+	greatestExpected = 3000e6
+)
+
+// rightUnit names the units in which all of a test's numbers would lie within what a
+// rubber shows, for the end of a remedy.
+func rightUnit(t data.Test) string {
+	stated := ""
+	for _, c := range t.Columns {
+		if strings.Contains(c.Quantity, "modulus") && stated == "" {
+			stated = c.Unit
+		}
+	}
+	size, ok := pressures[stated]
+	if !ok {
+		stated, size = "Pa", 1
+	}
+	low, high := math.Inf(1), 0.0
+	for _, r := range t.Runs {
+		for _, p := range used(r) {
+			low, high = math.Min(low, magnitude(p)), math.Max(high, magnitude(p))
+		}
+	}
+	var right []string
+	for _, u := range []string{"Pa", "kPa", "MPa", "GPa", "psi", "dyn/cm²", "kgf/cm²"} {
+		f := pressures[u] / size
+		if u != stated && low*f >= leastExpected && high*f <= greatestExpected {
+			right = append(right, fmt.Sprintf("read as %s the moduli would be %s to %s", u, modulus(low*f), modulus(high*f)))
+		}
+	}
+	if len(right) == 0 {
+		return "; no usual unit makes all of them moduli of a rubber"
+	}
+	return "; " + strings.Join(right, ", ")
+}
+
+// pressures are the usual units in Pa.
+var pressures = map[string]float64{
+	"Pa": 1, "kPa": 1e3, "MPa": 1e6, "N/mm²": 1e6, "N/mm2": 1e6, "GPa": 1e9, "psi": 6894.757293168, "dyn/cm²": 0.1, "dyn/cm2": 0.1,
+	"kgf/cm²": 98066.5, "kgf/cm2": 98066.5,
+}
 
 // units finds numbers that a wrong unit explains best.
 func units(c *data.Campaign) (list []data.Finding) {
@@ -39,7 +85,7 @@ func units(c *data.Campaign) (list []data.Finding) {
 				Code: "modulus-too-high", Severity: data.Severe, Test: t.Name, Rows: data.Places(high),
 				Evidence: fmt.Sprintf("moduli up to %s; no polymer's glass is stiffer than a few GPa", modulus(top)),
 				Cause:    "a wrong unit, Pa read as kPa or MPa for example",
-				Remedy:   "look at the column's unit; state it in columns",
+				Remedy:   "look at the column's unit; state it in columns" + rightUnit(t),
 			})
 		}
 		if n > 0 && top < lowestModulus {
@@ -47,7 +93,7 @@ func units(c *data.Campaign) (list []data.Finding) {
 				Code: "modulus-too-low", Severity: data.Note, Test: t.Name,
 				Evidence: fmt.Sprintf("no modulus of the test is above %s; solid rubber begins near 0.1 MPa", modulus(top)),
 				Cause:    "a liquid or a gel, or a wrong unit, MPa read as Pa for example",
-				Remedy:   "look at the column's unit if it is a rubber",
+				Remedy:   "look at the column's unit if it is a rubber" + rightUnit(t),
 			})
 		}
 		if len(large) > 0 {
