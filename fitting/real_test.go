@@ -140,6 +140,41 @@ tests:
 	}
 }
 
+// TestFoamGroups compares the two dose groups of the foam as batches (the same source).
+// The loss factors of both peak between the steps at 25 and 35 °C, and the group with the
+// X-ray dose is no further away than the steps are apart; nothing is published on the
+// shift itself, so that only these bounds are held.
+func TestFoamGroups(t *testing.T) {
+	of := func(group string) *Result {
+		return realCampaign(t, `
+campaign: vinyl-nitrile foam
+compound: {name: VN foam, cellular: true}
+tests:
+  - kind: temperature sweep
+    file: `+shared(t, "foam-temperature-steps", "temperature-steps.csv")+`
+    rows: {dose_group: `+group+`}
+    deformation: compression
+`)
+	}
+	s, f, err := LossPeaks(of("0DA"), of("1DA"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Logf("at %.4g Hz: peaks at %.2f ± %.2f and %.2f ± %.2f °C, shift %.2f ± %.2f K (p %.3g), heights %.3f and %.3f, ratio %.3f ± %.3f; one shape for both: p %.2g",
+		f, s.A.T, s.A.U95, s.B.T, s.B.U95, s.DT, s.U95, s.P, s.A.Height, s.B.Height, s.Ratio, s.RatioU, s.SameShape)
+	if math.Abs(f-10/(2*math.Pi)) > 1e-3 {
+		t.Errorf("the frequency is %g Hz, not 10 rad/s", f)
+	}
+	for _, p := range []float64{s.A.T, s.B.T} {
+		if p < 25 || p > 35 {
+			t.Errorf("a peak at %.2f °C", p)
+		}
+	}
+	if math.Abs(s.A.Height-0.526) > 0.01 || !(s.U95 > 0 && s.U95 < 5) || math.Abs(s.DT) > 5 {
+		t.Errorf("height %.3f, shift %.2f ± %.2f K", s.A.Height, s.DT, s.U95)
+	}
+}
+
 // TestPolyisobutylene fits the relaxation modulus of polyisobutylene at 25 °C
 // over 17 decades of time (Catsiff and Tobolsky 1955, digitised from Brinson
 // and Brinson, Polymer Engineering Science and Viscoelasticity, figs. 7.18 and
