@@ -17,9 +17,9 @@ import (
 //	S   = mean r²/(0.5 %)² + mean q²/(0.3°)²,
 //
 // with a interpolated and at least six rows in common. The shift that is not
-// zero is claimed where S falls to a quarter, is below 6 (noise alone gives near 3 and
-// a kelvin or two between the runs a little more), and is at least 3 below that of the
-// shift 0. Runs are compared whose temperatures are within 2 K and whose frequencies
+// zero is claimed where S falls by half and more, is below 6 (noise alone gives near 3
+// and a kelvin or two between the runs a little more), and the sum of squares over the
+// common rows by 40. A factor of √2 shows only in curved sweeps. Runs are compared whose temperatures are within 2 K and whose frequencies
 // within a factor of 1.5. Severe: it is the second source that a claim needs. Own rule.
 func conflictingAmplitudes(c *data.Campaign) (list []data.Finding) {
 	type sweep struct {
@@ -41,17 +41,17 @@ func conflictingAmplitudes(c *data.Campaign) (list []data.Finding) {
 				continue
 			}
 			pa, pb := byStrain(used(a.run)), byStrain(used(b.run))
-			none, ok := misfitAtShift(pa, pb, 0)
+			none, rows, ok := misfitAtShift(pa, pb, 0)
 			if !ok {
 				continue
 			}
 			best, shift := none, 0.0
 			for _, k := range []float64{1, -1, 2, -2, 3, -3} {
-				if s, ok := misfitAtShift(pa, pb, k*half); ok && s < best {
-					best, shift = s, k*half
+				if s, n, ok := misfitAtShift(pa, pb, k*half); ok && s < best {
+					best, shift, rows = s, k*half, min(n, rows)
 				}
 			}
-			if shift == 0 || best > none/4 || best > 6 || none-best < 3 {
+			if shift == 0 || best > none/2 || best > 6 || float64(rows)*(none-best) < 40 {
 				continue
 			}
 			// y_b(x) = y_a(x + s): b's strains are too small by e^s, or a's too large.
@@ -72,9 +72,9 @@ func conflictingAmplitudes(c *data.Campaign) (list []data.Finding) {
 	return list
 }
 
-// misfitAtShift returns S; ok is false where fewer than six rows of b meet the curve
+// misfitAtShift returns S and the number of common rows; ok is false where fewer than six rows of b meet the curve
 // of a.
-func misfitAtShift(a, b []data.Point, shift float64) (s float64, ok bool) {
+func misfitAtShift(a, b []data.Point, shift float64) (s float64, rows int, ok bool) {
 	var r, q []float64
 	for _, p := range b {
 		x := math.Log(p.Strain) + shift
@@ -90,11 +90,11 @@ func misfitAtShift(a, b []data.Point, shift float64) (s float64, ok bool) {
 		}
 	}
 	if len(r) < 6 {
-		return 0, false
+		return 0, 0, false
 	}
 	m := mean(r)
 	for i := range r {
 		s += ((r[i]-m)*(r[i]-m)/(0.005*0.005) + q[i]*q[i]/(0.3*0.3)) / float64(len(r))
 	}
-	return s, true
+	return s, len(r), true
 }

@@ -3,6 +3,7 @@ package screen
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"phaselag/data"
 )
@@ -37,7 +38,7 @@ func selfHeating(c *data.Campaign) (list []data.Finding) {
 		var warm, expected []data.Point
 		var worst data.Finding
 		rise, fear := 0.0, 0.0
-		for _, r := range t.Runs {
+		for _, r := range continued(t) {
 			points := used(r)
 			var q, kelvin, k []float64
 			for i, p := range points {
@@ -82,6 +83,34 @@ func selfHeating(c *data.Campaign) (list []data.Finding) {
 		}
 	}
 	return list
+}
+
+// continued returns a test's runs, those drawn together that a jump of temperature alone
+// parted: what is swept goes on in the same direction by at most two of its usual
+// steps, and the temperature is less than 10 K off.
+func continued(t data.Test) (runs []data.Run) {
+	for _, r := range t.Runs {
+		points := used(r)
+		if n := len(runs) - 1; n >= 0 && len(points) > 0 {
+			before := runs[n].Points
+			if k := len(before); k >= 3 {
+				last := before[k-1]
+				var steps []float64
+				for i := 1; i < k; i++ {
+					steps = append(steps, abscissa(t.Kind, before[i])-abscissa(t.Kind, before[i-1]))
+				}
+				usual, next := median(steps), abscissa(t.Kind, points[0])-abscissa(t.Kind, last)
+				onward := usual != 0 && next/usual > 0 && next/usual <= 2
+				if onward && math.Abs(points[0].Temperature-last.Temperature) < 10 && (t.Kind == data.FrequencySweep || alike(points[0].Frequency, last.Frequency, 0.01)) {
+					runs[n].Points = append(slices.Clone(before), points...)
+					continue
+				}
+			}
+		}
+		r.Points = points
+		runs = append(runs, r)
+	}
+	return runs
 }
 
 // power returns the power that is dissipated in a volume, W/m³.

@@ -71,9 +71,9 @@ func trendOf(kind data.Kind, points []data.Point) (drift, u float64, ok bool) {
 	if !(span(x) > 0) || math.Abs(rankCorrelation(x, k)) > 0.9 {
 		return 0, 0, false
 	}
-	middle := mean(x)
+	middle, width := mean(x), span(x)
 	for i := range x {
-		x[i] = (x[i] - middle) / span(x)
+		x[i] = (x[i] - middle) / width
 	}
 	l, fits := regress(y, ones(n), x, times(x, x), times(x, times(x, x)), k)
 	if !fits || !(l.u[4] > 0) {
