@@ -19,7 +19,8 @@ import (
 // with a interpolated and at least six rows in common. The shift that is not
 // zero is claimed where S falls by half and more, is below 6 (noise alone gives near 3
 // and a kelvin or two between the runs a little more), and the sum of squares over the
-// common rows by 40. A factor of √2 shows only in curved sweeps. Runs are compared whose temperatures are within 2 K and whose frequencies
+// common rows by 40. Both sweeps must change by 8 % at least: a gum's flat ones can be
+// moved at will. A factor of √2 shows only in curved sweeps. Runs are compared whose temperatures are within 2 K and whose frequencies
 // within a factor of 1.5. Severe: it is the second source that a claim needs. Own rule.
 func conflictingAmplitudes(c *data.Campaign) (list []data.Finding) {
 	type sweep struct {
@@ -41,6 +42,9 @@ func conflictingAmplitudes(c *data.Campaign) (list []data.Finding) {
 				continue
 			}
 			pa, pb := byStrain(used(a.run)), byStrain(used(b.run))
+			if !curved(pa) || !curved(pb) {
+				continue
+			}
 			none, rows, ok := misfitAtShift(pa, pb, 0)
 			if !ok {
 				continue
@@ -97,4 +101,13 @@ func misfitAtShift(a, b []data.Point, shift float64) (s float64, rows int, ok bo
 		s += ((r[i]-m)*(r[i]-m)/(0.005*0.005) + q[i]*q[i]/(0.3*0.3)) / float64(len(r))
 	}
 	return s, len(r), true
+}
+
+// curved reports whether |G*| of a strain sweep changes by more than 8 %.
+func curved(points []data.Point) bool {
+	var y []float64
+	for _, p := range points {
+		y = append(y, math.Log(magnitude(p)))
+	}
+	return span(y) > 0.08
 }
