@@ -191,9 +191,9 @@ func conforms(p float64) string {
 	switch {
 	case math.IsNaN(p):
 		return "–"
-	case p > 0.999 && p < 1:
+	case p > 0.999:
 		return "> 99.9"
-	case p < 0.001 && p > 0:
+	case p < 0.001:
 		return "< 0.1"
 	}
 	return short(roundTo(100*p, 3))

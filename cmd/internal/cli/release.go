@@ -1,0 +1,133 @@
+package cli
+
+import (
+	"errors"
+	"fmt"
+	"io/fs"
+	"os"
+	"path/filepath"
+	"time"
+
+	"github.com/spf13/cobra"
+
+	"phaselag/data"
+	"phaselag/models"
+	"phaselag/reports"
+	"phaselag/reports/html"
+	"phaselag/reports/pdf"
+	"phaselag/reports/table"
+)
+
+type releaseOptions struct {
+	registerOptions
+	specification, settings, out string
+}
+
+func (a *app) batchReleaseCmd() *cobra.Command {
+	var o releaseOptions
+	cmd := &cobra.Command{
+		Use:   "release BATCH --specification FILE",
+		Short: "Hold a batch against a specification: accepted, rejected or undecided, with a certificate",
+		Long: `release holds the values of a batch against the limits of a specification file, with
+guard bands: accepted where a value keeps its uncertainty from the limits, rejected where
+it lies beyond them by as much, undecided between (JCGM 106, ISO 14253-1).
+
+BATCH is a compound file, the folder of a result, or a registered batch. With --out it
+writes the certificate as NAME.pdf and NAME.html. The exit code is 0 only for an accepted
+batch.`,
+		Example: `  phaselag batch release hm60 --specification release.yaml --out HM-60-2611-02`,
+		Args:    exactly("BATCH"),
+		RunE: func(_ *cobra.Command, args []string) error {
+			if o.specification == "" {
+				return usagef("--specification is missing")
+			}
+			return a.release(args[0], o)
+		},
+	}
+	o.flags(cmd)
+	cmd.Flags().StringVar(&o.specification, "specification", "", "specification file (YAML, required)")
+	cmd.Flags().StringVar(&o.settings, "settings", "", "settings file of datasheets: laboratory, signatories, logo, paper")
+	cmd.Flags().StringVar(&o.out, "out", "", "path and name of the certificate's files without extension")
+	return cmd
+}
+
+// compound finds the compound of a batch: a compound file, the folder of a result, or a
+// registered batch.
+func (o *registerOptions) compound(name string) (*models.Compound, error) {
+	info, err := os.Stat(name)
+	switch {
+	case err == nil && info.IsDir():
+		if _, err := reports.ReadResultDir(name); err != nil {
+			return nil, hinted("characterize again", "%v", err)
+		}
+		return models.Open(filepath.Join(name, "compound.yaml"))
+	case err == nil:
+		return models.Open(name)
+	case !errors.Is(err, fs.ErrNotExist):
+		return nil, err
+	}
+	r, err := o.open(true)
+	if err != nil {
+		return nil, hinted("name a compound file, the folder of a result, or a registered batch (--register)", "no file and no register for %q", name)
+	}
+	defer r.Close()
+	e, err := entry(r, name)
+	if err != nil {
+		return nil, err
+	}
+	return models.Read(e.File)
+}
+
+func (a *app) release(name string, o releaseOptions) error {
+	spec, err := data.OpenSpecification(o.specification)
+	if err != nil {
+		return err
+	}
+	var set *data.Sheet
+	if o.settings != "" {
+		if set, err = data.OpenSheet(o.settings); err != nil {
+			return err
+		}
+	}
+	c, err := o.compound(name)
+	if err != nil {
+		return err
+	}
+	r := reports.ReleaseOf(c, spec, func(l data.Limit) reports.Found { return reports.ValueOf(c, l) })
+	return a.conclude(r, set, o)
+}
+
+// conclude prints a release and writes its certificate.
+func (a *app) conclude(r *reports.Release, set *data.Sheet, o releaseOptions) error {
+	if o.out != "" {
+		doc := reports.Certificate(r, set, time.Time{})
+		p, err := pdf.Bytes(doc)
+		if err != nil {
+			return err
+		}
+		h, err := html.Bytes(doc)
+		if err != nil {
+			return err
+		}
+		if err := writeWhole(o.out+".pdf", p); err != nil {
+			return err
+		}
+		if err := writeWhole(o.out+".html", h); err != nil {
+			return err
+		}
+		fmt.Fprintf(a.err, "written: %s.pdf, %s.html\n", o.out, o.out)
+	}
+	if err := a.answer(reports.ReleaseTable(r), o.format); err != nil {
+		return err
+	}
+	if table.Format(o.format) == table.Terminal {
+		fmt.Fprintf(a.out, "\nbatch %s: %s\n", r.Batch, r.Decision)
+	}
+	for _, n := range r.Notes {
+		a.note(n)
+	}
+	if r.Decision != reports.Accepted {
+		return errNo
+	}
+	return nil
+}
