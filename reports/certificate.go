@@ -7,6 +7,7 @@ import (
 	"time"
 
 	"phaselag/data"
+	"phaselag/fitting/quality"
 	"phaselag/reports/figure"
 	"phaselag/reports/table"
 )
@@ -18,21 +19,10 @@ type Release struct {
 	Basis                   string // "full characterization" or "short release test of 15 points"
 	Specification           *data.Specification
 	Lines                   []ReleaseLine
-	Decision                Decision
+	Decision                quality.Verdict
 	Notes                   []string
 	Inputs                  []string // "file, SHA-256 …"
 }
-
-// Decision is the answer for one limit, or for a batch.
-type Decision string
-
-// The decisions. NotDecided stands where a value could not be had.
-const (
-	Accepted   Decision = "accepted"
-	Rejected   Decision = "rejected"
-	Undecided  Decision = "undecided"
-	NotDecided Decision = "not decided"
-)
 
 // ReleaseLine is one limit with what was found. Numbers are in Unit; NaN where there is
 // none.
@@ -42,23 +32,23 @@ type ReleaseLine struct {
 	Lower, Upper              float64 // the limits
 	AcceptLower, AcceptUpper  float64 // the limits less their guard bands
 	Conformity                float64 // probability that the true value keeps the limits
-	Decision                  Decision
+	Decision                  quality.Verdict
 	Reason                    string // why nothing is decided, "" otherwise
 }
 
 // Overall is accepted if all lines are, rejected if one is, undecided otherwise.
-func Overall(lines []ReleaseLine) Decision {
-	out := Accepted
+func Overall(lines []ReleaseLine) quality.Verdict {
+	out := quality.Accepted
 	for _, l := range lines {
 		switch {
-		case l.Decision == Rejected:
-			return Rejected
-		case l.Decision != Accepted:
-			out = Undecided
+		case l.Decision == quality.Rejected:
+			return quality.Rejected
+		case l.Decision != quality.Accepted:
+			out = quality.Undecided
 		}
 	}
 	if len(lines) == 0 {
-		return Undecided
+		return quality.Undecided
 	}
 	return out
 }
@@ -108,19 +98,19 @@ func Certificate(r *Release, set *data.Sheet, date time.Time) figure.Document {
 		d.Paper = figure.Letter
 	}
 	d.Author, _, _ = strings.Cut(set.Laboratory, "\n")
-	grade := map[Decision]figure.Grade{Accepted: figure.Note, Rejected: figure.Severe}[r.Decision]
+	grade := map[quality.Verdict]figure.Grade{quality.Accepted: figure.Note, quality.Rejected: figure.Severe}[r.Decision]
 	if grade == "" {
 		grade = figure.Doubt
 	}
-	counts := map[Decision]int{}
+	counts := map[quality.Verdict]int{}
 	for _, l := range r.Lines {
 		counts[l.Decision]++
 	}
-	text := fmt.Sprintf("%d of %d limits are kept beyond doubt", counts[Accepted], len(r.Lines))
-	if n := counts[Rejected]; n > 0 {
+	text := fmt.Sprintf("%d of %d limits are kept beyond doubt", counts[quality.Accepted], len(r.Lines))
+	if n := counts[quality.Rejected]; n > 0 {
 		text += fmt.Sprintf(", %d broken beyond doubt", n)
 	}
-	if n := counts[Undecided] + counts[NotDecided]; n > 0 {
+	if n := counts[quality.Undecided] + counts[quality.NotDecided]; n > 0 {
 		text += fmt.Sprintf(", %d cannot be decided with the uncertainty of these tests", n)
 	}
 	if r.Specification.Rule == data.Simple {

@@ -9,20 +9,20 @@ import (
 
 	"phaselag/data"
 	"phaselag/data/unit"
-	"phaselag/fitting/decision"
+	"phaselag/fitting/quality"
 	"phaselag/models"
 )
 
-// Found is a value with its interval, or why there is none. Value and U95 in SI, U the
-// standard uncertainty, Freedom its degrees of freedom (NaN or infinite: many).
+// Found is a value with its interval, or why there is none. Value and U95 in SI, Freedom
+// the degrees of freedom (NaN or infinite: many).
 type Found struct {
-	Value, U, U95, Freedom float64
-	Reason                 string
+	Value, U95, Freedom float64
+	Reason              string
 }
 
 func notFound(format string, a ...any) Found {
 	nan := math.NaN()
-	return Found{nan, nan, nan, nan, fmt.Sprintf(format, a...)}
+	return Found{nan, nan, nan, fmt.Sprintf(format, a...)}
 }
 
 // ValueOf reads the property of a limit from a compound.
@@ -48,7 +48,6 @@ func ValueOf(c *models.Compound, l data.Limit) Found {
 	default:
 		return notFound("a %s needs an approved compound to compare with", l.Property)
 	}
-	f.U = f.U95 / c.Quantile()
 	return f
 }
 
@@ -62,7 +61,7 @@ func Decide(spec *data.Specification, found func(data.Limit) Found) *Release {
 	for _, l := range spec.Limits {
 		f := found(l)
 		out := line(l, f)
-		a := decision.Decide(decision.Value{Y: f.Value, U: f.U, U95: f.U95, Freedom: f.Freedom}, decision.Limits{Lower: l.Lower, Upper: l.Upper}, guard)
+		a := quality.Decide(quality.Measured{Value: f.Value, U95: f.U95, Freedom: f.Freedom}, quality.Limits{Lower: l.Lower, Upper: l.Upper}, quality.Rule{Guard: guard})
 		scale := out.Lower / l.Lower
 		if math.IsNaN(scale) {
 			scale = out.Upper / l.Upper
@@ -70,8 +69,7 @@ func Decide(spec *data.Specification, found func(data.Limit) Found) *Release {
 		if math.IsNaN(scale) {
 			scale = 1 // a limit of zero
 		}
-		out.AcceptLower, out.AcceptUpper, out.Conformity = a.Acceptance.Lower*scale, a.Acceptance.Upper*scale, a.Conformity
-		out.Decision = map[decision.Verdict]Decision{decision.Accept: Accepted, decision.Reject: Rejected, decision.Undecided: Undecided, decision.NoVerdict: NotDecided}[a.Verdict]
+		out.AcceptLower, out.AcceptUpper, out.Conformity, out.Decision = a.Accept.Lower*scale, a.Accept.Upper*scale, a.Conformity, a.Verdict
 		r.Lines = append(r.Lines, out)
 	}
 	r.Decision = Overall(r.Lines)
@@ -85,7 +83,7 @@ func ReleaseOf(c *models.Compound, spec *data.Specification, found func(data.Lim
 	r.Basis = fmt.Sprintf("full characterization, %d points", c.Fit.Points)
 	if spec.Compound != "" && spec.Compound != c.Compound.Name {
 		r.Notes = append(r.Notes, fmt.Sprintf("The specification is for %s, the batch is of %s.", spec.Compound, stated(c.Compound.Name)))
-		r.Decision = Undecided
+		r.Decision = quality.Undecided
 	}
 	if !slices.Contains(c.Uncertainty.Parameters, models.ParamPhase) {
 		r.Notes = append(r.Notes, "The common uncertainty of the phase was not stated: decisions on loss are those of repeatability.")

@@ -11,6 +11,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"phaselag/data"
+	"phaselag/fitting/quality"
 	"phaselag/models"
 	"phaselag/reports"
 	"phaselag/reports/html"
@@ -126,7 +127,7 @@ func (a *app) conclude(r *reports.Release, set *data.Sheet, o releaseOptions) er
 	for _, n := range r.Notes {
 		a.note(n)
 	}
-	if r.Decision != reports.Accepted {
+	if r.Decision != quality.Accepted {
 		return errNo
 	}
 	return nil
