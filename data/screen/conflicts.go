@@ -13,8 +13,7 @@ import (
 // as smooth as the truth. They are claimed only from a second source in the
 // campaign, which the evidence names. Our own rules.
 
-// conflictingModuli compares frequency sweeps and strain sweeps of different
-// specimens or tests at common conditions: temperature within 1 K, frequency within
+// conflictingModuli compares two oscillatory tests at common conditions: temperature within 1 K, frequency within
 // 2 %, strain within a tenth. Where the median ratio of at least three lies within
 // 12 % of 3, of 1000 or of a million, the ratios scatter by less than a tenth, and the
 // loss angles agree within 2°, the two tests were read in different moduli or units.
@@ -68,18 +67,17 @@ func stated(t data.Test) string {
 // commonConditions returns the ratios b/a of |G*| and the differences of the loss
 // angles at the conditions that two tests have in common.
 func commonConditions(a, b data.Test) (ratios, turns []float64, points []data.Point) {
-	sweeps := func(t data.Test) bool { return t.Kind == data.FrequencySweep || t.Kind == data.StrainSweep }
-	if !sweeps(a) || !sweeps(b) {
+	if !oscillatory(a.Kind) || !oscillatory(b.Kind) {
 		return nil, nil, nil
 	}
 	for _, rb := range b.Runs {
 		for _, ra := range a.Runs {
-			if !(math.Abs(ra.Temperature-rb.Temperature) <= 1) {
-				continue
+			if math.Abs(ra.Temperature-rb.Temperature) > 1 {
+				continue // not known in a temperature sweep
 			}
 			for _, q := range used(rb) {
 				for _, p := range used(ra) {
-					if alike(p.Frequency, q.Frequency, 0.02) && (alike(p.Strain, q.Strain, 0.1) || math.IsNaN(p.Strain) != math.IsNaN(q.Strain)) {
+					if math.Abs(p.Temperature-q.Temperature) <= 1 && alike(p.Frequency, q.Frequency, 0.02) && (alike(p.Strain, q.Strain, 0.1) || math.IsNaN(p.Strain) != math.IsNaN(q.Strain)) {
 						ratios, turns, points = append(ratios, magnitude(q)/magnitude(p)), append(turns, angle(q)-angle(p)), append(points, q)
 						break
 					}

@@ -48,9 +48,11 @@
 //	strain-never-stated           no amplitude in the whole campaign
 //	strain-not-constant           the amplitude varies through an isotherm
 //	strain-too-high               a strain amplitude beyond 100 %
+//	strain-too-low                a strain amplitude that no machine drives
 //	temperature-drifts            the temperature moves through a run
 //	temperature-off-nominal       measured and nominal temperature differ
 //	tests-contradict-in-modulus   two tests differ by 3, 1000 or a million
 //	tests-contradict-in-strain    two strain sweeps differ by 2 or √2 in strain
+//	unit-changes-within-test      one isotherm is three or six decades off its neighbours
 //	viscosity-differs             the file's complex viscosity is not its |G*|/ω
 package screen

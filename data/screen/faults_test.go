@@ -87,6 +87,26 @@ func TestFaults(t *testing.T) {
 		p.Tests[0].Strains = []float64{percent}
 		return p
 	}
+	// The first frequencies measured again at the end of each isotherm, as the reader
+	// parts them: a run of their own.
+	parted := func(share float64, n int) func(*testing.T, uint64) *data.Campaign {
+		return func(t *testing.T, seed uint64) *data.Campaign {
+			plan := demo.IsothermPlan()
+			f := plan.Tests[0].Frequencies
+			plan.Tests[0].Frequencies = append(slices.Clone(f), f[:n]...)
+			all := len(f) + n
+			c := spoiled(t, demo.HM60(), plan, seed, iso, demo.Softened(0, 1000, func(r demo.Row) float64 { return share * float64(r.Index%all) / float64(all) }, 0))
+			var runs []data.Run
+			for _, r := range c.Tests[0].Runs {
+				again := r
+				again.Points = r.Points[len(f):]
+				r.Points = r.Points[:len(f)]
+				runs = append(runs, r, again)
+			}
+			c.Tests[0].Runs = runs
+			return c
+		}
+	}
 	viscous := func(factor float64, jumble bool) func(*testing.T, uint64) *data.Campaign {
 		return func(t *testing.T, seed uint64) *data.Campaign {
 			c := campaign(t, demo.HM60(), isotherms, seed)
@@ -172,6 +192,14 @@ func TestFaults(t *testing.T) {
 		{"strains 5 % off", strains(1.05), "tests-contradict-in-strain", ""},
 		{"E taken for G in one of two tests", moduli(3), "tests-contradict-in-modulus", data.Severe},
 		{"kPa in one of two tests", moduli(1000), "tests-contradict-in-modulus", data.Severe},
+		{"E taken for G in the temperature sweep", bad(hm.Only("isotherms", "temperature sweep"), "temperature-sweep.csv", demo.WrongModulus(3)), "tests-contradict-in-modulus", data.Severe},
+		{"no modulus is wrong", bad(hm, sweeps), "tests-contradict-in-modulus", ""},
+		{"kPa among MPa at 30 °C", bad(isotherms, iso, demo.Slip(7*21, 8*21, -999, 0)), "unit-changes-within-test", data.Severe},
+		{"a factor of 20 at 30 °C", bad(isotherms, iso, demo.Slip(7*21, 8*21, -19, 0)), "unit-changes-within-test", ""},
+		{"strains of 2e-5 % at most", bad(isotherms, iso, demo.WrongStrain(1e-4)), "strain-too-low", data.Note},
+		{"strains of 2e-3 %", bad(isotherms, iso, demo.WrongStrain(1e-2)), "strain-too-low", ""},
+		{"8 % softer when the first three frequencies are repeated", parted(0.08, 3), "modulus-drifts-in-run", data.Doubt},
+		{"1 % softer when they are", parted(0.01, 3), "modulus-drifts-in-run", ""},
 		{"one of two tests 20 % stiffer", moduli(1.2), "tests-contradict-in-modulus", ""},
 		{"one of two tests twice as stiff", moduli(2), "tests-contradict-in-modulus", ""},
 		{"rad/s read as Hz beside a viscosity", viscous(2*math.Pi, false), "frequency-unit-contradicted", data.Severe},

@@ -19,7 +19,8 @@ import (
 //	ln|G*| = b0 + b1·x + b2·x² + b3·x³ + d·k
 //
 // is fitted to runs of eight rows and more; d is a drift where its Student t has a
-// p below 1e-6 and d over the whole run is more than 1 %. Where rows stand in the
+// p below 1e-6 and d over the whole run is more than 1 %. A run that was parted where
+// its frequencies began again is taken as one (see rejoined). Where rows stand in the
 // order of x (correlation of the ranks beyond 0.9) nothing can be told. A strain
 // sweep that only gets softer on its way was conditioned by it: see
 // firstRunSoftening. Beyond 10 % it is severe. Our own rule.
@@ -29,7 +30,7 @@ func trends(c *data.Campaign) (list []data.Finding) {
 		if t.Kind != data.FrequencySweep && t.Kind != data.StrainSweep {
 			continue
 		}
-		for _, r := range t.Runs {
+		for _, r := range rejoined(t) {
 			points := used(r)
 			drift, u, ok := trendOf(t.Kind, points)
 			if !ok || math.Abs(drift) < least {
@@ -52,6 +53,32 @@ func trends(c *data.Campaign) (list []data.Finding) {
 		}
 	}
 	return list
+}
+
+// rejoined returns a test's runs, those drawn together that follow each other in one
+// file at one temperature (0.5 K), at one frequency in a strain sweep, and have at most
+// half of the longer one's conditions in common: a run whose first frequencies are
+// repeated at its end, or one that takes every other frequency on its way back. Two runs
+// with most conditions in common repeat each other (see repeats).
+func rejoined(t data.Test) (runs []data.Run) {
+	for _, r := range t.Runs {
+		points := used(r)
+		r.Points = points
+		n := len(runs) - 1
+		if n < 0 || len(points) == 0 || len(runs[n].Points) == 0 {
+			runs = append(runs, r)
+			continue
+		}
+		before := runs[n].Points
+		_, _, common := compare(t.Kind, before, points)
+		if !(math.Abs(r.Temperature-runs[n].Temperature) <= 0.5) || before[0].File != points[0].File || 2*len(common) > max(len(before), len(points)) ||
+			t.Kind == data.StrainSweep && !alike(before[0].Frequency, points[0].Frequency, 0.01) {
+			runs = append(runs, r)
+			continue
+		}
+		runs[n].Points = append(slices.Clone(before), points...)
+	}
+	return runs
 }
 
 // trendOf returns the change of ln|G*| with the order of the rows over the run, and

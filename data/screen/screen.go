@@ -13,7 +13,7 @@ import (
 func Check(c *data.Campaign) []data.Finding {
 	var list []data.Finding
 	for _, check := range []func(*data.Campaign) []data.Finding{
-		units, statedLossFactor, viscosities, swapped, duplicates, copies, outOfOrder,
+		units, unitChanges, statedLossFactor, viscosities, swapped, duplicates, copies, outOfOrder,
 		conflictingModuli, conflictingAmplitudes, headingAgainstDeformation,
 		temperatures, strains, beyondLinear, falling, fewPoints,
 		drifts, trends, contactLost, selfHeating, firstRunSoftening, repeats, outlyingRepeats,

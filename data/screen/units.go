@@ -62,11 +62,49 @@ var pressures = map[string]float64{
 	"kgf/cm²": 98066.5, "kgf/cm2": 98066.5,
 }
 
+// unitChanges finds isotherms that stand alone in another unit: whose moduli lie three
+// or six decades (within a factor of two) off what their neighbours in temperature
+// have between them on a logarithmic scale.
+func unitChanges(c *data.Campaign) (list []data.Finding) {
+	for _, t := range c.Tests {
+		if t.Kind != data.FrequencySweep {
+			continue
+		}
+		var runs []step
+		for _, r := range t.Runs {
+			if points := used(r); len(points) > 0 && !math.IsNaN(r.Temperature) {
+				runs = append(runs, step{temperature: r.Temperature, points: points})
+			}
+		}
+		byTemperature(runs)
+		level := func(i int) float64 { return math.Log10(median(runs[i].magnitudes())) }
+		for i := 1; i+1 < len(runs); i++ {
+			a, b := runs[i-1].temperature, runs[i+1].temperature
+			if !(b-a > 1) {
+				continue
+			}
+			w := (runs[i].temperature - a) / (b - a)
+			off := level(i) - (1-w)*level(i-1) - w*level(i+1)
+			decades := 3 * math.Round(off/3)
+			if decades == 0 || math.Abs(off-decades) > math.Log10(2) || math.Abs(level(i-1)-level(i+1)) > 2 {
+				continue
+			}
+			list = append(list, data.Finding{
+				Code: "unit-changes-within-test", Severity: data.Severe, Test: t.Name, Rows: data.Places(runs[i].points),
+				Evidence: fmt.Sprintf("at %s the moduli are %.3g times what lies between those at %s and %s", celsius(runs[i].temperature), math.Pow(10, off), celsius(a), celsius(b)),
+				Cause:    "this isotherm is in another unit than the others, kPa among MPa for example",
+				Remedy:   "give the isotherm a test of its own, with its unit in columns",
+			})
+		}
+	}
+	return list
+}
+
 // units finds numbers that a wrong unit explains best.
 func units(c *data.Campaign) (list []data.Finding) {
 	for _, t := range c.Tests {
 		var high, large []data.Point
-		top, n := 0.0, 0
+		top, n, strain := 0.0, 0, 0.0
 		for _, r := range t.Runs {
 			for _, p := range used(r) {
 				m := magnitude(p)
@@ -74,6 +112,9 @@ func units(c *data.Campaign) (list []data.Finding) {
 				top = math.Max(top, m)
 				if m > highestModulus {
 					high = append(high, p)
+				}
+				if p.Strain > strain {
+					strain = p.Strain
 				}
 				if p.Strain > 1 {
 					large = append(large, p)
@@ -94,6 +135,14 @@ func units(c *data.Campaign) (list []data.Finding) {
 				Evidence: fmt.Sprintf("no modulus of the test is above %s; solid rubber begins near 0.1 MPa", modulus(top)),
 				Cause:    "a liquid or a gel, or a wrong unit, MPa read as Pa for example",
 				Remedy:   "look at the column's unit if it is a rubber" + rightUnit(t),
+			})
+		}
+		if strain > 0 && strain < 1e-6 {
+			list = append(list, data.Finding{
+				Code: "strain-too-low", Severity: data.Note, Test: t.Name,
+				Evidence: fmt.Sprintf("no strain amplitude of the test is above %.2g %%", 100*strain),
+				Cause:    "m/m read as percent, or a displacement in the column of the strain",
+				Remedy:   "look at the column's unit; state it in columns",
 			})
 		}
 		if len(large) > 0 {
