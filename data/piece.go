@@ -90,6 +90,15 @@ func (p *plan) shaped(t *table.Table, what string, turns bool) error {
 		return p.fault("give moduli that are corrected, and list it under corrected", "moving mass and frame stiffness of a torsion test are not taken off: its moment of inertia would be needed")
 	}
 	p.modulus = string(Shear)
+	if p.Deformation == "" {
+		// The specimen says it; what is bent stays not stated.
+		for _, d := range []Deformation{SimpleShear, Compression, Tension, Torsion} {
+			if strings.Contains(p.shape.Name(), string(d)) || d == Torsion && p.shape.Rotates() {
+				p.Deformation = d
+				break
+			}
+		}
+	}
 	return nil
 }
 
