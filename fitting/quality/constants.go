@@ -20,9 +20,10 @@ import (
 //	F(r) = n ∫ φ(x) [Φ(x+r) − Φ(x)]ⁿ⁻¹ dx,
 //
 // and d2 = ∫₀^∞ (1 − F) dr, d2² + d3² = 2 ∫₀^∞ r (1 − F) dr. The inner integral is
-// taken by the trapezoidal rule with the step 0.1 over 16 on either side of −r/2, which
-// converges faster than any power for such a bell; the outer one by Gauss and Legendre with 80 nodes on
-// 0…14, where 1 − F is below 1e-19 at n = 25. Both are exact to 12 digits or better.
+// taken by the trapezoidal rule with the step 1/8 over |x| ≤ 8.5, which converges faster
+// than any power for such a bell; the outer one by Gauss and Legendre with 50 nodes on
+// 0…13, beyond which 1 − F is below 1e-16. Two and three values meet their
+// closed forms to 1e-11.
 //
 // From these: A2 = 3/(d2√n), A3 = 3/(c4√n), B3, B4 = 1 ∓ 3√(1−c4²)/c4,
 // D3, D4 = 1 ∓ 3 d3/d2, not below zero.
@@ -63,23 +64,39 @@ func c4(n float64) float64 {
 	return math.Sqrt(2/(n-1)) * math.Exp(a-b)
 }
 
+// rangeMoments has the closed form of two values, which every moving range needs, and the
+// quadrature for more.
 func rangeMoments(n int) (mean, sd float64) {
-	const nodes, reach = 80, 14.0
-	above := func(r float64) float64 { return 1 - rangeBelow(r, n) }
-	mean = quad.Fixed(above, 0, reach, nodes, quad.Legendre{}, 0)
-	square := quad.Fixed(func(r float64) float64 { return 2 * r * above(r) }, 0, reach, nodes, quad.Legendre{}, 0)
-	return mean, math.Sqrt(square - mean*mean)
+	if n == 2 {
+		return 2 / math.Sqrt(math.Pi), math.Sqrt(2 - 4/math.Pi)
+	}
+	return rangeQuadrature(n)
 }
 
-// rangeBelow is F(r). The bell has its middle at x = −r/2, so the sum is laid round it.
-func rangeBelow(r float64, n int) float64 {
-	const step, steps = 0.1, 160
-	sum := 0.0
-	for k := -steps; k <= steps; k++ {
-		x := float64(k)*step - r/2
-		if d := distuv.UnitNormal.CDF(x+r) - distuv.UnitNormal.CDF(x); d > 0 {
-			sum += math.Exp(-x*x/2) * math.Pow(d, float64(n-1))
-		}
+func rangeQuadrature(n int) (mean, sd float64) {
+	const step, half = 0.125, 68
+	var below, weight [2*half + 1]float64 // Φ and φ·step on the inner grid
+	for k := range below {
+		x := float64(k-half) * step
+		below[k] = distuv.UnitNormal.CDF(x)
+		weight[k] = step * math.Exp(-x*x/2) / math.Sqrt(2*math.Pi)
 	}
-	return float64(n) * sum * step / math.Sqrt(2*math.Pi)
+	above := func(r float64) float64 {
+		sum := 0.0
+		for k := range below {
+			d := distuv.UnitNormal.CDF(float64(k-half)*step+r) - below[k]
+			sum += weight[k] * math.Pow(math.Max(0, d), float64(n-1))
+		}
+		return 1 - float64(n)*sum
+	}
+	const nodes, reach = 50, 13.0
+	x, w := make([]float64, nodes), make([]float64, nodes)
+	quad.Legendre{}.FixedLocations(x, w, 0, reach)
+	square := 0.0
+	for i, r := range x {
+		a := above(r)
+		mean += w[i] * a
+		square += w[i] * 2 * r * a
+	}
+	return mean, math.Sqrt(square - mean*mean)
 }
