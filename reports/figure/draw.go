@@ -50,6 +50,7 @@ func (p *pen) panel(a *axes) {
 		return
 	}
 	p.grid(a)
+	p.areas(a)
 	for _, s := range a.panel.Series {
 		for _, band := range a.bands(s) {
 			p.area(band, s.Colour.Tint())
@@ -58,8 +59,9 @@ func (p *pen) panel(a *axes) {
 	for _, l := range a.panel.Lines {
 		p.reference(a, l)
 	}
+	names := a.placeMarks()
 	marks := 0
-	for _, s := range a.panel.Series {
+	for i, s := range a.panel.Series {
 		for _, bar := range a.bars(s) {
 			p.bar(a, bar, s)
 		}
@@ -69,7 +71,9 @@ func (p *pen) panel(a *axes) {
 				continue
 			}
 			for _, part := range clipLine(run, a.frame) {
-				p.line(part, s.width(), s.Line, s.Colour)
+				for _, piece := range outsideBoxes(part, names[i]) {
+					p.line(piece, s.width(), s.Line, s.Colour)
+				}
 			}
 		}
 	}
@@ -83,7 +87,9 @@ func (p *pen) panel(a *axes) {
 			}
 		}
 	}
+	p.marks(names)
 	p.frame(a)
+	p.top(a)
 	p.labels(a)
 	if marks == 0 {
 		p.text("no data", (a.frame.x0+a.frame.x1)/2, (a.frame.y0+a.frame.y1)/2,
@@ -128,7 +134,9 @@ func (p *pen) frame(a *axes) {
 	}
 	side(a.x, func(x, l float64) {
 		p.line([]xy{{x, f.y0}, {x, f.y0 + l}}, frameWidth, Solid, Black)
-		p.line([]xy{{x, f.y1}, {x, f.y1 - l}}, frameWidth, Solid, Black)
+		if a.panel.Top == nil {
+			p.line([]xy{{x, f.y1}, {x, f.y1 - l}}, frameWidth, Solid, Black)
+		}
 	})
 	side(a.y, func(y, l float64) { p.line([]xy{{f.x0, y}, {f.x0 + l, y}}, frameWidth, Solid, Black) })
 	side(right, func(y, l float64) { p.line([]xy{{f.x1, y}, {f.x1 - l, y}}, frameWidth, Solid, Black) })
@@ -159,7 +167,7 @@ func (p *pen) labels(a *axes) {
 	}
 	if a.panel.Title != "" {
 		st := textStyle{size: titleSize, bold: true}
-		p.text(clipText(a.panel.Title, a.cell.x1-f.x0-1, st), f.x0, f.y1+2, st)
+		p.text(clipText(a.panel.Title, a.cell.x1-f.x0-1, st), f.x0, f.y1+a.panel.Top.height()+2, st)
 	}
 }
 

@@ -21,7 +21,10 @@ type Panel struct {
 	X, Y  Axis
 	// Right is a second vertical axis at the right, for the series marked
 	// Right; nil for none.
-	Right  *Axis
+	Right *Axis
+	// Top is a row of labels above the frame; nil for none.
+	Top    *Top
+	Areas  []Area // under the data
 	Series []Series
 	Lines  []Reference
 	// Notes are short lines of text in a free corner of the frame.
@@ -51,6 +54,9 @@ type Series struct {
 	// Name stands in the legend; "" keeps the series out of it. Series of the
 	// same name share one entry, for example a curve and its points.
 	Name string
+	// Mark stands on the line itself, in a gap of it, once for each stretch that has the
+	// room; "" for none.
+	Mark string
 	X, Y []float64
 	// Low and High bound a band round the curve; nil for none. A NaN is a gap.
 	// On a logarithmic axis a Low that is not positive reaches down to the

@@ -33,6 +33,7 @@ func newAxes(p Panel, cell rect) *axes {
 	if p.Title != "" {
 		f.y1 -= titleHeight
 	}
+	f.y1 -= p.Top.height()
 	if a.hasRight {
 		f.x1 = cell.x1 - marginLeft
 	}
