@@ -16,10 +16,10 @@ import (
 
 const (
 	controlWidth = 170.0 // mm, of the figure
-	controlPanel = 62.0  // mm, height of the first panel
-	controlNext  = 46.0  // mm, of each further one
+	controlPanel = 74.0  // mm, height of the first panel
+	controlNext  = 62.0  // mm, of each further one
 	// The room of the names, mm: the figure less its margins and the legend at the right.
-	controlNames = 105.0
+	controlNames = 115.0
 	nameSize     = 7.5 * 25.4 / 72 // mm, a little more than the type of the ticks
 	longestName  = 14              // characters
 )

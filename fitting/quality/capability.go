@@ -26,7 +26,8 @@ import (
 // E|UV| = (2/π)·2·(√(1−ρ²) + ρ asin ρ).)
 //
 // For C_pk and P_pk the normal approximation of Bissell (Appl. Statist. 39 (1990) 331,
-// from memory):  C_pk ± z √(1/(9N) + C_pk²/(2ν)). Its coverage is simulated in the tests.
+// from memory):  C_pk ± z √(1/(9N) + C_pk²/(2ν)). Its coverage is
+// simulated in the tests: 93 to 95 % from 15 batches of four or 25 of one upwards.
 // All of this supposes normal values and a process that stands still; Doubts say where the
 // numbers speak against it.
 

@@ -269,7 +269,7 @@ func TestRunLengths(t *testing.T) {
 		{"EWMA, default", 0, ewma(0), 370, 20},
 		{"EWMA 2.962, 1 sigma", 1, ewma(2.962), 10.5, 1.5},
 	} {
-		got, u := runLength(t, 400, v.shift, 7, v.chart)
+		got, u := runLength(t, 700, v.shift, 7, v.chart)
 		t.Logf("%s: %.1f ± %.1f", v.what, got, u)
 		if math.Abs(got-v.want) > 4*u+v.within {
 			t.Errorf("%s: %.1f ± %.1f, want %.1f", v.what, got, u, v.want)

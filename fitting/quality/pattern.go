@@ -44,7 +44,9 @@ func (p Pattern) String() string {
 }
 
 // StandardSet is the default: a point beyond a limit, a shift of the mean and a trend. More
-// patterns find more, and raise more false alarms: see the run lengths in the tests.
+// patterns find more, and raise more false alarms: from a process at rest with known sigma
+// Beyond alone calls out every 370th point, this set has its first after about 140 and the
+// full set after about 80 (simulated in the tests).
 func StandardSet() []Pattern { return []Pattern{Beyond, OneSide, Trend} }
 
 // FullSet is all eight.
