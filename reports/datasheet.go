@@ -81,7 +81,7 @@ func sheetSections(r *fitting.Result, set *data.Sheet) map[string]figure.Section
 	}
 	out := map[string]figure.Section{
 		"identity":          {Heading: "Identity, state and conditions", Blocks: identity(r, set)},
-		"figures":           {Heading: "Figures", Blocks: pictures("isotherms", "master-curve", "wicket", "phase-against-modulus", "relaxation")},
+		"figures":           {Heading: "Figures", Blocks: pictures("isotherms", "master-curve", "nomogram", "wicket", "phase-against-modulus", "relaxation")},
 		"strain dependence": {Heading: "Strain dependence", Blocks: pictures("strain-dependence")},
 		"method":            {Heading: "Method", Blocks: method(r, set)},
 		"typical values":    typical(r, set),
@@ -93,8 +93,7 @@ func sheetSections(r *fitting.Result, set *data.Sheet) map[string]figure.Section
 	if r.Compound != nil {
 		out["properties"], out["constants"] = properties(r, set), constants(r)
 	}
-	if len(r.Fixed) > 0 {
-		blocks := pictures("temperature-dependence")
+	if blocks := append(pictures("temperature-dependence", "temperature-curves"), transitionBlocks(r.Compound)...); len(blocks) > 0 || len(r.Fixed) > 0 {
 		if r.Compound == nil {
 			blocks = append(blocks, figure.GridOf(FixedFrequency(r), "Means at one temperature and frequency, as measured"))
 		}

@@ -88,6 +88,13 @@ func figures(r *fitting.Result) []namedFigure {
 	if relaxation := relaxationPoints(r); r.Compound != nil && len(relaxation) > 0 {
 		out = append(out, relaxationFigure(r, relaxation))
 	}
+	if r.Compound != nil {
+		for _, draw := range []func(*models.Compound) (namedFigure, bool){nomogram, transitionFigure} {
+			if f, ok := draw(r.Compound); ok {
+				out = append(out, f)
+			}
+		}
+	}
 	return out
 }
 

@@ -164,6 +164,9 @@ func csvFiles(r *fitting.Result) ([]file, error) {
 	if r.Compound != nil {
 		list = append(list, named{"constants", Parameters(r)}, named{"properties", Properties(r)}, named{"candidates", Candidates(r)}, named{"runs", Runs(r)})
 	}
+	if t, ok := transitions(r.Compound); ok {
+		list = append(list, named{"glass-transition", t})
+	}
 	if len(r.Isotherms) > 0 {
 		list = append(list, named{"superposition-misfit", Misfits(r)})
 	}
