@@ -86,7 +86,7 @@ func massNotCorrected(c *data.Campaign) (list []data.Finding) {
 			}
 		}
 		taken := mean * worst.share
-		if mean < bias+massSignificance*u || taken < massShare || !consistent(chi, len(all)-1) {
+		if !(mean >= bias+massSignificance*u) || !(taken >= massShare) || !consistent(chi, len(all)-1) {
 			continue
 		}
 		var points []data.Point
@@ -139,7 +139,7 @@ func inertiaOf(r data.Run) (inertia, bool) {
 		square[i] = -p.Frequency * p.Frequency * w[i]
 	}
 	l, ok := regress(y, w, times(w, x), times(w, times(x, x)), square)
-	if !ok {
+	if !ok || math.IsNaN(l.b[3]) || math.IsNaN(l.u[3]) {
 		return inertia{}, false
 	}
 	var loss []float64

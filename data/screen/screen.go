@@ -30,15 +30,23 @@ func oscillatory(k data.Kind) bool {
 	return k == data.FrequencySweep || k == data.StrainSweep || k == data.TemperatureSweep
 }
 
-// used returns the points of a run that are used.
+// used returns the points of a run that are used and that have numbers with which one
+// can reckon, as all that the reader uses have.
 func used(r data.Run) []data.Point {
 	list := make([]data.Point, 0, len(r.Points))
 	for _, p := range r.Points {
-		if p.Used {
+		if p.Used && sane(p) {
 			list = append(list, p)
 		}
 	}
 	return list
+}
+
+func sane(p data.Point) bool {
+	positive := func(x float64) bool { return x > 0 && !math.IsInf(x, 0) }
+	swept := positive(p.Frequency) || math.IsNaN(p.Frequency) && positive(p.Time)
+	return swept && positive(p.Storage) && positive(p.Temperature) &&
+		(math.IsNaN(p.Loss) || p.Loss >= 0 && !math.IsInf(p.Loss, 0)) && (math.IsNaN(p.Strain) || p.Strain >= 0 && !math.IsInf(p.Strain, 0))
 }
 
 // magnitude returns |G*|, or the storage modulus where no loss was measured.

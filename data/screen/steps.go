@@ -60,7 +60,7 @@ func alike(a, b, fraction float64) bool {
 	if math.IsNaN(a) || math.IsNaN(b) {
 		return math.IsNaN(a) && math.IsNaN(b)
 	}
-	return math.Abs(a-b) <= fraction*math.Max(math.Abs(a), math.Abs(b))
+	return a == b || math.Abs(a-b) <= fraction*math.Max(math.Abs(a), math.Abs(b))
 }
 
 // byTemperature sorts steps from cold to warm, keeping the order of equals.
