@@ -47,6 +47,13 @@ func (t Truth) Changed(b Batch) Truth {
 	return t
 }
 
+// ReleaseSeed and ReleasedBatch make the release test in the folder release-test: a batch
+// whose glass transition lies 2 K higher, 4 % stiffer.
+const ReleaseSeed = 61
+
+// ReleasedBatch is what was done to that batch.
+func ReleasedBatch() Batch { return Batch{Warmer: 2, Stiffness: 1.04} }
+
 // ReleasePlan is a short release test: three temperatures near the transition, where a
 // shift of it shows, five frequencies, one strain sweep, one piece.
 func ReleasePlan() Plan {

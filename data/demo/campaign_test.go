@@ -64,6 +64,25 @@ func TestCommittedFiles(t *testing.T) {
 	}
 }
 
+func TestCommittedReleaseTest(t *testing.T) {
+	files := Campaign(HM60().Changed(ReleasedBatch()), ReleasePlan(), ReleaseSeed)
+	for _, n := range files.Names() {
+		name := "release-test/" + n
+		if *update {
+			if err := os.WriteFile(name, files.Bytes(n), 0o644); err != nil {
+				t.Fatal(err)
+			}
+		}
+		got, err := os.ReadFile(name)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if !bytes.Equal(got, files.Bytes(n)) || !strings.HasPrefix(string(got), "# Invented data") {
+			t.Errorf("%s is not what the simulator writes, or does not say that it is invented", name)
+		}
+	}
+}
+
 func TestCampaignFileIsYAML(t *testing.T) {
 	files := Campaign(HM60(), HM60Plan(), 1)
 	var doc struct {

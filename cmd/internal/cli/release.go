@@ -11,6 +11,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"phaselag/data"
+	"phaselag/fitting/changes"
 	"phaselag/fitting/quality"
 	"phaselag/models"
 	"phaselag/reports"
@@ -20,7 +21,7 @@ import (
 )
 
 type releaseOptions struct {
-	registerOptions
+	compareOptions
 	specification, settings, out string
 }
 
@@ -33,11 +34,13 @@ func (a *app) batchReleaseCmd() *cobra.Command {
 guard bands: accepted where a value keeps its uncertainty from the limits, rejected where
 it lies beyond them by as much, undecided between (JCGM 106, ISO 14253-1).
 
-BATCH is a compound file, the folder of a result, or a registered batch. With --out it
-writes the certificate as NAME.pdf and NAME.html. The exit code is 0 only for an accepted
-batch.`,
-		Example: `  phaselag batch release hm60 --specification release.yaml --out HM-60-2611-02`,
-		Args:    exactly("BATCH"),
+BATCH is a compound file, the folder of a result, a registered batch, or the campaign of
+a short release test, which is judged by what changed against the approved compound in
+--approved. With --out it writes the certificate as NAME.pdf and NAME.html. The exit code
+is 0 only for an accepted batch.`,
+		Example: `  phaselag batch release hm60 --specification release.yaml --out HM-60-2611-02
+  phaselag batch release release-test.yaml --approved hm60 --same-thermometer --specification release.yaml`,
+		Args: exactly("BATCH"),
 		RunE: func(_ *cobra.Command, args []string) error {
 			if o.specification == "" {
 				return usagef("--specification is missing")
@@ -45,7 +48,9 @@ batch.`,
 			return a.release(args[0], o)
 		},
 	}
-	o.flags(cmd)
+	o.registerOptions.flags(cmd)
+	o.sharedOptions.flags(cmd)
+	cmd.Flags().StringVar(&o.with, "approved", "", "approved compound: compound file, folder of a result, or registered batch")
 	cmd.Flags().StringVar(&o.specification, "specification", "", "specification file (YAML, required)")
 	cmd.Flags().StringVar(&o.settings, "settings", "", "settings file of datasheets: laboratory, signatories, logo, paper")
 	cmd.Flags().StringVar(&o.out, "out", "", "path and name of the certificate's files without extension")
@@ -90,12 +95,36 @@ func (a *app) release(name string, o releaseOptions) error {
 			return err
 		}
 	}
+	campaign, err := measured(name)
+	if err != nil {
+		return err
+	}
+	if campaign != nil && o.with == "" {
+		return usagef("--approved is missing: a release test is judged against an approved compound")
+	}
+	var approved *models.Compound
+	var compared *changes.Comparison
+	if o.with != "" {
+		if approved, err = o.compound(o.with); err != nil {
+			return err
+		}
+		if compared, err = o.against(approved, name, campaign); err != nil {
+			return err
+		}
+	}
+	if campaign != nil {
+		return a.conclude(reports.ReleaseByPoints(campaign, approved, compared, spec), set, o)
+	}
 	c, err := o.compound(name)
 	if err != nil {
 		return err
 	}
-	r := reports.ReleaseOf(c, spec, func(l data.Limit) reports.Found { return reports.ValueOf(c, l) })
-	return a.conclude(r, set, o)
+	return a.conclude(reports.ReleaseOf(c, spec, func(l data.Limit) reports.Found {
+		if compared != nil && !l.Property.AtCondition() {
+			return reports.FoundBy(compared, l)
+		}
+		return reports.ValueOf(c, l)
+	}), set, o)
 }
 
 // conclude prints a release and writes its certificate.
