@@ -38,6 +38,10 @@ func nomogram(c *models.Compound) (out namedFigure, ok bool) {
 	lo, hi := math.Log10(d.ReducedFrequency[0]), math.Log10(d.ReducedFrequency[1])
 	f0, f1 := down(math.Min(0, lo-warm)), up(math.Max(2, hi-cold))
 	x0, x1 := math.Min(lo, f0+warm)-0.4, math.Max(hi, f1+cold)+0.4
+	// The label of a decade at the right end would touch those of the frequency axis.
+	if mm := 135 / (x1 - x0); (x1-math.Floor(x1))*mm < 4 {
+		x1 = math.Floor(x1) + 4/mm
+	}
 	ten := func(l float64) float64 { return math.Pow(10, l) }
 
 	s := symbol(c)

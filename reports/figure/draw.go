@@ -59,7 +59,7 @@ func (p *pen) panel(a *axes) {
 	for _, l := range a.panel.Lines {
 		p.reference(a, l)
 	}
-	names := a.placeMarks()
+	stretches := a.stretches()
 	marks := 0
 	for i, s := range a.panel.Series {
 		for _, bar := range a.bars(s) {
@@ -67,13 +67,10 @@ func (p *pen) panel(a *axes) {
 		}
 		for _, run := range a.runs(s) {
 			marks += len(run)
-			if s.Line == NoLine {
-				continue
-			}
-			for _, part := range clipLine(run, a.frame) {
-				for _, piece := range outsideBoxes(part, names[i]) {
-					p.line(piece, s.width(), s.Line, s.Colour)
-				}
+		}
+		for _, part := range stretches[i] {
+			for _, piece := range part.pieces() {
+				p.line(piece, s.width(), s.Line, s.Colour)
 			}
 		}
 	}
@@ -87,7 +84,7 @@ func (p *pen) panel(a *axes) {
 			}
 		}
 	}
-	p.marks(names)
+	p.marks(stretches)
 	p.frame(a)
 	p.top(a)
 	p.labels(a)

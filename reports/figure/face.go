@@ -73,6 +73,7 @@ type textStyle struct {
 	bold   bool
 	colour Colour
 	turned bool    // by 90°, reading upwards
+	angle  float64 // rad, anticlockwise, where not turned
 	anchor float64 // 0: starts at the point, 0.5: centred on it, 1: ends there
 	raise  float64 // of the baseline, in units of the size; −0.35 centres capitals on the point
 }
@@ -115,6 +116,12 @@ func (p *pen) text(s string, x, y float64, st textStyle) {
 			p.c.Translate(at(x-shift, y+along))
 			p.c.Rotate(math.Pi / 2)
 			p.c.FillString(f, vg.Point{}, piece.Text)
+			p.c.Pop()
+		} else if st.angle != 0 {
+			p.c.Push()
+			p.c.Translate(at(x, y))
+			p.c.Rotate(st.angle)
+			p.c.FillString(f, at(along, shift), piece.Text)
 			p.c.Pop()
 		} else {
 			p.c.FillString(f, at(x+along, y+shift), piece.Text)

@@ -20,31 +20,55 @@ func layered() Panel {
 		}}
 }
 
-// A mark stands on its line, in a gap, clear of other lines; a stretch that is too
-// short has none.
+// A mark stands on its line, along it, in a gap, clear of other lines; a stretch that is
+// too short has none.
 func TestMarks(t *testing.T) {
 	a := newAxes(layered(), rect{0, 0, 100, 80})
-	marks := a.placeMarks()
-	if len(marks[0]) != 1 || len(marks[1]) != 1 || len(marks[2]) != 0 {
-		t.Fatalf("%d, %d, %d marks", len(marks[0]), len(marks[1]), len(marks[2]))
+	list := a.stretches()
+	if list[0][0].mark == nil || list[1][0].mark == nil || list[1][1].mark != nil || list[2][0].mark != nil {
+		t.Fatal("the wrong lines are marked")
 	}
-	for i, m := range [2]placedMark{marks[0][0], marks[1][0]} {
-		line := a.runs(a.panel.Series[i])[0]
-		if _, _, ok := clipSegment(line[0], line[1], m.box); !ok {
-			t.Errorf("mark %d at %v is not on its line", i, m.box)
+	for i := range 2 {
+		s := list[i][0]
+		m := s.mark
+		p, q := s.line[0], s.line[1]
+		if want := math.Atan2(q.y-p.y, q.x-p.x); math.Abs(m.angle-want) > 1e-9 {
+			t.Errorf("mark %d has the angle %g, want %g", i, m.angle, want)
 		}
-		if x := a.x.place(5); m.box.x0 < x && x < m.box.x1 {
-			t.Errorf("mark %d at %v covers another line", i, m.box)
+		if d := (q.x-p.x)*(m.at.y-p.y) - (q.y-p.y)*(m.at.x-p.x); math.Abs(d) > 1e-6 {
+			t.Errorf("mark %d at %v is not on its line", i, m.at)
 		}
-		for _, piece := range outsideBoxes(line, marks[i]) {
+		for y := 0.0; y <= 10; y += 0.1 {
+			if m.covers(xy{a.x.place(5), a.y.place(y)}, 0) {
+				t.Errorf("mark %d at %v covers another line", i, m.at)
+			}
+		}
+		pieces := s.pieces()
+		if len(pieces) != 2 {
+			t.Fatalf("%d pieces of line %d", len(pieces), i)
+		}
+		if got, want := lengthOf(pieces[0])+lengthOf(pieces[1]), lengthOf(s.line)-m.width-2*markRoom; math.Abs(got-want) > 1e-9 {
+			t.Errorf("the pieces of line %d are %g mm long, want %g", i, got, want)
+		}
+		for _, piece := range pieces {
 			for _, q := range piece {
-				if m.box.grown(-1e-9).has(q) {
+				if m.covers(q, 0) {
 					t.Errorf("the line runs through mark %d at %v", i, q)
 				}
 			}
 		}
-		if n := len(outsideBoxes(line, marks[i])); n != 2 {
-			t.Errorf("%d pieces of line %d", n, i)
+	}
+}
+
+// Text never stands upside down, whichever way the line runs.
+func TestMarksAreUpright(t *testing.T) {
+	for k := range 24 {
+		angle := float64(k) * math.Pi / 12
+		sin, cos := math.Sincos(angle)
+		p := Panel{X: Axis{Min: -1, Max: 1}, Y: Axis{Min: -1, Max: 1}, Series: []Series{{Mark: "500", X: []float64{-cos, cos}, Y: []float64{-sin, sin}, Line: Solid}}}
+		m := newAxes(p, rect{0, 0, 100, 80}).stretches()[0][0].mark
+		if m == nil || math.Abs(m.angle) > math.Pi/2+1e-6 {
+			t.Errorf("%g rad: %+v", angle, m)
 		}
 	}
 }
