@@ -51,7 +51,11 @@ func ChangesVerdict(w io.Writer, c *changes.Comparison) error {
 		lines = append(lines, "no change can be claimed")
 	}
 	lines[0] = strings.ToUpper(lines[0][:1]) + lines[0][1:]
-	text := strings.Join(lines, "; ") + fmt.Sprintf(".\n%d points, noise %.2g %% and %.2g°; family of changes at 5 %% (Holm).\n", c.Points, 100*c.SigmaM, c.SigmaPhase*180/math.Pi)
+	what := "noise"
+	if c.OfCompounds {
+		what = "left undescribed"
+	}
+	text := strings.Join(lines, "; ") + fmt.Sprintf(".\n%d points, %s %.2g %% and %.2g°; family of changes at 5 %% (Holm).\n", c.Points, what, 100*c.SigmaM, c.SigmaPhase*180/math.Pi)
 	if c.Misfit < doubtfulMisfit {
 		text += fmt.Sprintf("doubt: these changes do not describe all of the difference (p = %.2g): the batch\ndiffers in another way, too, or something went wrong with its tests.\n", c.Misfit)
 	}

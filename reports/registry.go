@@ -3,8 +3,11 @@ package reports
 import (
 	"fmt"
 	"io"
+	"math"
+	"strings"
 
 	"phaselag/data/register"
+	"phaselag/fitting/quality"
 	"phaselag/reports/table"
 )
 
@@ -58,3 +61,33 @@ func EntryLines(w io.Writer, e *register.Entry) error {
 }
 
 func first(s string, n int) string { return s[:min(n, len(s))] }
+
+// QuantityTable lists what a register has trends of.
+func QuantityTable(list []register.Quantity) table.Table {
+	t := table.Table{Name: "quantities 1", Columns: []table.Column{{Key: "property"}, {Key: "condition"}}}
+	for _, q := range list {
+		t.Rows = append(t.Rows, []table.Cell{table.Text(q.Name), table.Text(q.Condition)})
+	}
+	return t
+}
+
+// CapabilityLines says how a process fits between its limits.
+func CapabilityLines(w io.Writer, c quality.Capability) error {
+	var b strings.Builder
+	fmt.Fprintf(&b, "capability of %d batches, mean %.4g, sigma %.3g from the %s, %.3g overall\n", c.N, c.Mean, c.Within, c.From, c.Overall)
+	for _, v := range []struct {
+		name string
+		i    quality.Index
+	}{{"Cp ", c.Cp}, {"Cpk", c.Cpk}, {"Pp ", c.Pp}, {"Ppk", c.Ppk}} {
+		if !math.IsNaN(v.i.Value) {
+			fmt.Fprintf(&b, "  %s %.2f   95 %%: %.2f to %.2f\n", v.name, v.i.Value, v.i.Low, v.i.High)
+		}
+	}
+	for _, d := range c.Doubts {
+		for i, l := range wrap("doubt: "+d, 78) {
+			fmt.Fprintf(&b, "%s%s\n", map[bool]string{true: "", false: "  "}[i == 0], l)
+		}
+	}
+	_, err := io.WriteString(w, b.String())
+	return err
+}

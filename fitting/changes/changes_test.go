@@ -185,3 +185,52 @@ func TestPairs(t *testing.T) {
 		}
 	}
 }
+
+// TestCompoundPairs: the same of two compound files, each from its own campaign.
+func TestCompoundPairs(t *testing.T) {
+	truth := demo.HM60()
+	n := max(4, *pairs/4)
+	full, _ := plans(0.005)
+	same := &Settings{SameThermometer: true, SamePhase: true}
+	hit, told := map[Kind]int{}, map[Kind]int{}
+	var mu sync.Mutex
+	var group sync.WaitGroup
+	slots := make(chan struct{}, 2)
+	for seed := range n {
+		group.Add(1)
+		slots <- struct{}{}
+		go func() {
+			defer func() { <-slots; group.Done() }()
+			r := rand.New(rand.NewPCG(uint64(seed), 9))
+			b := demo.Batch{Warmer: 4*r.Float64() - 2, Stiffness: 0.95 + 0.1*r.Float64(), Filler: 0.9 + 0.2*r.Float64(), Critical: 0.9 + 0.2*r.Float64()}
+			want := map[Kind]float64{Temperature: b.Warmer, Stiffness: b.Stiffness, Loss: 1, Filler: b.Filler, Critical: b.Critical}
+			c, err := Compounds(approved(t, truth, full, 20_000+uint64(seed)), approved(t, truth.Changed(b), full, 30_000+uint64(seed)), same)
+			if err != nil {
+				t.Error(err)
+				return
+			}
+			mu.Lock()
+			defer mu.Unlock()
+			for _, v := range c.Changes {
+				if v.Determined {
+					told[v.Kind]++
+					if math.Abs(v.Value-want[v.Kind]) <= v.U95 {
+						hit[v.Kind]++
+					}
+				}
+			}
+		}()
+	}
+	group.Wait()
+	least := 0.9
+	if n < 100 {
+		least = 0.6
+	}
+	for _, k := range kinds {
+		share := float64(hit[k]) / float64(told[k])
+		t.Logf("| coverage, compound files | %s | %d | %.3f |", k, told[k], share)
+		if share < least {
+			t.Errorf("%s: %.3f of %d", k, share, told[k])
+		}
+	}
+}

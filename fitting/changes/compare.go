@@ -213,8 +213,9 @@ func Compounds(approved, other *models.Compound, settings *Settings) (*Compariso
 	if approved.ModulusKind != other.ModulusKind {
 		return nil, fmt.Errorf("one compound has %s moduli, the other %s ones", other.ModulusKind, approved.ModulusKind)
 	}
+	c.OfCompounds = true
 	lower := root(other, map[string]bool{models.ParamTemperature: s.SameThermometer, models.ParamPhase: s.SamePhase, models.ParamSpecimen: s.SameGauge})
-	var list []observation
+	var list []pair
 	strains := [2]float64{math.Inf(1), 0}
 	add := func(q models.Condition) {
 		if approved.Inside(q) != nil || other.Inside(q) != nil {
@@ -223,7 +224,7 @@ func Compounds(approved, other *models.Compound, settings *Settings) (*Compariso
 		if q.Strain > 0 {
 			strains = [2]float64{min(strains[0], q.Strain), max(strains[1], q.Strain)}
 		}
-		list = append(list, observation{q: q, ln: cmplx.Log(other.Value(q)), run: -1, specimen: -1, other: whitened(other, lower, q)})
+		list = append(list, pair{q, cmplx.Log(other.Value(q)), whitened(other, lower, q)})
 	}
 	lo := max(approved.Domain.Temperature[0], other.Domain.Temperature[0])
 	hi := min(approved.Domain.Temperature[1], other.Domain.Temperature[1])
@@ -247,9 +248,17 @@ func Compounds(approved, other *models.Compound, settings *Settings) (*Compariso
 		}
 	}
 	c.choose(strains)
-	p := priors{others: len(lower)}
-	noise := [2]float64{0.002, 0.002}
-	run := func() error { return c.solve(list, p, noise, [2]float64{1e-4, 1e-4}) }
+	// The smaller number of degrees of freedom bounds both files' intervals.
+	freedom := math.Inf(1)
+	for _, v := range []float64{float64(approved.Uncertainty.DegreesOfFreedom), float64(other.Uncertainty.DegreesOfFreedom)} {
+		if v > 0 {
+			freedom = min(freedom, v)
+		}
+	}
+	if math.IsInf(freedom, 1) {
+		freedom = 1e6
+	}
+	run := func() error { return c.project(list, freedom) }
 	if err := run(); err != nil {
 		return nil, err
 	}

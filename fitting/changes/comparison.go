@@ -55,7 +55,10 @@ type Comparison struct {
 	SigmaPhase float64 // rad
 	// Misfit is the p that the changes describe the difference as well as the approved
 	// compound meets its own measurements; NaN where its noise is not known.
-	Misfit      float64
+	Misfit float64
+	// OfCompounds: two compound files were compared; SigmaM and SigmaPhase are then what
+	// the changes leave undescribed, rms.
+	OfCompounds bool
 	Assumptions []string
 
 	approved *models.Compound

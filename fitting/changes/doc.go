@@ -28,9 +28,8 @@
 // method with Householder QR; σ_m and σ_δ are found with it, from residuals over their
 // degrees of freedom n − tr(hat matrix).
 //
-// A compound in the place of a batch gives G* on a grid of conditions inside both domains,
-// with its own parameters as unknowns with their covariance; σ is then the part of the
-// difference that the changes do not describe.
+// A compound in the place of a batch gives G* on a grid of conditions inside both domains
+// (project.go).
 //
 // # Real, and what could have been seen
 //

@@ -10,24 +10,23 @@ import (
 	"phaselag/models"
 )
 
-// observation is one measured modulus, or one of another compound's on a grid.
+// observation is one measured modulus.
 type observation struct {
 	q        models.Condition
-	ln       complex128   // ln G*
-	run      int          // of the errors of temperature; −1: none
-	specimen int          // of the factors; −1: none
-	other    []complex128 // Lᵀ∂ln G/∂p of the other compound; nil: measured
+	ln       complex128 // ln G*
+	run      int        // of the errors of temperature
+	specimen int        // of the factors
 }
 
 // priors are standard deviations; 0: the error does not exist.
 type priors struct {
 	scatter, common, geometry, phase float64
-	runs, specimens, others          int
+	runs, specimens                  int
 }
 
 // layout of the unknowns: θ, z of the approved compound, then the errors.
 type layout struct {
-	theta, z, runs, common, specimens, phase, other, n int
+	theta, z, runs, common, specimens, phase, n int
 }
 
 func (c *Comparison) layout(p priors) layout {
@@ -44,7 +43,6 @@ func (c *Comparison) layout(p priors) layout {
 	l.common = take(1, p.common > 0)
 	l.specimens = take(p.specimens, p.geometry > 0)
 	l.phase = take(1, p.phase > 0)
-	l.other = take(p.others, p.others > 0)
 	l.n = at
 	return l
 }
@@ -92,7 +90,6 @@ func (c *Comparison) solve(list []observation, p priors, noise, least [2]float64
 		prior(l.common, 1, p.common)
 		prior(l.specimens, p.specimens, p.geometry)
 		prior(l.phase, 1, p.phase)
-		prior(l.other, p.others, 1)
 		var qr mat.QR
 		qr.Factorize(a)
 		var sol mat.VecDense
@@ -186,23 +183,20 @@ func (c *Comparison) row(o observation, l layout, a *mat.Dense, i, n int, sigma 
 	for k, v := range w {
 		put(l.z+k, v)
 	}
-	if o.run >= 0 && l.runs >= 0 || l.common >= 0 {
+	if l.runs >= 0 || l.common >= 0 {
 		t := c.warmer(o.q)
-		if o.run >= 0 && l.runs >= 0 {
+		if l.runs >= 0 {
 			put(l.runs+o.run, t)
 		}
 		if l.common >= 0 {
 			put(l.common, t)
 		}
 	}
-	if o.specimen >= 0 && l.specimens >= 0 {
+	if l.specimens >= 0 {
 		put(l.specimens+o.specimen, 1)
 	}
 	if l.phase >= 0 {
 		put(l.phase, 1i)
-	}
-	for k, v := range o.other {
-		put(l.other+k, -v)
 	}
 	return o.ln - cmplx.Log(c.batch(o.q, c.theta)) - c.errorsOf(a, i, n, l, sigma)
 }

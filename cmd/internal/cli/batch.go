@@ -58,7 +58,7 @@ forgets: a correction is a new entry that names the old one.`,
 		Args: cobra.NoArgs,
 		RunE: func(cmd *cobra.Command, _ []string) error { return cmd.Help() },
 	}
-	cmd.AddCommand(a.batchAddCmd(), a.batchListCmd(), a.batchShowCmd(), a.batchCompareCmd(), a.batchReleaseCmd(), a.batchFilesCmd(true), a.batchFilesCmd(false))
+	cmd.AddCommand(a.batchAddCmd(), a.batchListCmd(), a.batchShowCmd(), a.batchCompareCmd(), a.batchReleaseCmd(), a.batchTrendCmd(), a.batchFilesCmd(true), a.batchFilesCmd(false))
 	return cmd
 }
 
