@@ -93,14 +93,21 @@ func TestFrameNotCorrected(t *testing.T) {
 	plan.Tests[1].Specimen = "pair-2"
 	files := demo.Campaign(demo.HM60(), plan, 1)
 	both := files.Spoil("isotherms.csv", 5, demo.SoftFrame(1e7, piece)).Spoil("temperature-sweep.csv", 5, demo.SoftFrame(1e7, plan.Specimens[1]))
-	for _, f := range frameNotCorrected(read(t, plan, both)) {
+	list := frameNotCorrected(read(t, plan, both))
+	if len(list) != 2 {
+		t.Errorf("%d findings for two pieces beside a soft frame", len(list))
+	}
+	for _, f := range list {
 		if f.Severity != data.Severe || !strings.Contains(f.Evidence, "the same") {
 			t.Errorf("%+v", f)
 		}
 	}
 	// The same modulus on both would be a glass.
 	same := files.Spoil("isotherms.csv", 5, demo.SoftFrame(1e7, piece)).Spoil("temperature-sweep.csv", 5, demo.SoftFrame(2e7, plan.Specimens[1]))
-	for _, f := range frameNotCorrected(read(t, plan, same)) {
+	if list = frameNotCorrected(read(t, plan, same)); len(list) != 2 {
+		t.Errorf("%d findings for two pieces with one plateau", len(list))
+	}
+	for _, f := range list {
 		if f.Severity == data.Severe {
 			t.Errorf("%+v", f)
 		}
