@@ -3,6 +3,7 @@ package cli
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"github.com/spf13/cobra"
 
@@ -10,6 +11,7 @@ import (
 	"phaselag/models"
 	"phaselag/models/mount"
 	"phaselag/reports"
+	"phaselag/reports/figure"
 	"phaselag/reports/table"
 )
 
@@ -19,6 +21,7 @@ type stiffnessOptions struct {
 	reference                         [2]string
 	extrapolate                       bool
 	static                            staticOptions
+	pictures                          string
 	format                            string
 }
 
@@ -49,8 +52,44 @@ that people depend on stays with a qualified engineer and the codes in force.`,
 	cmd.Flags().StringVar(&o.reference[1], "reference-temperature", "", "temperature of the reference condition (default: that of a measured element, else the compound's reference temperature)")
 	cmd.Flags().BoolVar(&o.extrapolate, "extrapolate", false, "answer outside the domain, marked")
 	o.static.flags(cmd)
+	cmd.Flags().StringVar(&o.pictures, "pictures", "", "write NAME-curves.svg, NAME-stiffness-map.svg and NAME-loss-map.svg over the span of --frequency and --temperature")
 	formatFlag(cmd, &o.format)
 	return cmd
+}
+
+// draw writes the mount's pictures.
+func (a *app) draw(c *models.Compound, m *mount.Mount, o stiffnessOptions, f, T, x []float64) error {
+	where := reports.AnySpread()
+	if lo, hi := slices.Min(f), slices.Max(f); lo < hi {
+		where.Low, where.High = lo, hi
+	}
+	if lo, hi := slices.Min(T), slices.Max(T); lo < hi {
+		where.Cold, where.Warm = lo, hi
+	}
+	where.Displacement = x[0]
+	for _, v := range []struct {
+		name string
+		make func() (figure.Figure, string, error)
+	}{
+		{"curves", func() (figure.Figure, string, error) { return reports.StiffnessCurves(c, m, T, where) }},
+		{"stiffness-map", func() (figure.Figure, string, error) { return reports.StiffnessMap(c, m, reports.MapStiffness, where) }},
+		{"loss-map", func() (figure.Figure, string, error) { return reports.StiffnessMap(c, m, reports.MapLossFactor, where) }},
+	} {
+		fig, caption, err := v.make()
+		if err != nil {
+			return err
+		}
+		svg, err := figure.SVG(fig)
+		if err != nil {
+			return err
+		}
+		name := o.pictures + "-" + v.name + ".svg"
+		if err := writeWhole(name, svg); err != nil {
+			return err
+		}
+		fmt.Fprintf(a.err, "written: %s: %s\n", name, caption)
+	}
+	return nil
 }
 
 // staticOptions choose where a static modulus comes from if no test has it.
@@ -133,6 +172,11 @@ func (a *app) stiffness(o stiffnessOptions) error {
 			for _, hz := range f {
 				q = append(q, reports.StiffnessQuery{Frequency: hz, Temperature: t, Displacement: v})
 			}
+		}
+	}
+	if o.pictures != "" {
+		if err := a.draw(c, m, o, f, T, x); err != nil {
+			return err
 		}
 	}
 	t, outside, err := reports.StiffnessTable(c, m, q, ref, o.extrapolate)
