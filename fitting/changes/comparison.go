@@ -5,6 +5,7 @@ import (
 	"math"
 	"math/cmplx"
 	"sort"
+	"strings"
 
 	"gonum.org/v1/gonum/stat/distuv"
 
@@ -127,6 +128,21 @@ func (c *Comparison) Found(name string) (Change, bool) {
 		}
 	}
 	return Change{}, false
+}
+
+// Summary lists the changes that could be told, in one line.
+func (c *Comparison) Summary() string {
+	var parts []string
+	for _, v := range c.Changes {
+		switch {
+		case !v.Determined:
+		case v.Kind == Temperature:
+			parts = append(parts, fmt.Sprintf("%s %.2g ± %.2g K", v.Kind, v.Value, v.U95))
+		default:
+			parts = append(parts, fmt.Sprintf("%s %.3f ± %.2g", v.Kind, v.Value, v.U95))
+		}
+	}
+	return strings.Join(parts, ", ")
 }
 
 // Any reports whether a change is real.

@@ -12,13 +12,14 @@ import (
 	"phaselag/fitting/changes"
 	"phaselag/models"
 	"phaselag/reports"
+	"phaselag/reports/figure"
 	"phaselag/reports/table"
 )
 
 type compareOptions struct {
 	registerOptions
 	sharedOptions
-	with string
+	with, picture string
 }
 
 // sharedOptions say what a batch and its reference have in common.
@@ -63,6 +64,7 @@ over temperature at one frequency, are compared by their loss peaks.`,
 	o.registerOptions.flags(cmd)
 	o.sharedOptions.flags(cmd)
 	cmd.Flags().StringVar(&o.with, "with", "", "reference: compound file, folder of a result, registered batch, or campaign (required)")
+	cmd.Flags().StringVar(&o.picture, "picture", "", "write both as this SVG file")
 	return cmd
 }
 
@@ -105,11 +107,23 @@ func (a *app) compare(batch string, o compareOptions) error {
 	if err != nil {
 		return err
 	}
-	return a.changed(c, o.format)
+	return a.changed(c, approved, campaign, o)
 }
 
-// changed prints a comparison.
-func (a *app) changed(c *changes.Comparison, format string) error {
+// changed prints a comparison and draws it.
+func (a *app) changed(c *changes.Comparison, approved *models.Compound, campaign *data.Campaign, o compareOptions) error {
+	format := o.format
+	if o.picture != "" {
+		f, caption := reports.ChangesFigure(c, approved, campaign)
+		svg, err := figure.SVG(f)
+		if err != nil {
+			return err
+		}
+		if err := writeWhole(o.picture, svg); err != nil {
+			return err
+		}
+		fmt.Fprintf(a.err, "written: %s: %s\n", o.picture, caption)
+	}
 	if err := a.answer(reports.ChangesTable(c), format); err != nil {
 		return err
 	}
@@ -146,7 +160,7 @@ func (a *app) comparePeaks(batch, reference *data.Campaign, o compareOptions) er
 		if err != nil {
 			return err
 		}
-		return a.changed(c, o.format)
+		return a.changed(c, r[0].Compound, batch, o)
 	}
 	s, f, err := fitting.LossPeaks(r[0], r[1])
 	if err != nil {
