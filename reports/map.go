@@ -86,6 +86,12 @@ type mapColumn struct {
 	low, top float64
 }
 
+// kind says how the domain ends in a column of the map from y0 to y1: not there, cut off
+// below, cut off above.
+func (c mapColumn) kind(y0, y1 float64) [3]bool {
+	return [3]bool{math.IsNaN(c.low), c.low > y0, c.top < y1}
+}
+
 // StiffnessMap draws the dynamic stiffness |K*| or the loss factor of a mount over
 // temperature and frequency as steps of shade with lines of equal value, which carry
 // their numbers. What lies outside the compound's domain is hatched. It returns an error
@@ -135,12 +141,12 @@ func StiffnessMap(c *models.Compound, m *mount.Mount, quantity MapQuantity, wher
 	for i := range mapColumns + 1 {
 		T := celsius(s.Cold + (s.Warm-s.Cold)*float64(i)/mapColumns)
 		next := column(T)
-		if n := len(grid); n > 0 && math.IsNaN(grid[n-1].low) != math.IsNaN(next.low) {
-			// Two more columns where the domain begins or ends.
+		if n := len(grid); n > 0 && grid[n-1].kind(y0, y1) != next.kind(y0, y1) {
+			// Two more columns where the domain begins or ends, or its border leaves the map.
 			a, b := grid[n-1], next
 			for b.T-a.T > 1e-6 {
 				mid := column(a.T + (b.T-a.T)/2)
-				if math.IsNaN(mid.low) == math.IsNaN(a.low) {
+				if mid.kind(y0, y1) == grid[n-1].kind(y0, y1) {
 					a = mid
 				} else {
 					b = mid
@@ -220,6 +226,11 @@ func insideStretch(ys []float64, in []bool, inside func(float64) bool) (low, top
 // mapPanel fills a panel with steps, lines and hatch; outside says whether anything is
 // hatched.
 func mapPanel(grid []mapColumn, ys []float64, lo, hi float64) (p figure.Panel, outside bool) {
+	// Over decades the logarithm is the straighter of the two between nodes.
+	scale := func(v float64) float64 { return v }
+	if lo > 0 && hi/lo > 6 {
+		scale = math.Log10
+	}
 	xs := make([]float64, len(grid))
 	z := make([][]float64, len(grid))
 	for i, col := range grid {
@@ -230,7 +241,7 @@ func mapPanel(grid []mapColumn, ys []float64, lo, hi float64) (p figure.Panel, o
 			if !drawable(v) {
 				v = lo
 			}
-			z[i][j] = math.Max(lo/10, math.Min(10*hi, v))
+			z[i][j] = scale(math.Max(lo/10, math.Min(10*hi, v)))
 		}
 	}
 	power := func(ly []float64) []float64 {
@@ -248,7 +259,7 @@ func mapPanel(grid []mapColumn, ys []float64, lo, hi float64) (p figure.Panel, o
 	for k, level := range levels {
 		area := figure.Area{Colour: shades[k+1]}
 		line := figure.Series{Mark: minusSign(short(level)), Line: figure.Solid, Width: 0.5}
-		for _, r := range contours(xs, ys, z, level) {
+		for _, r := range contours(xs, ys, z, scale(level)) {
 			area.Rings = append(area.Rings, ring(r.x, r.y))
 			for _, l := range r.lines {
 				for _, part := range cutToDomain(grid, l[0], l[1]) {

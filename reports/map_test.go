@@ -90,6 +90,43 @@ func TestMapOfParts(t *testing.T) {
 	}
 }
 
+// At the isotherms' own strain the map reaches to the domain's corner, cut off by the
+// highest reduced frequency: there the border of the hatch is f = f_R/a_T. A torsional
+// bush shows N·m/rad.
+func TestMapAtTheBorder(t *testing.T) {
+	c := damper(t)
+	m := readMount(t, "mount: invented bush\nelements:\n  bush: {shape: bush, inner_diameter: 12 mm, outer_diameter: 36 mm, length: 40 mm}\narrangement: bush\ndirection: torsional\nexcitation: {angle: 0.05 deg}\n")
+	s := AnySpread()
+	s.Low, s.High = 0.5, 2000
+	fig, caption, err := StiffnessMap(c, m, MapStiffness, s)
+	if err != nil {
+		t.Fatal(err)
+	}
+	look(t, "map-border", fig)
+	if !strings.Contains(fig.Panels[0].Title, "N·m/rad") || !strings.Contains(caption, "at 0.05 ° (zero to peak)") {
+		t.Errorf("%s: %s", fig.Panels[0].Title, caption)
+	}
+	checked := 0
+	for _, border := range fig.Panels[0].Series {
+		if border.Mark != "" {
+			continue
+		}
+		for i, T := range border.X {
+			if f := border.Y[i]; f > 0.6 && f < 1900 {
+				fr := f * math.Pow(10, c.LogShift(T+zeroC))
+				for _, end := range c.Domain.ReducedFrequency {
+					if math.Abs(fr/end-1) < 1e-6 {
+						checked++
+					}
+				}
+			}
+		}
+	}
+	if checked < 5 {
+		t.Errorf("%d points of the border lie where they should", checked)
+	}
+}
+
 // The curves are n·|G*|A/t with the relative band of the compound; production by the
 // dashed lines, beside and not within the bands.
 func TestStiffnessCurves(t *testing.T) {
@@ -126,6 +163,16 @@ func TestStiffnessCurves(t *testing.T) {
 		}
 		if !(top[7].Y[i] < top[6].Low[i] && top[8].Y[i] > top[6].High[i]) {
 			t.Errorf("%g Hz: production from %g to %g, tested %g", f, top[7].Y[i], top[8].Y[i], top[6].Y[i])
+		}
+	}
+}
+
+func BenchmarkStiffnessMap(b *testing.B) {
+	t := &testing.T{}
+	c, m := damper(t), readMount(t, strings.Replace(testPad, "0.3 mm", "0.02 mm", 1))
+	for b.Loop() {
+		if _, _, err := StiffnessMap(c, m, MapStiffness, AnySpread()); err != nil {
+			b.Fatal(err)
 		}
 	}
 }

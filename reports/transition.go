@@ -164,7 +164,7 @@ func transitionFigure(c *models.Compound) (out namedFigure, ok bool) {
 	case len(texts) > 0:
 		caption += fmt.Sprintf(" Glass transition, read by definition: %s; intervals: 95 %%, where the slope of the curve may be zero.", strings.Join(texts, "; "))
 	case ok:
-		caption += " No glass transition is read: neither tan δ nor " + s + "″ has its peak inside the domain."
+		caption += " No glass transition is read: neither tan δ nor " + s + "″ has a peak that lies inside the domain with its interval."
 	}
 	return namedFigure{"temperature-curves", caption, figure.Figure{Width: 170, Height: 150, Columns: 1, Shared: true, Panels: panels}}, ok
 }

@@ -15,6 +15,8 @@
 //   - A NaN coordinate is a gap; on a logarithmic axis so is anything that is
 //     not positive. Infinite values are treated like NaN. Slices of unequal
 //     length are read up to the shortest.
+//   - A line can carry its name in a gap of itself ([Series].Mark), so that contours and
+//     curves are read without a legend and without colour; [Area] fills or hatches.
 //   - Colours are those of Okabe and Ito, which people with colour-deficient
 //     sight can tell apart; dash and glyph say the same a second time. Bands
 //     are opaque pale tints, which look the same in every format.
