@@ -13,7 +13,8 @@ import (
 type columnSet struct {
 	frequency, temperature, strain, time int
 	a, b                                 int // of the pair of moduli or stiffnesses, or the modulus
-	force, displacement                  int // amplitudes
+	force, displacement                  int // amplitudes that make the modulus
+	checkForce, checkDisplacement        int // amplitudes beside moduli
 	stiff                                bool
 	pair                                 *pair
 	lossFactor, phase, viscosity         int // stated beside the pair
@@ -24,7 +25,7 @@ type columnSet struct {
 
 // columnsOf finds the columns that the kind of test needs.
 func (p *plan) columnsOf(t *table.Table) (cols columnSet, err error) {
-	cols = columnSet{frequency: -1, temperature: -1, strain: -1, time: -1, a: -1, b: -1, force: -1, displacement: -1, lossFactor: -1, phase: -1, viscosity: -1, set: -1}
+	cols = columnSet{frequency: -1, temperature: -1, strain: -1, time: -1, a: -1, b: -1, force: -1, displacement: -1, lossFactor: -1, phase: -1, viscosity: -1, set: -1, checkForce: -1, checkDisplacement: -1}
 	for _, f := range p.rows {
 		i := headingColumn(t, f.heading)
 		if i < 0 {
@@ -67,7 +68,9 @@ func (p *plan) columnsOf(t *table.Table) (cols columnSet, err error) {
 			err = p.lack(t, "modulus", table.StaticModulus)
 		}
 	default:
-		err = p.oscillatoryColumns(t, &cols)
+		if err = p.oscillatoryColumns(t, &cols); err == nil {
+			p.checkColumns(t, &cols)
+		}
 	}
 	return cols, err
 }
@@ -247,7 +250,7 @@ func (p *plan) modulusOf(t *table.Table, i int) error {
 func (p *plan) describeColumns(t *table.Table, written string, cols columnSet) {
 	for i, col := range t.Columns {
 		usedHere := false
-		for _, j := range []int{cols.frequency, cols.temperature, cols.strain, cols.time, cols.a, cols.b, cols.force, cols.displacement, cols.lossFactor, cols.phase, cols.viscosity, cols.set} {
+		for _, j := range []int{cols.frequency, cols.temperature, cols.strain, cols.time, cols.a, cols.b, cols.force, cols.displacement, cols.lossFactor, cols.phase, cols.viscosity, cols.set, cols.checkForce, cols.checkDisplacement} {
 			usedHere = usedHere || i == j
 		}
 		if usedHere {

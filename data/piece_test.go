@@ -189,3 +189,41 @@ func TestTorqueTable(t *testing.T) {
 		t.Errorf("strain %g, at the rim %g", p.Strain, rim)
 	}
 }
+
+// Force and displacement beside moduli are a second source: double shear makes
+// G = K h/2A of them (closed form). What agrees raises nothing; E for G, and peak to peak
+// for single amplitudes, are named with both sources; what has no name is a doubt.
+func TestSecondSource(t *testing.T) {
+	const piece = "specimens: {pair: {shape: double shear, diameter: 25 mm, thickness: 5 mm}}\n"
+	area := math.Pi * 12.5 * 12.5 // mm²
+	write := func(modulus, strain float64) string {
+		b := "f / Hz,T / °C,strain / %,F / N,x / mm,G' / MPa,G'' / MPa\n"
+		for i := range 6 {
+			x := 0.05 + 0.01*float64(i)
+			g := 1.2 + 0.01*float64(i)
+			f := g * 2 * area / 5 * x
+			b += fmt.Sprintf("%d,23,%.6g,%.6g,%.6g,%.6g,%.6g\n", i+1, 100*x/5*strain, f, x, g*modulus*math.Cos(0.1), g*modulus*math.Sin(0.1))
+		}
+		return b
+	}
+	for _, v := range []struct {
+		modulus, strain float64
+		want            string
+		severity        Severity
+	}{
+		{1, 1, "", ""}, {1.05, 1.05, "", ""},
+		{3, 1, "modulus-contradicted-by-force", Severe}, {1, 2, "strain-contradicted-by-displacement", Severe},
+		{1.4, 1, "modulus-contradicted-by-force", Doubt}, {1, 0.5, "strain-contradicted-by-displacement", Severe},
+	} {
+		c := mustOpen(t, piece+"tests: [{name: a, kind: frequency sweep, file: a.csv, deformation: shear, specimen: pair}]\n", "a.csv", write(v.modulus, v.strain))
+		got, severity := "", Severity("")
+		for _, f := range c.Findings {
+			if strings.Contains(f.Code, "contradicted") {
+				got, severity = f.Code, f.Severity
+			}
+		}
+		if got != v.want || severity != v.severity {
+			t.Errorf("moduli × %g, strains × %g: %q %s, should be %q %s", v.modulus, v.strain, got, severity, v.want, v.severity)
+		}
+	}
+}

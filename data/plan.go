@@ -49,6 +49,7 @@ type raw struct {
 	block   int // of its file, counted through all files of the test
 	segment string
 	set     float64 // temperature as it was set, K; NaN: not stated
+	second  second
 }
 
 func newPlan() *plan {
@@ -110,6 +111,7 @@ func (p *plan) read(s *source, c *Campaign) error {
 		p.concludeSignals(c)
 	}
 	p.reportCorrections(c)
+	p.compareSources(c)
 	if !p.amplitudeStated && !p.amplitudeRead && p.signals == nil {
 		for _, pt := range p.points {
 			if !math.IsNaN(pt.Strain) && p.Kind != Relaxation {

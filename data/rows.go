@@ -129,6 +129,7 @@ func (p *plan) addPoint(t *table.Table, row table.Row, cols columnSet, written s
 		}
 		pt.Storage, pt.Loss = cols.pair.complex(a, b)
 		pt.Reason = modulusFault(pt.Storage, pt.Loss)
+		pt.second = p.secondOf(t, cols, get)
 		if pt.Reason == "" {
 			p.throughShape(&pt.Point)
 		}
