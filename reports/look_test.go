@@ -11,9 +11,13 @@ import (
 	"path/filepath"
 	"regexp"
 	"strings"
+	"sync"
 	"testing"
 
+	"phaselag/data"
+	"phaselag/data/demo"
 	"phaselag/data/unit"
+	"phaselag/fitting"
 	"phaselag/models"
 	"phaselag/reports/figure"
 )
@@ -54,6 +58,28 @@ func look(t *testing.T, name string, f figure.Figure) string {
 		}
 	}
 	return text
+}
+
+var filledOnce = sync.OnceValue(func() *models.Compound {
+	c, err := data.OpenFS(demo.Campaign(demo.HM60(), demo.HM60Plan(), 3), "campaign.yaml")
+	if err != nil {
+		return nil
+	}
+	r, err := fitting.Characterize(c, &fitting.Settings{Replicates: 19})
+	if err != nil {
+		return nil
+	}
+	return r.Compound
+})
+
+// filled is the compound of a simulated campaign, made once.
+func filled(t *testing.T) *models.Compound {
+	t.Helper()
+	c := filledOnce()
+	if c == nil {
+		t.Fatal("the simulated campaign gives no compound")
+	}
+	return c
 }
 
 // damper is an invented unfilled compound whose glass transition lies inside its

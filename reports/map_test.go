@@ -15,7 +15,7 @@ const testPad = "mount: invented foot\nelements:\n  pad: {shape: shear pad, area
 // Every line of equal value has its value by the stiffness of a shear pad, n·G*A/t, and
 // lies inside the domain; one point over the border is hatched.
 func TestStiffnessMap(t *testing.T) {
-	c := demoResult(t, 3).Compound
+	c := filled(t)
 	m := readMount(t, testPad)
 	for quantity, name := range map[MapQuantity]string{MapStiffness: "map-stiffness", MapLossFactor: "map-loss-factor"} {
 		fig, caption, err := StiffnessMap(c, m, quantity, AnySpread())
@@ -63,7 +63,7 @@ func TestStiffnessMap(t *testing.T) {
 
 // Where all lies inside nothing is hatched, and where nothing does there is no map.
 func TestMapOfParts(t *testing.T) {
-	c := demoResult(t, 3).Compound
+	c := filled(t)
 	m := readMount(t, testPad)
 	s := AnySpread()
 	s.Cold, s.Warm, s.Low, s.High = 270, 310, 4, 30
@@ -130,7 +130,7 @@ func TestMapAtTheBorder(t *testing.T) {
 // The curves are n·|G*|A/t with the relative band of the compound; production by the
 // dashed lines, beside and not within the bands.
 func TestStiffnessCurves(t *testing.T) {
-	c := demoResult(t, 3).Compound
+	c := filled(t)
 	in := *c
 	in.Compound.Hardness = "60 IRHD"
 	c, err := models.New(in)

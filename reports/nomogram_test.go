@@ -71,7 +71,7 @@ func between(s figure.Series, x float64) float64 {
 
 // The filler's part does not shift: the caption says what that costs.
 func TestNomogramOfFilledCompound(t *testing.T) {
-	n, ok := nomogram(demoResult(t, 3).Compound)
+	n, ok := nomogram(filled(t))
 	if !ok || !strings.Contains(n.caption, "misses the compound by up to") {
 		t.Errorf("%v: %s", ok, n.caption)
 	}

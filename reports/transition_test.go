@@ -6,6 +6,7 @@ import (
 	"testing"
 
 	"phaselag/models"
+	"phaselag/reports/figure"
 )
 
 func TestTransitionFigure(t *testing.T) {
@@ -38,7 +39,7 @@ func TestTransitionFigure(t *testing.T) {
 
 // A natural rubber above its glass transition has none to read, and the figure says so.
 func TestTransitionOutsideTheDomain(t *testing.T) {
-	c := demoResult(t, 3).Compound
+	c := filled(t)
 	n, ok := transitionFigure(c)
 	if !ok || !strings.Contains(n.caption, "No glass transition is read") {
 		t.Errorf("%v: %s", ok, n.caption)
@@ -79,6 +80,13 @@ func TestTransitionTable(t *testing.T) {
 	T := func(i int) float64 { return tab.Rows[i][2].Float() }
 	if !(T(2) < T(0) && T(3) < T(1) && T(0) < T(1) && T(2) < T(3)) {
 		t.Errorf("peaks at %g, %g; %g, %g °C", T(0), T(1), T(2), T(3))
+	}
+	// The datasheet prints what there is to read, and nothing where there is nothing.
+	if blocks := transitionBlocks(c); len(blocks) != 1 || len(blocks[0].(figure.Grid).Rows) != 6 {
+		t.Errorf("%v", blocks)
+	}
+	if blocks := transitionBlocks(filled(t)); blocks != nil {
+		t.Errorf("%v", blocks)
 	}
 	if _, err := TransitionTable(c, []float64{-1}); err == nil {
 		t.Error("a frequency that is none, and no error")
