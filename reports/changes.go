@@ -87,18 +87,7 @@ func FoundBy(c *changes.Comparison, l data.Limit) Found {
 	if err != nil {
 		return notFound("%v", err)
 	}
-	f := Found{Freedom: c.Freedom}
-	switch l.Property {
-	case data.StorageModulus:
-		f.Value, f.U95 = m.Storage, m.StorageU95
-	case data.LossModulus:
-		f.Value, f.U95 = m.Loss, m.LossU95
-	case data.ComplexModulus:
-		f.Value, f.U95 = m.Magnitude, m.MagnitudeU95
-	case data.LossFactor:
-		f.Value, f.U95 = m.LossFactor, m.LossFactorU95
-	}
-	return f
+	return pick(m, l.Property, c.Freedom)
 }
 
 // ReleaseByPoints is a release by a short test that was compared with the approved

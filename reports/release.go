@@ -35,8 +35,13 @@ func ValueOf(c *models.Compound, l data.Limit) Found {
 	case err != nil:
 		return notFound("%v", err)
 	}
-	f := Found{Freedom: float64(c.Uncertainty.DegreesOfFreedom)}
-	switch l.Property {
+	return pick(m, l.Property, float64(c.Uncertainty.DegreesOfFreedom))
+}
+
+// pick takes a property out of a modulus.
+func pick(m models.Modulus, p data.Property, freedom float64) Found {
+	f := Found{Freedom: freedom}
+	switch p {
 	case data.StorageModulus:
 		f.Value, f.U95 = m.Storage, m.StorageU95
 	case data.LossModulus:
@@ -46,7 +51,7 @@ func ValueOf(c *models.Compound, l data.Limit) Found {
 	case data.LossFactor:
 		f.Value, f.U95 = m.LossFactor, m.LossFactorU95
 	default:
-		return notFound("a %s needs an approved compound to compare with", l.Property)
+		return notFound("a %s needs an approved compound to compare with", p)
 	}
 	return f
 }
