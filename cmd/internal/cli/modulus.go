@@ -15,7 +15,7 @@ import (
 type modulusOptions struct {
 	file                           string
 	frequency, temperature, strain string
-	extrapolate                    bool
+	extrapolate, curves            bool
 	format                         string
 }
 
@@ -40,6 +40,7 @@ allowed value, and the exit code is 1; --extrapolate answers and marks it.`,
 	conditionFlags(cmd, &o.frequency, &o.temperature)
 	cmd.Flags().StringVar(&o.strain, "strain", "", "strain amplitudes, zero to peak (default: the isotherms' own)")
 	cmd.Flags().BoolVar(&o.extrapolate, "extrapolate", false, "answer outside the domain, marked")
+	curvesFlag(cmd, &o.curves)
 	formatFlag(cmd, &o.format)
 	return cmd
 }
@@ -117,6 +118,9 @@ func (a *app) modulus(o modulusOptions) error {
 		t.Assumptions = append(t.Assumptions, reports.OwnStrainNote(c))
 	}
 	if err := a.answer(t, o.format); err != nil {
+		return err
+	}
+	if err := a.plot(o.curves, o.format, func(w int) error { return reports.PlotModulus(a.out, c, q, w) }); err != nil {
 		return err
 	}
 	if outside > 0 {

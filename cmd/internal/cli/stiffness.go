@@ -13,6 +13,7 @@ import (
 	"phaselag/reports"
 	"phaselag/reports/figure"
 	"phaselag/reports/table"
+	"phaselag/reports/term"
 )
 
 type stiffnessOptions struct {
@@ -22,6 +23,7 @@ type stiffnessOptions struct {
 	extrapolate                       bool
 	static                            staticOptions
 	pictures                          string
+	curves                            bool
 	format                            string
 }
 
@@ -53,12 +55,13 @@ that people depend on stays with a qualified engineer and the codes in force.`,
 	cmd.Flags().BoolVar(&o.extrapolate, "extrapolate", false, "answer outside the domain, marked")
 	o.static.flags(cmd)
 	cmd.Flags().StringVar(&o.pictures, "pictures", "", "write NAME-curves.svg, NAME-stiffness-map.svg and NAME-loss-map.svg over the span of --frequency and --temperature")
+	curvesFlag(cmd, &o.curves)
 	formatFlag(cmd, &o.format)
 	return cmd
 }
 
-// draw writes the mount's pictures.
-func (a *app) draw(c *models.Compound, m *mount.Mount, o stiffnessOptions, f, T, x []float64) error {
+// spanOf is the span of the asked conditions, at the first amplitude.
+func spanOf(f, T, x []float64) reports.Spread {
 	where := reports.AnySpread()
 	if lo, hi := slices.Min(f), slices.Max(f); lo < hi {
 		where.Low, where.High = lo, hi
@@ -67,6 +70,12 @@ func (a *app) draw(c *models.Compound, m *mount.Mount, o stiffnessOptions, f, T,
 		where.Cold, where.Warm = lo, hi
 	}
 	where.Displacement = x[0]
+	return where
+}
+
+// draw writes the mount's pictures.
+func (a *app) draw(c *models.Compound, m *mount.Mount, o stiffnessOptions, f, T, x []float64) error {
+	where := spanOf(f, T, x)
 	for _, v := range []struct {
 		name string
 		make func() (figure.Figure, string, error)
@@ -194,6 +203,12 @@ func (a *app) stiffness(o stiffnessOptions) error {
 		if err := a.heat(c, m, q); err != nil {
 			return err
 		}
+	}
+	err = a.plot(o.curves, o.format, func(w int) error {
+		return reports.PlotStiffness(a.out, c, m, reports.MapStiffness, T[:min(len(T), term.MostSeries)], spanOf(f, T, x), w)
+	})
+	if err != nil {
+		return err
 	}
 	if outside > 0 {
 		return errNo

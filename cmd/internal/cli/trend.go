@@ -22,7 +22,7 @@ type trendOptions struct {
 	lower, upper                  string
 	base                          int
 	patterns, picture             string
-	known                         bool
+	known, curves                 bool
 }
 
 func (a *app) batchTrendCmd() *cobra.Command {
@@ -54,6 +54,7 @@ given with its interval. Entries that were corrected do not count.
 	cmd.Flags().StringVar(&o.lower, "lower", "", "lower limit of the property, for the capability")
 	cmd.Flags().StringVar(&o.upper, "upper", "", "upper limit of the property")
 	cmd.Flags().StringVar(&o.picture, "picture", "", "write the chart as this SVG file")
+	curvesFlag(cmd, &o.curves)
 	cmd.Flags().BoolVar(&o.known, "list", false, "list the properties and conditions in the register")
 	return cmd
 }
@@ -110,6 +111,9 @@ func (a *app) trend(o trendOptions) error {
 		shown = charts[1]
 	}
 	if err := a.answer(reports.ControlTable(name, points[0].Unit, shown), o.format); err != nil {
+		return err
+	}
+	if err := a.plot(o.curves, o.format, func(w int) error { return reports.PlotControl(a.out, name, points[0].Unit, shown, w) }); err != nil {
 		return err
 	}
 	if err := a.capability(o, batches, points); err != nil {
