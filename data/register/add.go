@@ -36,8 +36,8 @@ func (r *Register) Add(ctx context.Context, e *Entry) (int64, error) {
 		return 0, r.fault("adding batch "+quoted(c.Batch), err)
 	}
 	if err := tx.Commit(); err != nil {
-		if r.kind.judge(err).unreached {
-			return 0, r.refusal(fmt.Sprintf("the connection was lost while batch %s was confirmed", quoted(c.Batch)),
+		if r.kind.judge(err).unreached || ctx.Err() != nil {
+			return 0, r.refusal(fmt.Sprintf("adding batch %s was cut off at the very end", quoted(c.Batch)),
 				"it may be there or not: list the batch, and add it again if it is not", err)
 		}
 		return 0, r.fault("adding batch "+quoted(c.Batch), err)
@@ -48,7 +48,22 @@ func (r *Register) Add(ctx context.Context, e *Entry) (int64, error) {
 // writing is a transaction that no other writer can enter.
 type writing struct {
 	*sql.Tx
-	r *Register
+	r        *Register
+	prepared map[string]*sql.Stmt // an import says the same thing many times
+}
+
+// do runs a statement whose placeholders are ?.
+func (tx *writing) do(ctx context.Context, q string, args ...any) error {
+	s := tx.prepared[q]
+	if s == nil {
+		var err error
+		if s, err = tx.PrepareContext(ctx, tx.r.kind.query(q)); err != nil {
+			return err
+		}
+		tx.prepared[q] = s // closed with the transaction
+	}
+	_, err := s.ExecContext(ctx, args...)
+	return err
 }
 
 func (r *Register) writing(ctx context.Context) (*writing, error) {
@@ -60,7 +75,7 @@ func (r *Register) writing(ctx context.Context) (*writing, error) {
 		tx.Rollback()
 		return nil, err
 	}
-	return &writing{tx, r}, nil
+	return &writing{tx, r, map[string]*sql.Stmt{}}, nil
 }
 
 // number asks for one number; 0 where there is none.
@@ -132,16 +147,12 @@ const valuesAtOnce = 64
 // insert writes a checked entry with its number.
 func (tx *writing) insert(ctx context.Context, e *Entry) error {
 	h := headOf(e)
-	do := func(q string, args ...any) error {
-		_, err := tx.ExecContext(ctx, tx.r.kind.query(q), args...)
-		return err
-	}
-	err := do("INSERT INTO register_entry ("+headColumns+") VALUES (?"+strings.Repeat(", ?", 13)+")",
+	err := tx.do(ctx, "INSERT INTO register_entry ("+headColumns+") VALUES (?"+strings.Repeat(", ?", 13)+")",
 		h.ID, h.Batch, h.Compound, h.Tested, h.Added, h.Who, h.Corrects, h.Why, h.SHA256, h.Size, h.inputs, int64(h.Values), h.valuesSum, h.sum)
 	if err != nil {
 		return err
 	}
-	if err := do("INSERT INTO register_file (entry, bytes) VALUES (?, ?)", h.ID, e.File); err != nil {
+	if err := tx.do(ctx, "INSERT INTO register_file (entry, bytes) VALUES (?, ?)", h.ID, e.File); err != nil {
 		return err
 	}
 	for from := 0; from < len(e.Values); from += valuesAtOnce {
@@ -152,7 +163,7 @@ func (tx *writing) insert(ctx context.Context, e *Entry) error {
 			args = append(args, h.ID, int64(from+i), v.Name, v.Condition, stored(v.Value), stored(v.U95), v.Unit, mark(h.ID, from+i, v))
 		}
 		rows := strings.Repeat(", (?, ?, ?, ?, ?, ?, ?, ?)", len(some))[2:]
-		if err := do("INSERT INTO register_value ("+valueColumns+") VALUES "+rows, args...); err != nil {
+		if err := tx.do(ctx, "INSERT INTO register_value ("+valueColumns+") VALUES "+rows, args...); err != nil {
 			return err
 		}
 	}

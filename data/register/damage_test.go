@@ -171,7 +171,7 @@ func TestDestroyedFile(t *testing.T) {
 // Whatever page of the file is destroyed: no panic, nothing false, and what is
 // not given is named or the error is clear.
 func TestDestroyedPages(t *testing.T) {
-	const n = 120
+	const n = 60
 	where, sound := closed(t, n)
 	const page = 4096
 	ctx := context.Background()

@@ -37,7 +37,9 @@
 // Several processes may read and add at once. A writer waits up to ten seconds
 // for another. An entry is written in one transaction, and once Add has returned
 // it survives the end of the process and, as far as the disk keeps its promises,
-// of the power.
+// of the power. While a program has the file open, SQLite keeps two more files
+// beside it (-wal and -shm) that belong to it: make a backup by Export, or copy
+// all three together, or copy the one when nothing has it open.
 //
 // # Plain files
 //

@@ -10,6 +10,7 @@ import (
 	"os"
 	"path"
 	"path/filepath"
+	"strconv"
 
 	"phaselag/data/place"
 )
@@ -85,14 +86,13 @@ func (x *exported) entries() iter.Seq[*Entry] {
 			return
 		}
 		for _, d := range all {
-			if !d.IsDir() {
-				continue // files that somebody put beside
+			id, err := strconv.ParseInt(d.Name(), 10, 64)
+			if err != nil || !d.IsDir() {
+				continue // something that was put beside
 			}
 			x.folders++
 			e, err := x.entry(d.Name())
 			if err != nil {
-				var id int64
-				fmt.Sscanf(d.Name(), "%d", &id)
 				x.damaged = append(x.damaged, Damage{ID: id, What: err.Error()})
 				continue
 			}

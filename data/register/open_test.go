@@ -161,8 +161,7 @@ func TestOpenWhatIsNoRegister(t *testing.T) {
 	}
 }
 
-// A register in a folder where nothing may be written can still be read? SQLite
-// needs its write-ahead files beside it, so the message has to say so.
+// A file that may not be written says so.
 func TestReadOnlyFile(t *testing.T) {
 	if os.Geteuid() == 0 {
 		t.Skip("root may write everywhere")
@@ -174,9 +173,51 @@ func TestReadOnlyFile(t *testing.T) {
 	r, err := Open(where)
 	if err == nil {
 		defer r.Close()
+		if _, err := r.Get(context.Background(), 1); err != nil {
+			t.Error(err)
+		}
 		_, err = r.Add(context.Background(), example("B-2"))
 	}
-	if err == nil || place.Hint(err) == "" {
+	if err == nil || !strings.Contains(err.Error(), "cannot be written") || place.Hint(err) == "" {
 		t.Errorf("%v, hint %q", err, place.Hint(err))
 	}
+}
+
+// A writer that waits in vain says for what; nothing is half written.
+func TestBusy(t *testing.T) {
+	where := filepath.Join(t.TempDir(), "r")
+	r := open(t, where)
+	r.db.SetMaxOpenConns(1)
+	if _, err := r.db.Exec("PRAGMA busy_timeout = 20"); err != nil {
+		t.Fatal(err)
+	}
+	other, err := open(t, where).db.Begin()
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, err = r.Add(context.Background(), example("B-1"))
+	if err == nil || !strings.Contains(err.Error(), "another program has been writing") || place.Hint(err) == "" {
+		t.Errorf("%v, hint %q", err, place.Hint(err))
+	}
+	if _, _, err := r.List(context.Background(), Query{}); err != nil {
+		t.Errorf("a reader waits for a writer: %v", err)
+	}
+	other.Rollback()
+	add(t, r, example("B-1"))
+}
+
+// The end of the server in between is said, and the register goes on afterwards.
+func TestLostConnection(t *testing.T) {
+	where := database(t)
+	r, admin := open(t, where), open(t, where)
+	add(t, r, example("B-1"))
+	r.db.SetMaxOpenConns(1)
+	if _, err := admin.db.Exec("SELECT pg_terminate_backend(pid) FROM pg_stat_activity WHERE datname = current_database() AND pid <> pg_backend_pid()"); err != nil {
+		t.Fatal(err)
+	}
+	// The pool may notice by itself and connect again; either is right.
+	if _, err := r.Add(context.Background(), example("B-2")); err != nil && place.Hint(err) == "" {
+		t.Errorf("%v, hint %q", err, place.Hint(err))
+	}
+	add(t, r, example("B-3"))
 }

@@ -10,6 +10,7 @@ import (
 	"net/url"
 	"strconv"
 	"strings"
+	"time"
 
 	"github.com/jackc/pgx/v5"
 	"github.com/jackc/pgx/v5/pgconn"
@@ -36,7 +37,7 @@ func openPostgres(where string) (*Register, error) {
 		return nil, &place.Error{File: shown, What: "cannot read the URL of the register", Hint: "write postgres://user@host:5432/database", Err: err}
 	}
 	if config.ConnectTimeout == 0 {
-		config.ConnectTimeout = 10e9 // ten seconds; none is set in the URL
+		config.ConnectTimeout = 10 * time.Second // the URL says nothing
 	}
 	db := stdlib.OpenDB(*config)
 	db.SetMaxOpenConns(8)

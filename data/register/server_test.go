@@ -143,12 +143,4 @@ func (s *server) stop() {
 	}
 }
 
-func TestMain(m *testing.M) {
-	if os.Getenv(writerWhere) != "" {
-		writer()
-		return
-	}
-	code := m.Run()
-	postgres.stop()
-	os.Exit(code)
-}
+func stopServer() { postgres.stop() }

@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"os"
 	"path/filepath"
 	"testing"
 )
@@ -85,4 +86,14 @@ func none(t *testing.T, damaged []Damage) {
 	if len(damaged) > 0 {
 		t.Errorf("damage in a sound register: %v", damaged)
 	}
+}
+
+func TestMain(m *testing.M) {
+	if os.Getenv(writerWhere) != "" {
+		writer()
+		return
+	}
+	code := m.Run()
+	stopServer()
+	os.Exit(code)
 }
