@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"path/filepath"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -21,7 +22,7 @@ type trendOptions struct {
 	property, at, compound, chart string
 	lower, upper                  string
 	base                          int
-	patterns, picture             string
+	patterns, picture, all        string
 	known, curves                 bool
 }
 
@@ -54,6 +55,7 @@ given with its interval. Entries that were corrected do not count.
 	cmd.Flags().StringVar(&o.lower, "lower", "", "lower limit of the property, for the capability")
 	cmd.Flags().StringVar(&o.upper, "upper", "", "upper limit of the property")
 	cmd.Flags().StringVar(&o.picture, "picture", "", "write the chart as this SVG file")
+	cmd.Flags().StringVar(&o.all, "all", "", "write a chart of every property in the register into this folder, which must exist")
 	curvesFlag(cmd, &o.curves)
 	cmd.Flags().BoolVar(&o.known, "list", false, "list the properties and conditions in the register")
 	return cmd
@@ -72,6 +74,9 @@ func (a *app) trend(o trendOptions) error {
 			return err
 		}
 		return a.answer(reports.QuantityTable(list), o.format)
+	}
+	if o.all != "" {
+		return a.everyChart(ctx, r, o)
 	}
 	if o.property == "" {
 		return usagef("--property is missing; --list shows what there are trends of")
@@ -123,6 +128,53 @@ func (a *app) trend(o trendOptions) error {
 		return err
 	}
 	if shown.Called() > 0 {
+		return errNo
+	}
+	return nil
+}
+
+// everyChart writes a picture for each property; what cannot be charted is said.
+func (a *app) everyChart(ctx context.Context, r *register.Register, o trendOptions) error {
+	list, err := r.Quantities(ctx)
+	if err != nil {
+		return err
+	}
+	called := 0
+	for i, q := range list {
+		points, damaged, err := r.Values(ctx, q.Name, q.Condition, o.compound)
+		if err != nil {
+			return err
+		}
+		if err := a.damage(damaged); err != nil {
+			return err
+		}
+		name := strings.TrimSuffix(q.Name+" at "+q.Condition, " at ")
+		batches := make([]quality.Batch, len(points))
+		for k, p := range points {
+			batches[k] = quality.Batch{Name: p.Batch, Values: []float64{p.Value}, U95: p.U95}
+		}
+		charts, err := o.charts(batches)
+		if err != nil {
+			fmt.Fprintf(a.err, "note: %s: no chart: %v\n", name, err)
+			continue
+		}
+		f, _ := reports.ControlFigure(name, points[0].Unit, charts...)
+		svg, err := figure.SVG(f)
+		if err != nil {
+			return err
+		}
+		file := filepath.Join(o.all, fmt.Sprintf("%03d.svg", i+1))
+		if err := writeWhole(file, svg); err != nil {
+			return err
+		}
+		out := ""
+		if n := charts[0].Called(); n > 0 {
+			out = fmt.Sprintf(", %d points called out", n)
+			called++
+		}
+		fmt.Fprintf(a.out, "%s: %s, %d batches%s\n", file, name, len(points), out)
+	}
+	if called > 0 {
 		return errNo
 	}
 	return nil

@@ -58,6 +58,9 @@ func TestTrend(t *testing.T) {
 	if out, _, code := run("--list"); code != exitDone || !strings.Contains(out, "10 Hz, 23 °C") {
 		t.Errorf("list: %d\n%s", code, out)
 	}
+	if out, errs, code := run("--all", dir, "--base", "25"); code != exitNo || !strings.Contains(out, "001.svg: storage modulus at 10 Hz, 23 °C, 30 batches, ") {
+		t.Errorf("all: code %d\n%s\n%s", code, out, errs)
+	}
 	for _, v := range []struct {
 		args []string
 		want string
