@@ -44,7 +44,9 @@ func (e *engine) minimise(x0 []float64) (found, error) {
 	if err != nil {
 		return found{}, err
 	}
-	if !res.Usable() && res.Iterations == 0 {
+	// A solution that is refined may stand on a kink, where a modulus of the spectrum is
+	// about to leave zero and no step lowers the sum: it is as good as it was.
+	if !res.Usable() && res.Iterations == 0 && res.Status != lsq.Stalled {
 		return found{}, ErrNoFit
 	}
 	return found{res.X, res.Norm * res.Norm, res.Iterations, res.Evaluations}, nil
