@@ -232,7 +232,7 @@ func TestReadBush(t *testing.T) {
 		{b + ", direction: sideways}}\n", `m.yaml:1:101: elements.b.direction: unknown direction "sideways"`, "radial"},
 		{b + ", direction: radial, factor: 1}}\n", "elements.b.factor: belongs to a pad", "leave"},
 		{"elements: {b: {shape: shear pad, diameter: 20 mm, thickness: 4 mm, direction: axial}}\n", "elements.b.direction: belongs to a bush", "leave"},
-		{b + ", direction: torsional}, p: {shape: shear pad, diameter: 20 mm, thickness: 4 mm}}\narrangement: {parallel: [b, p]}\n", "elements.p: is moved along a line beside a bush that is turned", "own file"},
+		{b + ", direction: torsional}, p: {shape: shear pad, diameter: 20 mm, thickness: 4 mm}}\narrangement: {parallel: [b, p]}\n", "elements.p: is moved along a line beside an element that is turned", "own file"},
 		{b + ", direction: torsional}}\nload: {mass: 4 kg}\n", "m.yaml:2:1: load: a mount that is turned", "leave"},
 		{b + ", direction: torsional}}\nexcitation: {displacement: 4 mm}\n", "m.yaml:2:14: excitation.displacement: the mount is turned", "angle"},
 		{b + ", direction: radial}}\nexcitation: {torque: 4 N·m}\n", "excitation.torque: the mount is moved along a line", "force"},

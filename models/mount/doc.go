@@ -42,6 +42,8 @@
 //     is the same with the direction said. Torsional and conical mounts have a
 //     stiffness in N·m/rad, excitation: {angle: 0.5 deg} or {torque: 5 N·m}, and no
 //     load ([Mount.Twisted]).
+//   - A torsion disc is twisted about its normal: thickness, and a diameter, or
+//     outer_diameter and inner_diameter.
 //   - A measured element has the stiffness of a part at one condition; part says
 //     whether the number is the magnitude (the default) or the storage part.
 //     Without loss_factor or loss_angle its phase is the compound's there.

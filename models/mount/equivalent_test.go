@@ -37,3 +37,30 @@ func TestOneRuleOfMeanStrain(t *testing.T) {
 	m := &Mount{Elements: []Element{{Pad: p}}, Count: 1, PartFactor: 1}
 	near(t, "pressed", m.strainPer(&m.Arrangement)*p.Thickness, math.Sqrt(9.84375), 1e-12)
 }
+
+// The mean of the logarithm against its rival x/(b−a) in an axial bush, over all amplitudes of a
+// modulus after Kraus with m = 0.6: at b/a = 2 the worst errors are 0.23 and 0.65 % of storage
+// and loss modulus, with the rival 0.45 and 1.29 %; computed independently in double precision.
+func TestMeanOfTheLogarithmIsTheBetter(t *testing.T) {
+	storage := func(g float64) float64 { return 1 + 1/(1+math.Pow(g, 1.2)) }
+	loss := func(g float64) float64 { return 0.1 + 2*math.Pow(g, 0.6)/(1+math.Pow(g, 1.2)) }
+	worst := func(per float64, modulus func(float64) float64) (most float64) {
+		for i := -40; i <= 40; i++ {
+			x := math.Pow(10, float64(i)/20)
+			sum, energy := 0.0, 0.0
+			for k, v := range gaussX {
+				g := x / ((1 + v) * math.Ln2)
+				w := g * g * (1 + v) * gaussW[k]
+				sum += modulus(g) * w
+				energy += w
+			}
+			most = math.Max(most, math.Abs(modulus(x*per)*energy/sum-1))
+		}
+		return most
+	}
+	ours, rival := Bush{Inner: 1, Outer: 2, Length: 1}.strainPer(), 1.0
+	near(t, "storage", worst(ours, storage), 0.0023, 0.03)
+	near(t, "loss", worst(ours, loss), 0.0065, 0.03)
+	near(t, "storage, rival", worst(rival, storage), 0.0045, 0.03)
+	near(t, "loss, rival", worst(rival, loss), 0.0129, 0.03)
+}

@@ -27,7 +27,8 @@ import "math"
 //
 // The factor E_t/E_c multiplies the dynamic stiffness, real and imaginary part
 // alike: it is a matter of geometry. The bulk stays in series, 1/E_t' = 1/E_t +
-// 1/B, and takes its σ/B of the static compression.
+// 1/B, and takes its σ/B of the static compression. The shear stiffness of a pair's
+// pressed pads is left as it is.
 
 // mostCompression is the greatest static compression, of the unloaded height, that
 // is answered for: beyond, pads bulge, and buckle or tear at their edges (common

@@ -57,11 +57,12 @@ type Arrangement struct {
 	Members []Arrangement // of Parallel and Series, at least one
 }
 
-// Element is a pad, a bush or a measured part; exactly one of them is set.
+// Element is a pad, a bush, a disc or a measured part; exactly one of them is set.
 type Element struct {
 	Name     string
 	Pad      *Pad
 	Bush     *Bush
+	Disc     *Disc
 	Measured *Measured
 	// Resistance is the element's own thermal resistance in K/W, in one mount; 0 if not
 	// stated.

@@ -15,7 +15,7 @@ import "math"
 //
 // with the shape factor S (loaded by force-free area), the coefficient κ (1 for
 // unfilled rubber, less for filled) and the bulk modulus B; after Gent and
-// Lindley (1959), value from memory. A long strip, and a ring, which is a strip
+// Lindley (1959), value from memory; other books write β for 2κ. A long strip, and a ring, which is a strip
 // bent round, cannot give way along its length:
 //
 //	E_c = (4/3)·3G·(1 + κS²),     S = b/(2t), of a ring (D − d)/(4t)

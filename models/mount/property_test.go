@@ -40,7 +40,7 @@ func (d *sketch) element() string {
 	thick := ", thickness: " + d.length(4, 40)
 	more := d.pick("", "", "", ", thermal_resistance: 3 K/W", ", nonsense: 3")
 	bush := ", inner_diameter: " + d.length(10, 30) + ", outer_diameter: " + d.length(32, 60) + ", length: " + d.length(10, 100)
-	switch d.IntN(8) {
+	switch d.IntN(9) {
 	case 0:
 		return "{shape: shear pad, area: 1200 mm2" + thick + more + "}"
 	case 1:
@@ -55,6 +55,9 @@ func (d *sketch) element() string {
 		return "{shape: bush" + bush + ", direction: " + d.pick("axial", "radial", "torsional", "conical") + more + "}"
 	case 6:
 		return "{measured: {stiffness: 420 N/mm, part: " + d.pick("magnitude", "storage") + d.pick("", ", loss_factor: 0.12") + ", frequency: 15 Hz, temperature: 23 °C, amplitude: 0.5 mm}, strain_per_displacement: 4 %/mm" + more + "}"
+	}
+	if d.IntN(3) == 0 {
+		return "{shape: torsion disc, diameter: " + d.length(20, 100) + thick + "}"
 	}
 	return "{shape: axial bush" + bush + "}"
 }

@@ -87,6 +87,9 @@ func (r *reader) oneElement(e entry) Element {
 		r.foreign(keys, "a pad", "area", "thickness", "width", "diameter", "bending", "compression_coefficient", "factor", "factor_from_hardness", "bulk_modulus", "bulk_from_hardness", "hardness_table")
 		el.Bush = r.bush(e, keys)
 		el.Bush.Way = r.way(e, keys)
+	case "torsion disc":
+		r.foreign(keys, "a pad or a bush", "area", "length", "width", "bending", "compression_coefficient", "factor", "factor_from_hardness", "bulk_modulus", "bulk_from_hardness", "hardness_table")
+		el.Disc = r.disc(e, keys)
 	default:
 		r.fault(shape.value, shape.path, "unknown shape "+kind(shape.value), "known are "+strings.Join(shapes, ", ")+"; anything else can be entered as measured")
 	}
@@ -101,7 +104,7 @@ var elementKeys = []string{
 }
 
 // shapes are the shapes of elements that are not measured.
-var shapes = []string{"shear pad", "compression pad", "compression strip", "compression ring", "axial bush", "bush"}
+var shapes = []string{"shear pad", "compression pad", "compression strip", "compression ring", "axial bush", "bush", "torsion disc"}
 
 // foreign reports keys of another shape.
 func (r *reader) foreign(keys map[string]entry, owner string, names ...string) {
@@ -249,7 +252,7 @@ func (r *reader) measured(e entry) (m *Measured, resistance float64) {
 func (r *reader) press(e Element, at *yaml.Node, why string) {
 	path := "elements." + e.Name
 	switch {
-	case e.Measured != nil || e.Bush != nil:
+	case e.Measured != nil || e.Bush != nil || e.Disc != nil:
 		r.fault(at, path, "an inclined pair needs a pad, which has a stiffness along and across its faces", "enter the pair as one measured element")
 	case e.Pad == nil: // its own fault was reported
 	case math.IsNaN(e.Pad.ShapeFactor()):
@@ -274,6 +277,8 @@ func (r *reader) assume(m *Mount) {
 			short, long := e.Bush.Conical(1)
 			own := e.Bush.ConicalBetween(1)
 			add("%s: conical stiffness of radial strips, about, between that of a short (%.3g times) and of a long bush (%.3g times): a convention; measure it where it matters", e.Name, real(short/own), real(long/own))
+		case e.Disc != nil:
+			add("%s: twisted between plates that stay parallel; the influence of the load is left out", e.Name)
 		case e.Bush != nil:
 			add("%s: a long bush; its ends are left out", e.Name)
 		case e.Pad != nil && e.Pad.Pressed:

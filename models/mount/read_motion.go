@@ -33,9 +33,9 @@ func (r *reader) oneMotion(m *Mount, keys map[string]entry) {
 	rotates := m.Rotates()
 	for _, a := range m.Arrangement.leaves() {
 		e := m.Elements[a.Element]
-		if turned := e.Bush != nil && e.Bush.Way.Rotates(); rotates && !turned {
+		if rotates && !e.rotates() {
 			at := keys["elements"]
-			r.fault(at.value, join(at.path, e.Name), "is moved along a line beside a bush that is turned", "a mount file describes one direction; give each its own file")
+			r.fault(at.value, join(at.path, e.Name), "is moved along a line beside an element that is turned", "a mount file describes one direction; give each its own file")
 			return
 		}
 	}

@@ -43,7 +43,7 @@ type Rest struct {
 	// stiffness is that of small vibrations about the rest.
 	Mount      *Mount
 	Force      float64 // N, on all mounts together
-	Deflection float64 // m; NaN where a measured element takes part in it
+	Deflection float64 // m, along the load; NaN where a measured element takes part in it
 	Tangent    float64 // N/m, static, of all mounts; NaN as Deflection
 	Leaves     []RestLeaf
 	Iterations int

@@ -10,11 +10,11 @@ var ErrRotates = errors.New("mount: its stiffness is in N·m/rad; ask for it wit
 var errMoves = errors.New("mount: its stiffness is in N/m; ask for it with a displacement or a force")
 
 // Rotates says whether the mount is turned or tilted: its bushes are torsional or
-// conical. Then State.Stiffness is in N·m/rad, displacements are angles in rad and
+// conical, or it has twisted discs. Then State.Stiffness is in N·m/rad, displacements are angles in rad and
 // forces torques in N·m, single amplitude.
 func (m *Mount) Rotates() bool {
 	for _, a := range m.Arrangement.leaves() {
-		if b := m.Elements[a.Element].Bush; b != nil && b.Way.Rotates() {
+		if m.Elements[a.Element].rotates() {
 			return true
 		}
 	}
@@ -36,3 +36,5 @@ func (m *Mount) Torqued(material Material, hertz, kelvin, torque float64) (State
 	}
 	return m.prepare(kelvin).forced(material, hertz, torque)
 }
+
+func (e Element) rotates() bool { return e.Disc != nil || e.Bush != nil && e.Bush.Way.Rotates() }

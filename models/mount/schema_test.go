@@ -113,6 +113,9 @@ func generated(t *testing.T) []byte {
 	bush := keys("a bush, moved in its direction or else that of the mount", tubeKeys, merged(shape("bush", "a tube between sleeves"), tube, resistance,
 		object{"direction": object{"enum": ways, "description": "how it is moved"}}))
 	axial := keys("a bush moved along its axis", tubeKeys, merged(shape("axial bush", "a tube between sleeves"), tube, resistance))
+	disc := oneOfKeys(keys("a disc or ring twisted about its normal", []string{"shape", "thickness"}, merged(shape("torsion disc", "simple torsion"), layer, resistance,
+		object{"diameter": section["diameter"], "inner_diameter": tube["inner_diameter"], "outer_diameter": tube["outer_diameter"]})),
+		[][]string{round, {"inner_diameter", "outer_diameter"}}, []string{"diameter", "inner_diameter"}, []string{"diameter", "outer_diameter"})
 	measured := keys("a part whose stiffness was measured at one condition", []string{"measured", "strain_per_displacement"}, merged(resistance, object{
 		"measured": oneOfKeys(keys("the measurement", []string{"stiffness", "frequency", "temperature", "amplitude"}, object{
 			"stiffness":   quantity("its magnitude or storage part", "420 N/mm"),
@@ -159,7 +162,7 @@ func generated(t *testing.T) []byte {
 		"table":    object{"enum": []Table{Lindley, Gent}},
 		"element": object{"description": "a shape or a measured part", "oneOf": []object{
 			oneOfKeys(shear, [][]string{{"area"}, round, oblong}, exclusive...), oneOfKeys(pressed, [][]string{round, oblong}, exclusive...),
-			oneOfKeys(strip, nil, exclusive...), oneOfKeys(rings, nil, exclusive...), bush, axial, measured,
+			oneOfKeys(strip, nil, exclusive...), oneOfKeys(rings, nil, exclusive...), bush, axial, disc, measured,
 		}},
 		"arrangement": object{"description": "how elements are joined; may be left out where there is one", "oneOf": []object{
 			names,
@@ -305,7 +308,7 @@ func TestSoundFilesKeepToSchema(t *testing.T) {
 		check(f, string(text))
 		demos++
 	}
-	if demos < 3 {
+	if demos < 4 {
 		t.Errorf("%d demonstrations", demos)
 	}
 	d := &sketch{Rand: rand.New(rand.NewPCG(20261201, 2))}

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"math"
 	"math/cmplx"
+	"slices"
 )
 
 // Material returns the complex shear modulus in Pa of the compound at a
@@ -98,8 +99,16 @@ type prepared struct {
 
 func (m *Mount) prepare(kelvin float64) *prepared {
 	p := &prepared{Mount: m, nodes: m.Arrangement.leaves()}
+	integrals := map[int]float64{} // by element: they take time, and a file may repeat one often
 	for _, a := range p.nodes {
-		p.per = append(p.per, m.strainPer(a))
+		per, known := integrals[a.Element]
+		if e := m.Elements[a.Element]; !known {
+			per = m.strainPer(a)
+			if e.Bush != nil || e.Pad != nil && e.Pad.Bending && a.Kind == Single {
+				integrals[a.Element] = per
+			}
+		}
+		p.per = append(p.per, per)
 		p.kelvin = append(p.kelvin, kelvin)
 	}
 	return p
@@ -182,16 +191,14 @@ func (m *prepared) settle(material Material, hertz, displacement, force float64)
 // uncorrected returns the stiffness of one mount at the moduli of its leaves with
 // all pads at their unloaded height; loaded is that under the static load.
 func (m *Mount) uncorrected(loaded complex128, nodes []*Arrangement, leaves []Leaf) complex128 {
-	same := true
+	if !slices.ContainsFunc(nodes, func(a *Arrangement) bool { return a.stretch() != 1 }) {
+		return loaded
+	}
 	k := make([]complex128, len(nodes))
 	for i, a := range nodes {
-		same = same && a.stretch() == 1
 		free := *a
 		free.Stretch = 1
 		k[i], _ = m.stiffness(&free, &leaves[i])
-	}
-	if same {
-		return loaded
 	}
 	k0, _ := m.Arrangement.join(k)
 	return k0
@@ -216,6 +223,8 @@ func (m *Mount) stiffness(a *Arrangement, l *Leaf) (k, slope complex128) {
 	switch {
 	case e.Bush != nil:
 		return e.Bush.Stiffness(l.Modulus), e.Bush.Stiffness(1)
+	case e.Disc != nil:
+		return e.Disc.Torsion(l.Modulus), e.Disc.Torsion(1)
 	case a.Kind == Single && e.Pad.Pressed:
 		return e.Pad.PressAt(l.Modulus, a.stretch())
 	case a.Kind == Single:
@@ -239,6 +248,8 @@ func (m *Mount) strainPer(a *Arrangement) float64 {
 		return e.Measured.StrainPerDisplacement
 	case e.Bush != nil:
 		return e.Bush.strainPer()
+	case e.Disc != nil:
+		return e.Disc.strainPer()
 	case a.Kind == Single && e.Pad.Pressed:
 		return math.Sqrt(e.Pad.stiffening(a.stretch())) / e.Pad.Thickness
 	case a.Kind == Single && e.Pad.Bending:

@@ -74,7 +74,7 @@ type Static struct {
 	// Tangent is the static stiffness about the rest under the static load; equal to
 	// Stiffness without one.
 	Tangent float64
-	// Deflection is m under the static load, NaN without one or where Refused says
+	// Deflection is m under the static load, along it, NaN without one or where Refused says
 	// why not.
 	Deflection float64
 	Refused    error
@@ -167,6 +167,8 @@ func (m *Mount) staticStiffness(g StaticModulus) float64 {
 		switch {
 		case e.Bush != nil:
 			k[i] = e.Bush.Stiffness(shear)
+		case e.Disc != nil:
+			k[i] = e.Disc.Torsion(shear)
 		case a.Kind == Single && e.Pad.Pressed:
 			k[i], _ = e.Pad.PressAt(pressed, a.stretch())
 		case a.Kind == Single:
