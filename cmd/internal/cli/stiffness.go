@@ -225,6 +225,7 @@ func (a *app) heat(c *models.Compound, m *mount.Mount, q []reports.StiffnessQuer
 	for _, note := range t.Assumptions {
 		a.note(note)
 	}
+	t.Assumptions = nil
 	fmt.Fprintln(a.out)
 	return table.Write(a.out, table.Terminal, t)
 }
