@@ -23,6 +23,8 @@ type Settings struct {
 const (
 	assumedScatter  = 0.3   // K
 	assumedGeometry = 0.015 // relative
+	assumedCommon   = 0.3   // K, calibration of a thermometer of its own
+	assumedPhase    = 0.1   // degrees, calibration of the phase of its own
 )
 
 // begin starts a comparison with what cancels taken out of the approved compound.
@@ -76,11 +78,17 @@ func Points(approved *models.Compound, campaign *data.Campaign, settings *Settin
 			}
 		}
 	}
-	if !s.SameThermometer && u.TemperatureCommon > 0 {
-		p.common = u.TemperatureCommon
+	if !s.SameThermometer {
+		if p.common = u.TemperatureCommon; math.IsNaN(p.common) {
+			p.common = assumedCommon
+			c.Assumptions = append(c.Assumptions, fmt.Sprintf("calibration of the batch's thermometer %g K: not stated", assumedCommon))
+		}
 	}
-	if !s.SamePhase && u.Phase > 0 {
-		p.phase = u.Phase
+	if !s.SamePhase {
+		if p.phase = u.Phase; math.IsNaN(p.phase) {
+			p.phase = assumedPhase * math.Pi / 180
+			c.Assumptions = append(c.Assumptions, fmt.Sprintf("calibration of the batch's phase %g°: not stated", assumedPhase))
+		}
 	}
 	list, strains, skipped := observe(c, campaign, &p)
 	if skipped > 0 {
