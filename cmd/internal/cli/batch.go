@@ -58,7 +58,7 @@ forgets: a correction is a new entry that names the old one.`,
 		Args: cobra.NoArgs,
 		RunE: func(cmd *cobra.Command, _ []string) error { return cmd.Help() },
 	}
-	cmd.AddCommand(a.batchAddCmd(), a.batchListCmd(), a.batchShowCmd(), a.batchCompareCmd(), a.batchReleaseCmd(), a.batchTrendCmd(), a.batchFilesCmd(true), a.batchFilesCmd(false))
+	cmd.AddCommand(a.batchAddCmd(), a.batchListCmd(), a.batchShowCmd(), a.batchCompareCmd(), a.batchReleaseCmd(), a.batchTrendCmd(), a.batchCheckCmd(), a.batchFilesCmd(true), a.batchFilesCmd(false))
 	return cmd
 }
 
@@ -225,6 +225,31 @@ func (a *app) batchShowCmd() *cobra.Command {
 	}
 	o.flags(cmd)
 	cmd.Flags().BoolVar(&file, "file", false, "write the compound file instead")
+	return cmd
+}
+
+// batchCheckCmd reads the whole register through.
+func (a *app) batchCheckCmd() *cobra.Command {
+	var o registerOptions
+	cmd := &cobra.Command{
+		Use: "check", Short: "Read the whole register through and name what is damaged", Args: cobra.NoArgs,
+		RunE: func(*cobra.Command, []string) error {
+			r, err := o.open(true)
+			if err != nil {
+				return err
+			}
+			defer r.Close()
+			damaged, err := r.Check(context.Background())
+			if err != nil {
+				return err
+			}
+			if len(damaged) == 0 {
+				fmt.Fprintln(a.out, "the register is sound")
+			}
+			return a.damage(damaged)
+		},
+	}
+	o.flags(cmd)
 	return cmd
 }
 
