@@ -231,3 +231,21 @@ func shortName(s string) string {
 	}
 	return s
 }
+
+// WithSpecification draws the limits of a specification into the first panel of a control
+// figure of n batches, in their own dash: they are what the customer wants, and not what
+// the process does.
+func WithSpecification(f figure.Figure, l quality.Limits, n int) figure.Figure {
+	if len(f.Panels) == 0 {
+		return f
+	}
+	f.Panels = append([]figure.Panel{}, f.Panels...)
+	p := &f.Panels[0]
+	p.Series = append([]figure.Series{}, p.Series...)
+	for _, y := range []float64{l.Lower, l.Upper} {
+		if !math.IsNaN(y) && !math.IsInf(y, 0) {
+			p.Series = append(p.Series, figure.Series{Name: "specification limits", X: []float64{0.5, float64(n) + 0.5}, Y: []float64{y, y}, Line: figure.DashDot, Colour: figure.Vermillion})
+		}
+	}
+	return f
+}

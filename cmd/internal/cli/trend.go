@@ -100,9 +100,13 @@ func (a *app) trend(o trendOptions) error {
 	if o.at != "" {
 		name += " at " + o.at
 	}
+	limits, err := o.limits(points[0].Unit)
+	if err != nil {
+		return err
+	}
 	if o.picture != "" {
 		f, _ := reports.ControlFigure(name, points[0].Unit, charts...)
-		svg, err := figure.SVG(f)
+		svg, err := figure.SVG(reports.WithSpecification(f, limits, len(points)))
 		if err != nil {
 			return err
 		}
@@ -121,7 +125,7 @@ func (a *app) trend(o trendOptions) error {
 	if err := a.plot(o.curves, o.format, func(w int) error { return reports.PlotControl(a.out, name, points[0].Unit, shown, w) }); err != nil {
 		return err
 	}
-	if err := a.capability(o, batches, points); err != nil {
+	if err := a.capability(o, batches, limits); err != nil {
 		return err
 	}
 	if err := a.damage(damaged); err != nil {
@@ -196,11 +200,8 @@ func (o trendOptions) charts(batches []quality.Batch) ([]*quality.Chart, error) 
 	return []*quality.Chart{values, moving}, err
 }
 
-// capability prints how the process fits between limits, where there are limits.
-func (a *app) capability(o trendOptions, batches []quality.Batch, points []register.Point) error {
-	if o.lower == "" && o.upper == "" {
-		return nil
-	}
+// limits are those of a specification; NaN where there is none.
+func (o trendOptions) limits(symbol string) (quality.Limits, error) {
 	limits := quality.Limits{Lower: math.NaN(), Upper: math.NaN()}
 	for _, v := range []struct {
 		flag, text string
@@ -209,11 +210,19 @@ func (a *app) capability(o trendOptions, batches []quality.Batch, points []regis
 		if v.text == "" {
 			continue
 		}
-		x, err := limitIn(v.text, points[0].Unit)
+		x, err := limitIn(v.text, symbol)
 		if err != nil {
-			return hintedAt(v.flag, err)
+			return limits, hintedAt(v.flag, err)
 		}
 		*v.to = x
+	}
+	return limits, nil
+}
+
+// capability prints how the process fits between limits, where there are limits.
+func (a *app) capability(o trendOptions, batches []quality.Batch, limits quality.Limits) error {
+	if o.lower == "" && o.upper == "" {
+		return nil
 	}
 	c, err := quality.Capable(batches, limits, quality.MovingRange)
 	if err != nil {
